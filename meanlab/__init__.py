@@ -1,0 +1,1 @@
+"""meanlab: does the mean agree with the target, on which evidence, with which uncertainty?"""
