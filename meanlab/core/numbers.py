@@ -1,6 +1,6 @@
 """Exact decimals: a reading is the decimal number that was typed, and stays so until one last rounding to double.
 
-Floating point breaks ties (0.3 − 0.2 against 0.2 − 0.1) and loses digits of sums of squares; scaled integers do neither.
+Floating point breaks ties (0.3 − 0.2 against 0.2 − 0.1) and loses digits of sums of squares; scaled integers keep both.
 """
 
 import re
@@ -36,8 +36,8 @@ def exact(number: Any, what: str = "This entry", kind: type[Complaint] = Reading
     """Return a number or number text ("5.020", "5,02") as an exact decimal that keeps its trailing zeros.
 
     A number that is no text enters by its shortest decimal text. A single comma or point is the decimal sign.
-    ``what`` opens the sentence of a complaint of class ``kind``, raised for anything that is not one finite number of at
-    most 60 characters and 40 significant digits with value 0 or 1e-300 ≤ |x| ≤ 1e300.
+    ``what`` opens the sentence of a complaint of class ``kind``, raised for anything that is not one finite number of
+    at most 60 characters and 40 significant digits with value 0 or 1e-300 ≤ |x| ≤ 1e300.
 
     >>> exact("5,020")
     Decimal('5.020')

@@ -44,7 +44,7 @@ class ReadingSet:
     decimal_sign  "." or ","; by default the one the typed texts use
     computed      True where a value is a computed spreadsheet number that says nothing of its resolution
 
-    Raises ReadingsComplaint for a value that is no number, a label or position missing, a left-out entry without a cause.
+    Raises ReadingsComplaint for a value that is no number, a missing label or position, a left-out entry without cause.
     """
 
     values: tuple[Decimal, ...]
@@ -63,7 +63,9 @@ class ReadingSet:
         given = tuple(self.values)
         typed = tuple(as_typed(value) for value in given) if self.typed is None else tuple(self.typed)
         values = tuple(
-            value if type(value) is Decimal and value.is_finite() else exact(value, f"Reading {place}", where="readings")
+            value
+            if type(value) is Decimal and value.is_finite()
+            else exact(value, f"Reading {place}", where="readings")
             for place, value in enumerate(given, 1)
         )
         if self.computed is None:
@@ -118,7 +120,9 @@ class ReadingSet:
                     "preparations",
                 )
             if any(entry.preparation is None for entry in self.censored):
-                raise ReadingsComplaint("Each below- or above-limit reading needs its preparation label too.", "preparations")
+                raise ReadingsComplaint(
+                    "Each below- or above-limit reading needs its preparation label too.", "preparations"
+                )
         known = {*self.positions, *(entry.index for entry in self.censored)}
         if len(known) != count + len(self.censored):
             raise ReadingsComplaint("Two entries stand at the same position.", "readings")
