@@ -30,7 +30,7 @@ def normal_critical(tail: Any) -> Any:
 def t_upper(t: Any, df: Any) -> Any:
     """Return P(T > t) for Student's t with ``df`` degrees of freedom (infinite: the normal distribution).
 
-    Near 0 the incomplete beta function loses digits in its argument, so the first two terms of the series are used there.
+    Near 0 the incomplete beta function loses digits in its argument, so two terms of the series are used there.
 
     >>> round(float(t_upper(2.2621571627982053, 9)), 12)
     0.025
@@ -101,7 +101,7 @@ def fair_critical(tail: float, n: int) -> int:
             middle = (low + high) // 2
             low, high = (middle, high) if fair_lower(middle, n) < tail else (low, middle)
         return low
-    total, bound, count, ways = 0, tail * 2.0**n if n < 1000 else tail * float(2**n), -1, 1
+    total, bound, count, ways = 0, tail * 2.0**n, -1, 1
     while total + ways < bound:
         total += ways
         count += 1

@@ -1,0 +1,138 @@
+"""The sign test: how many units lie above the target, against a fair coin; with below- and above-limit units too."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from meanlab.core.results import Interval, Test
+from meanlab.procedures.decision import one_sided, p_value, rejecting_sides, tail
+from meanlab.procedures.distributions import fair_critical, fair_lower
+from meanlab.procedures.sample import Spans
+
+
+@dataclass(frozen=True)
+class Counts:
+    """Units surely below, surely above, exactly at the target, and undecided ones."""
+
+    below: int
+    above: int
+    tied: int
+    undecided: int
+
+    def trials(self) -> list[tuple[int, int]]:
+        """Return (below, above) for 0…m undecided units above and the rest below, and for all of them left out."""
+        placed = [(self.below + self.undecided - j, self.above + j) for j in range(self.undecided + 1)]
+        return [*placed, (self.below, self.above)] if self.undecided else placed
+
+
+def count_sides(units: Spans) -> Counts:
+    """Count the units below, above and at the target.
+
+    "<L" is below when L ≤ target, ">U" above when U ≥ target; other censored units are undecided.
+    """
+    known = units.lows == units.highs
+    below = np.where(known, units.lows < units.target, units.highs <= units.target).astype(bool)
+    above = np.where(known, units.lows > units.target, units.lows >= units.target).astype(bool)
+    tied = int(np.sum(known & (units.lows == units.target)))
+    lower, higher = int(below.sum()), int(above.sum())
+    return Counts(lower, higher, tied, units.n - lower - higher - tied)
+
+
+def tails(below: int, above: int) -> tuple[float, float]:
+    """Return exact P(B ≥ above) and P(B ≤ above) for B binomial(below + above, ½).
+
+    >>> tails(1, 9)
+    (0.0107421875, 0.9990234375)
+    """
+    n = below + above
+    return fair_lower(below, n), fair_lower(above, n)
+
+
+def sign_test(units: Spans, alternative: str, alpha: float) -> Test:
+    """Return the sign test of the median, exact binomial, units equal to the target left out.
+
+    Undecided units are tried as 0…m of them above and the rest below, and left out: rejected only if the largest p < α
+    with all on one side; not rejected only if the smallest p ≥ α; else ``decided`` is False. p is the largest.
+    Source: Dixon & Mood 1946; the interval is [x(c), x(n+1−c)], Conover 1999, over all units.
+    """
+    counts = count_sides(units)
+    p_by_trial = {trial: float(p_value(alternative, *tails(*trial))) for trial in counts.trials()}
+    smallest, largest = min(p_by_trial.values()), max(p_by_trial.values())
+    chosen = max(p_by_trial, key=lambda trial: p_by_trial[trial])
+    one_side = len({above > below for below, above in p_by_trial}) == 1
+    reject = largest < alpha and (one_side or alternative != "two-sided")
+    against = _with_ties_against(counts, alternative) if counts.tied else None
+    rests_on_ties = reject and against is not None and against >= alpha
+    n_used = sum(chosen)
+    extreme = (n_used, 0) if alternative == "less" else (0, n_used)
+    p_greater, p_less = tails(*chosen)
+    return Test(
+        procedure="sign",
+        parameter="median",
+        alternative=alternative,
+        significance=alpha,
+        n=units.n,
+        n_used=n_used,
+        statistic=float(chosen[1]),
+        df=None,
+        p_value=largest,
+        p_greater=p_greater,
+        p_less=p_less,
+        critical=critical_counts(n_used, alternative, alpha),
+        reject=reject,
+        estimate=median_of(units),
+        standard_error=None,
+        interval=median_interval(units, alternative, alpha),
+        smallest_p=float(p_value(alternative, *tails(*extreme))),
+        p_range=(smallest, largest) if counts.undecided else None,
+        p_ties_against=against,
+        decided=(reject or smallest >= alpha) and not rests_on_ties,
+        notes=_remark(counts.tied, rests_on_ties),
+    )
+
+
+def _remark(tied: int, rests_on_ties: bool) -> tuple[str, ...]:
+    if not tied:
+        return ()
+    equal = "1 reading" if tied == 1 else f"{tied} readings"
+    if rests_on_ties:
+        return (f"The rejection rests on leaving out {equal} equal to the target.",)
+    return (f"{equal} equal to the target left out of the count.",)
+
+
+def _with_ties_against(counts: Counts, alternative: str) -> float:
+    """Return p with the units equal to the target counted against rejection."""
+    towards_above = alternative == "greater" or (alternative == "two-sided" and counts.above > counts.below)
+    below = counts.below + (counts.tied if towards_above else 0)
+    above = counts.above + (0 if towards_above else counts.tied)
+    return float(p_value(alternative, *tails(below, above)))
+
+
+def critical_counts(n: int, alternative: str, alpha: float) -> tuple[float | None, float | None]:
+    """Return the largest lower and smallest upper count above that reject; None where there is none."""
+    j = fair_critical(tail(alternative, alpha), n)
+    below, above = rejecting_sides(alternative)
+    return (float(j) if below and j >= 0 else None), (float(n - j) if above and j >= 0 else None)
+
+
+def median_of(units: Spans) -> float | None:
+    """Return the median; None where it falls on a censored unit whose place decides."""
+    lows, highs = np.sort(units.lows), np.sort(units.highs)
+    middle, upper = (units.n - 1) // 2, units.n // 2
+    if lows[middle] != highs[middle] or lows[upper] != highs[upper]:
+        return None
+    return units.value(lows[middle], lows[upper])
+
+
+def median_interval(units: Spans, alternative: str, alpha: float) -> Interval:
+    """Return [x(c), x(n+1−c)], c − 1 the largest j with P(B ≤ j) < α/2 (one-sided α); the hull over censored units.
+
+    An end that rests on a censored unit without a bound does not exist. ``attained`` is the exact level.
+    """
+    j = fair_critical(tail(alternative, alpha), units.n)
+    if j < 0:
+        return Interval(None, None, 1 - alpha, 1.0)
+    low, high = np.sort(units.lows)[j], np.sort(units.highs)[units.n - 1 - j]
+    kept = one_sided(alternative, units.value(low), units.value(high))
+    outside = fair_lower(j, units.n) * (2 if alternative == "two-sided" else 1)
+    return Interval(*kept, 1 - alpha, 1 - outside)
