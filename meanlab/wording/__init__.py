@@ -1,0 +1,1 @@
+"""Numbers as text, and sentences: the facts of an analysis in the words of a report."""
