@@ -5,7 +5,7 @@ Floating point breaks ties (0.3 − 0.2 against 0.2 − 0.1) and loses digits of
 
 import re
 from collections.abc import Iterable, Sequence
-from decimal import Decimal
+from decimal import Context, Decimal
 from math import isqrt
 from typing import Any
 
@@ -20,6 +20,7 @@ MOST_WORK = 20_000_000
 MOST_COMPUTED_DIGITS = 12
 
 _NUMBER = re.compile(r"[+-]?(\d+([.,]\d*)?|[.,]\d+)([eE][+-]?\d{1,4})?", re.ASCII)
+_WIDE = Context(prec=2 * WIDEST_SPAN)
 _SIGNS = str.maketrans({"−": "-", "–": "-", "＋": "+"})  # minus sign, en dash, full-width plus
 
 
@@ -109,10 +110,7 @@ def scaled(value: Decimal, exponent: int) -> int:
     >>> scaled(Decimal("5.02"), -3)
     5020
     """
-    sign, digits, own = value.as_tuple()
-    assert isinstance(own, int)
-    whole = int("".join(map(str, digits))) * 10 ** (own - exponent)
-    return -whole if sign else whole
+    return int(_WIDE.scaleb(value, -exponent))
 
 
 def power_of_ten_ratio(numerator: int, denominator: int, exponent: int) -> tuple[int, int]:

@@ -22,11 +22,23 @@ def plain(fact: Any) -> Any:
     if fact is None or isinstance(fact, (str, bool, int)):
         return fact
     if is_dataclass(fact) and not isinstance(fact, type):
-        return {f.name: _field(getattr(fact, f.name)) for f in fields(fact) if f.repr}
+        return _fields_of(fact)
     if isinstance(fact, Mapping):
         return {str(key): _field(value) for key, value in fact.items()}
     return [_field(value) for value in fact]
 
 
+def _fields_of(fact: Any) -> dict[str, Any]:
+    return {one.name: _field(getattr(fact, one.name)) for one in fields(fact)}
+
+
 def _field(value: Any) -> Any:
     return value.to_dict() if hasattr(value, "to_dict") else plain(value)
+
+
+class Facts:
+    """A frozen fact that can be had as plain JSON values."""
+
+    def to_dict(self) -> dict[str, Any]:
+        """Return every field as plain JSON values; an infinite or missing number is None."""
+        return _fields_of(self)

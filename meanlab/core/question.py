@@ -81,7 +81,8 @@ class Question:
         alpha = float(exact_setting(self.significance, "significance level", "significance"))
         if not 0 < alpha < 0.5:
             raise QuestionComplaint(
-                f"The significance level is {as_typed(self.significance)}; it must lie between 0 and 0.5 (5 % is 0.05).",
+                f"The significance level is {as_typed(self.significance)}; "
+                "it must lie between 0 and 0.5 (5 % is 0.05).",
                 "significance",
             )
         for field, name in _POSITIVE.items():

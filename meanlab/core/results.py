@@ -2,22 +2,38 @@
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
-from typing import Any, Literal
+from typing import Literal
 
-from meanlab.core.plain import plain
+from meanlab.core.plain import Facts
 from meanlab.core.question import Question
 from meanlab.core.readings import ReadingSet
+from meanlab.core.summary import Preparation, Summary
+
+__all__ = [
+    "Analysis",
+    "Bound",
+    "CensoredFit",
+    "Check",
+    "Component",
+    "Difference",
+    "Equivalence",
+    "Interval",
+    "NotApplicable",
+    "Outcome",
+    "Plan",
+    "Power",
+    "Preparation",
+    "Provenance",
+    "Route",
+    "Summary",
+    "Test",
+    "Uncertainty",
+    "Verdict",
+    "Without",
+]
 
 Outcome = Literal["clear", "note", "caution", "stop"]
 Verdict = Literal["differs", "differs, within the limit", "agrees", "cannot tell", "not testable"]
-
-
-class Facts:
-    """A frozen fact that can be had as plain JSON values."""
-
-    def to_dict(self) -> dict[str, Any]:
-        """Return every field as plain JSON values; an infinite or missing number is None."""
-        return plain(self)
 
 
 @dataclass(frozen=True)
@@ -38,50 +54,6 @@ class Route(Facts):
     fixed: bool
     row: int
     looked_at: Mapping[str, float] = field(default_factory=dict)
-
-
-@dataclass(frozen=True)
-class Preparation(Facts):
-    """One preparation: its label, how many readings it holds, their mean and s (None for one reading or a censored one)."""
-
-    label: str
-    count: int
-    mean: float | None
-    s: float | None
-
-
-@dataclass(frozen=True)
-class Summary(Facts):
-    """The readings in figures, all in the unit of the readings.
-
-    n            independent units (preparations where labelled, else readings), censored ones included
-    n_readings   readings they rest on
-    mean, s      of the units; None with any censored unit; s None for n = 1
-    median, minimum, maximum  of the units; None where they fall on a censored one
-    decimals     most decimal places a reading was written with; None for computed spreadsheet numbers
-    left_out, below, above    how many readings were left out, lie below or above a limit
-    resolution   step r of the units, None where unknown
-    skewness     g₁ = m₃/m₂^1.5 with divisor n; None for s = 0 or n < 3
-    preparations one line a preparation, empty where each reading is a unit
-    s_within, s_between  pooled within preparations; of the preparation means; None where not defined
-    """
-
-    n: int
-    n_readings: int
-    mean: float | None
-    s: float | None
-    median: float | None
-    minimum: float | None
-    maximum: float | None
-    decimals: int | None
-    left_out: int
-    below: int
-    above: int
-    resolution: float | None = None
-    skewness: float | None = None
-    preparations: tuple[Preparation, ...] = ()
-    s_within: float | None = None
-    s_between: float | None = None
 
 
 @dataclass(frozen=True)
@@ -112,6 +84,7 @@ class Test(Facts):
     estimate     mean, Hodges–Lehmann or median; None where not defined
     standard_error   of the estimate, all components; None for counting procedures
     interval     one-sided for a one-sided alternative
+    offsets      estimate, low and high end minus the target, each rounded once
     smallest_p   smallest p-value the procedure could attain here; 0 for continuous ones
     approximate  True for a normal approximation of the null distribution
     null_ranks   signed rank, exact: doubled midranks of the differences that are not 0
@@ -141,6 +114,7 @@ class Test(Facts):
     estimate: float | None
     standard_error: float | None
     interval: Interval
+    offsets: tuple[float | None, float | None, float | None]
     smallest_p: float
     approximate: bool = False
     null_ranks: tuple[int, ...] = ()
@@ -238,7 +212,7 @@ class Power(Facts):
 
 @dataclass(frozen=True)
 class Component(Facts):
-    """One component of uncertainty: standard uncertainty in the unit of the readings, df (None: infinite), share of u²."""
+    """One component of uncertainty: u in the unit of the readings, df (None: infinite), share of u²."""
 
     name: str
     u: float
@@ -248,7 +222,7 @@ class Component(Facts):
 
 @dataclass(frozen=True)
 class Bound(Facts):
-    """A further comparison |difference| > bound shown beside the test; it never decides. ``rejects`` is None at n = 1."""
+    """A further comparison |difference| > bound, shown beside the test; it never decides."""
 
     name: str
     bound: float

@@ -176,6 +176,10 @@ def _assemble(
         estimate=sample.mean,
         standard_error=u,
         interval=Interval(low, high, 1 - alpha, 1 - alpha),
+        offsets=(
+            sample.difference,
+            *one_sided(alternative, sample.difference - upper * u, sample.difference - lower * u),
+        ),
         smallest_p=0.0,
         skew_term=skew_term,
     )

@@ -149,12 +149,12 @@ class Spans:
         """Return the same units held against another target."""
         return replace(self, target=target)
 
-    def value(self, bound: Any, other: Any = None) -> float | None:
-        """Return a bound, or the middle of two, in the unit of the readings; None where one is infinite."""
+    def value(self, bound: Any, other: Any = None, origin: int = 0) -> float | None:
+        """Return a bound, or the middle of two, minus ``origin`` in the unit of the readings; None for an infinite one."""
         pair = (bound, bound if other is None else other)
         if any(isinstance(end, float) for end in pair):
             return None
-        return quotient(int(pair[0]) + int(pair[1]), 2 * self.divisor, self.exponent)
+        return quotient(int(pair[0]) + int(pair[1]) - 2 * origin, 2 * self.divisor, self.exponent)
 
 
 def whole_array(numbers: Sequence[int], *others: int) -> np.ndarray:

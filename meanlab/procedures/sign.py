@@ -1,11 +1,13 @@
 """The sign test: how many units lie above the target, against a fair coin; with below- and above-limit units too."""
 
 from dataclasses import dataclass
+from math import inf
+from typing import Any
 
 import numpy as np
 
 from meanlab.core.results import Interval, Test
-from meanlab.procedures.decision import one_sided, p_value, rejecting_sides, tail
+from meanlab.procedures.decision import p_value, rejecting_sides, tail
 from meanlab.procedures.distributions import fair_critical, fair_lower
 from meanlab.procedures.sample import Spans
 
@@ -66,6 +68,8 @@ def sign_test(units: Spans, alternative: str, alpha: float) -> Test:
     n_used = sum(chosen)
     extreme = (n_used, 0) if alternative == "less" else (0, n_used)
     p_greater, p_less = tails(*chosen)
+    middle = middle_units(units)
+    low, high, attained = interval_ends(units, alternative, alpha)
     return Test(
         procedure="sign",
         parameter="median",
@@ -80,9 +84,14 @@ def sign_test(units: Spans, alternative: str, alpha: float) -> Test:
         p_less=p_less,
         critical=critical_counts(n_used, alternative, alpha),
         reject=reject,
-        estimate=median_of(units),
+        estimate=units.value(*middle),
         standard_error=None,
-        interval=median_interval(units, alternative, alpha),
+        interval=Interval(units.value(low), units.value(high), 1 - alpha, attained),
+        offsets=(
+            units.value(*middle, origin=units.target),
+            units.value(low, origin=units.target),
+            units.value(high, origin=units.target),
+        ),
         smallest_p=float(p_value(alternative, *tails(*extreme))),
         p_range=(smallest, largest) if counts.undecided else None,
         p_ties_against=against,
@@ -115,24 +124,23 @@ def critical_counts(n: int, alternative: str, alpha: float) -> tuple[float | Non
     return (float(j) if below and j >= 0 else None), (float(n - j) if above and j >= 0 else None)
 
 
-def median_of(units: Spans) -> float | None:
-    """Return the median; None where it falls on a censored unit whose place decides."""
+def middle_units(units: Spans) -> tuple[Any, Any]:
+    """Return the one or two middle units; (infinity, infinity) where the median falls on a censored one."""
     lows, highs = np.sort(units.lows), np.sort(units.highs)
-    middle, upper = (units.n - 1) // 2, units.n // 2
-    if lows[middle] != highs[middle] or lows[upper] != highs[upper]:
-        return None
-    return units.value(lows[middle], lows[upper])
+    first, second = (units.n - 1) // 2, units.n // 2
+    if lows[first] != highs[first] or lows[second] != highs[second]:
+        return inf, inf
+    return lows[first], lows[second]
 
 
-def median_interval(units: Spans, alternative: str, alpha: float) -> Interval:
-    """Return [x(c), x(n+1−c)], c − 1 the largest j with P(B ≤ j) < α/2 (one-sided α); the hull over censored units.
+def interval_ends(units: Spans, alternative: str, alpha: float) -> tuple[Any, Any, float]:
+    """Return the ends x(c) and x(n+1−c) of the median's interval, infinite where there is none, and its exact level.
 
-    An end that rests on a censored unit without a bound does not exist. ``attained`` is the exact level.
+    c − 1 is the largest j with P(B ≤ j) < α/2 (one-sided: α); over censored units the ends are those of the hull.
     """
     j = fair_critical(tail(alternative, alpha), units.n)
     if j < 0:
-        return Interval(None, None, 1 - alpha, 1.0)
+        return -inf, inf, 1.0
     low, high = np.sort(units.lows)[j], np.sort(units.highs)[units.n - 1 - j]
-    kept = one_sided(alternative, units.value(low), units.value(high))
     outside = fair_lower(j, units.n) * (2 if alternative == "two-sided" else 1)
-    return Interval(*kept, 1 - alpha, 1 - outside)
+    return (-inf if alternative == "less" else low), (inf if alternative == "greater" else high), 1 - outside

@@ -6,7 +6,7 @@ from math import erfc, exp, pi, sqrt
 import numpy as np
 
 from meanlab.core.results import Interval, Test
-from meanlab.procedures.decision import one_sided, p_value, rejecting_sides, tail
+from meanlab.procedures.decision import p_value, rejecting_sides, tail
 from meanlab.procedures.sample import Sample
 
 EXACT_UP_TO = 200
@@ -121,6 +121,9 @@ def signed_rank(sample: Sample, alternative: str, alpha: float, estimate_always:
     rightmost = 0.5 ** len(counted)
     estimated = estimate_always or sample.n <= ESTIMATED_UP_TO
     zeros = sample.n - len(counted)
+    centre = hodges_lehmann(sample) if estimated else None
+    low, high = _ends(sample, null, alternative, alpha) if estimated else (None, None)
+    attained = 1 - _size_without_ties(sample.n, null, alternative, alpha)
     return Test(
         procedure="signed_rank",
         parameter="centre of symmetry",
@@ -135,9 +138,10 @@ def signed_rank(sample: Sample, alternative: str, alpha: float, estimate_always:
         p_less=p_less,
         critical=critical_sums(counted, null, alternative, alpha, exact),
         reject=p < alpha,
-        estimate=hodges_lehmann(sample) if estimated else None,
+        estimate=_value(sample, centre),
         standard_error=None,
-        interval=_interval(sample, null, alternative, alpha, estimated),
+        interval=Interval(_value(sample, low), _value(sample, high), 1 - alpha, attained),
+        offsets=(_value(sample, centre, True), _value(sample, low, True), _value(sample, high, True)),
         smallest_p=float(p_value(alternative, rightmost, rightmost)),
         approximate=not exact,
         null_ranks=tuple(np.sort(counted).tolist()) if exact else (),
@@ -188,18 +192,23 @@ def _last_where(holds: Callable[[int], bool], low: int, high: int) -> int:
     return low
 
 
-def _interval(sample: Sample, null: Null, alternative: str, alpha: float, wanted: bool) -> Interval:
-    attained = 1 - _size_without_ties(sample.n, null, alternative, alpha)
-    if not wanted:
-        return Interval(None, None, 1 - alpha, attained)
+def _value(sample: Sample, fourfold: int | None, from_target: bool = False) -> float | None:
+    """Return a quarter of a whole number, or its distance from the target, in the unit of the readings."""
+    if fourfold is None:
+        return None
+    return sample.value(fourfold - 4 * sample.target if from_target else fourfold, 4)
+
+
+def _ends(sample: Sample, null: Null, alternative: str, alpha: float) -> tuple[int | None, int | None]:
+    """Return four times the ends of the interval on the whole-number scale; None for an end that does not exist."""
     each = tail(alternative, alpha)
     low = None if alternative == "less" else _end(sample, null, each, 0)
     high = None if alternative == "greater" else _end(sample, null, each, 1)
-    return Interval(*one_sided(alternative, low, high), 1 - alpha, attained)
+    return low, high
 
 
-def _end(sample: Sample, null: Null, each: float, side: int) -> float | None:
-    """Return an end of {μ: p(μ) ≥ α}: it is half of a whole number a, found by bisection.
+def _end(sample: Sample, null: Null, each: float, side: int) -> int | None:
+    """Return four times an end of {μ: p(μ) ≥ α}: it is half of a whole number a, found by bisection.
 
     p changes only at Walsh averages, halves of whole numbers, so it is tried in the gap beside each, at a ± ½.
     """
@@ -215,7 +224,7 @@ def _end(sample: Sample, null: Null, each: float, side: int) -> float | None:
     if not rejects(low - 1):
         return None
     a = _last_where(rejects, low - 1, high + 1) + 1
-    return sample.value(a if side == 0 else -a, 2)
+    return 2 * a if side == 0 else -2 * a
 
 
 def _room_for_four(whole: np.ndarray) -> np.ndarray:
@@ -235,8 +244,8 @@ def _size_without_ties(n: int, null: Null, alternative: str, alpha: float) -> fl
     return 2 * size if alternative == "two-sided" else size
 
 
-def hodges_lehmann(sample: Sample) -> float:
-    """Return the median of the n(n + 1)/2 Walsh averages (xᵢ + xⱼ)/2, i ≤ j, correctly rounded.
+def hodges_lehmann(sample: Sample) -> int:
+    """Return four times the median of the n(n + 1)/2 Walsh averages (xᵢ + xⱼ)/2, i ≤ j, on the whole-number scale.
 
     Up to 1,000 units the averages are listed; above, the middle ones are found by counting pairs.
     """
@@ -250,7 +259,7 @@ def hodges_lehmann(sample: Sample) -> float:
     else:
         ordered = np.sort(sample.whole)
         first, second = (_walsh_sum(ordered, place) for place in middles)
-    return sample.value(first + second, 4)
+    return first + second
 
 
 def _walsh_sum(ordered: np.ndarray, place: int) -> int:
