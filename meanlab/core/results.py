@@ -84,9 +84,9 @@ class Test(Facts):
     estimate     mean, Hodges–Lehmann or median; None where not defined
     standard_error   of the estimate, all components; None for counting procedures
     interval     one-sided for a one-sided alternative
-    offsets      estimate, low and high end minus the target, each rounded once
     smallest_p   smallest p-value the procedure could attain here; 0 for continuous ones
     approximate  True for a normal approximation of the null distribution
+    offsets      estimate, low and high end minus the target, each rounded once
     null_ranks   signed rank, exact: doubled midranks of the differences that are not 0
     null_variance  signed rank: variance of W⁺ under the null hypothesis
     skew_term    guarded t: a = g₁/(3√n)
@@ -114,9 +114,9 @@ class Test(Facts):
     estimate: float | None
     standard_error: float | None
     interval: Interval
-    offsets: tuple[float | None, float | None, float | None]
     smallest_p: float
     approximate: bool = False
+    offsets: tuple[float | None, float | None, float | None] = (None, None, None)
     null_ranks: tuple[int, ...] = ()
     null_variance: float | None = None
     skew_term: float | None = None

@@ -150,7 +150,7 @@ class Spans:
         return replace(self, target=target)
 
     def value(self, bound: Any, other: Any = None, origin: int = 0) -> float | None:
-        """Return a bound, or the middle of two, minus ``origin`` in the unit of the readings; None for an infinite one."""
+        """Return a bound, or the middle of two, minus ``origin`` in the unit of the readings; None if infinite."""
         pair = (bound, bound if other is None else other)
         if any(isinstance(end, float) for end in pair):
             return None
