@@ -29,7 +29,7 @@ from meanlab.planning import analysis_power
 from meanlab.route import Look, route_of
 from meanlab.wording import cautions, conclusion, with_without_sentence
 
-__all__ = ["analyse"]
+__all__ = ["Decided", "analyse", "decide"]
 
 
 def analyse(readings: Intake | ReadingSet | Iterable[Any], question: Question) -> Analysis:
@@ -44,7 +44,7 @@ def analyse(readings: Intake | ReadingSet | Iterable[Any], question: Question) -
     ('t', 1.5, 'cannot tell')
     """
     given = as_reading_set(readings)
-    decided = _decide(given, question)
+    decided = decide(given, question)
     units, test = decided.units, decided.test
     sample = units.sample
     checks = _checks(decided, question)
@@ -87,7 +87,7 @@ def as_reading_set(readings: Intake | ReadingSet | Iterable[Any]) -> ReadingSet:
 
 
 @dataclass(frozen=True)
-class _Decided:
+class Decided:
     """The heart of an analysis: units, route, test, agreement, verdict."""
 
     units: Units
@@ -98,7 +98,8 @@ class _Decided:
     verdict: Verdict
 
 
-def _decide(readings: ReadingSet, question: Question) -> _Decided:
+def decide(readings: ReadingSet, question: Question) -> Decided:
+    """Return units, route, test, agreement and verdict: what a table of many samples needs of each."""
     units = units_of(readings, question)
     look = Look(
         question=question,
@@ -116,7 +117,7 @@ def _decide(readings: ReadingSet, question: Question) -> _Decided:
         if units.censored and not test.decided and test.p_range is not None:
             route, test = _left_open(route, test), None
     equivalence = equivalence_of(units, question, test)
-    return _Decided(units, look, route, test, equivalence, verdict_of(question, test, equivalence))
+    return Decided(units, look, route, test, equivalence, verdict_of(question, test, equivalence))
 
 
 def _left_open(route: Route, test: Test) -> Route:
@@ -139,7 +140,7 @@ def _difference(test: Test | None, units: Units, question: Question) -> Differen
     return Difference(value, low, high, 100 * value / target if target else None)
 
 
-def _checks(decided: _Decided, question: Question) -> tuple[Check, ...]:
+def _checks(decided: Decided, question: Question) -> tuple[Check, ...]:
     units = decided.units
     sample = units.sample
     facts = Facts(
@@ -156,7 +157,7 @@ def _checks(decided: _Decided, question: Question) -> tuple[Check, ...]:
 
 
 def _withouts(
-    given: ReadingSet, question: Question, decided: _Decided, checks: tuple[Check, ...]
+    given: ReadingSet, question: Question, decided: Decided, checks: tuple[Check, ...]
 ) -> tuple[Without, ...]:
     """Return the same question without the far readings, and with the readings that were left out."""
     found = []
@@ -175,6 +176,6 @@ def _other_readings(
     kept = replace(given, left_out=left_out)
     if len(left_out) >= len(given.values) + len(given.censored):
         return None
-    other = _decide(kept, question)
+    other = decide(kept, question)
     draft = Without(label, entries, other.test, other.verdict, "")
     return replace(draft, sentence=with_without_sentence(draft))
