@@ -1,6 +1,7 @@
 """The sentence for the report: one template for each verdict, filled with the facts of one analysis."""
 
 from meanlab.core.numbers import as_typed
+from meanlab.core.question import Question
 from meanlab.core.results import Analysis, Without
 from meanlab.wording.digits import estimate_of
 from meanlab.wording.names import PROCEDURE_NAMES, counted, short_noun
@@ -17,7 +18,6 @@ from meanlab.wording.phrases import (
     missed_phrase,
     of_subject,
     opening_phrase,
-    p_range_phrase,
     parameter_of,
     probability_text,
     scatter_phrase,
@@ -128,15 +128,33 @@ def decision_rule(analysis: Analysis) -> str:
     )
 
 
-def with_without_sentence(without: Without, sign: str = ".", verdict: str = "") -> str:
-    """Return what comes out with the other readings; ``verdict`` is the one of the analysis it stands beside."""
-    label = plain_words(without.label)
-    start = label[:1].upper() + label[1:]
+def with_without_sentence(without: Without, question: Question | None = None, sign: str = ".") -> str:
+    """Return what comes out without the far readings, or with the readings that were left out.
+
+    ``question`` gives the limit and the kind of the target for the words of the verdict; without it they stay general.
+    """
+    numbered = [str(entry + 1) for entry in without.entries]
+    listed = " and ".join(part for part in (", ".join(numbered[:-1]), *numbered[-1:]) if part)
+    noun = "" if not numbered else "entry" if len(numbered) == 1 else "entries"
+    start = plain_words(f"{without.label[:1].upper()}{without.label[1:]} {noun} {listed}")
     if without.test is None:
         return f"{start}: not testable."
     p = p_text(without.test.p_value, without.test.significance, sign)
-    changes = "" if not verdict else ", unchanged" if verdict == without.verdict else f" instead of “{verdict}”"
-    return f"{start}: {statistic_text(without.test, sign)}, {p}; the verdict is “{without.verdict}”{changes}."
+    word = _word_of(without, question)
+    return f"{start}: {statistic_text(without.test, sign)}, {p}; verdict: {word}."
+
+
+def _word_of(without: Without, question: Question | None) -> str:
+    alternative = without.test.alternative if without.test is not None else "two-sided"
+    limit, noun = "E", "target"
+    key: str = without.verdict
+    if question is not None:
+        noun = short_noun(question.target_kind)
+        if question.equivalence_limit is not None:
+            limit = unit_text(as_typed(question.equivalence_limit).strip(), question.unit)
+            key = "agrees, with a limit" if key == "agrees" and alternative != "two-sided" else key
+    template = VERDICT_WORDS.get((key, alternative), key)
+    return template.format(limit=limit, noun=noun)
 
 
 def _parts(analysis: Analysis, numbers: Shown) -> dict[str, str]:
@@ -165,7 +183,7 @@ def not_testable_cause(analysis: Analysis) -> str:
     """Return the cause as the table knows it, from the row of the rule that decided."""
     causes = {-1: "one preparation", 0: "undecided", 3: "one reading", 4: "identical"}
     if analysis.route.row == 1:
-        return "undecided" if analysis.test is not None and not analysis.test.decided else "fixed"
+        return "fixed"
     return causes.get(analysis.route.row, "other")
 
 
@@ -185,7 +203,6 @@ def _not_testable(analysis: Analysis, numbers: Shown) -> str:
         The_parameter=f"The {parameter_of(analysis)}",
         value=f", {numbers.estimate}," if numbers.estimate else "",
         reason=_reason(analysis),
-        range=p_range_phrase(analysis, numbers.sign),
         beside=_beside(analysis, numbers),
     )
 
