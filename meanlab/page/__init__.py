@@ -1,0 +1,28 @@
+"""The page: the only place, with meanlab/__main__.py, that imports streamlit."""
+
+import streamlit as st
+
+from meanlab.page import panel, parts, question, readings, state, styles, under_panel
+from meanlab.page.guard import guarded, say
+
+
+def show() -> None:
+    """Draw the whole page: inputs left, result right, one further part below."""
+    styles.apply()
+    now = state.begin()
+    with st.container(key="page"):
+        left, right = st.columns([324, 990], gap="small")
+        with left, st.container(key="inputs"):
+            with guarded("readings"):
+                readings.draw()
+            with guarded("question"):
+                question.draw()
+        with right:
+            for sentence in filter(None, (now.notice, now.trouble)):
+                say(sentence, "notice")
+            panel.draw()
+            with guarded("copies"):
+                under_panel.draw()
+    with guarded("lower part"):
+        parts.draw()
+    state.keep()

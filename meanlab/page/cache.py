@@ -1,0 +1,85 @@
+"""What is computed once and used again: bounded, and found only by its full content.
+
+Nothing of one visitor reaches another except a result for the very same readings and question.
+"""
+
+from dataclasses import dataclass
+from functools import lru_cache
+from typing import Any
+
+import streamlit as st
+
+import meanlab
+from meanlab.core.question import Question
+from meanlab.core.readings import ReadingSet
+from meanlab.core.results import Analysis
+from meanlab.intake import Intake
+from meanlab.notebook import WorkingStates
+from meanlab.notebook.place import database_url
+from meanlab.wording import PanelTexts, panel_texts
+
+HOME = ("localhost", "127.0.0.1", "::1")
+
+
+@dataclass(frozen=True)
+class Source:
+    """Where readings come from: a pasted text or a file's bytes, the file's name and what was chosen in it."""
+
+    content: str | bytes
+    filename: str | None = None
+    selection: tuple[tuple[str, Any], ...] = ()
+
+    def chosen(self) -> dict[str, Any]:
+        """Return what was chosen as `meanlab.read` takes it."""
+        return {
+            name: dict(given) if name == "where" else list(given) if isinstance(given, tuple) else given
+            for name, given in self.selection
+        }
+
+
+@dataclass(frozen=True)
+class Outcome:
+    """An analysis and the texts of its panel."""
+
+    analysis: Analysis
+    texts: PanelTexts
+
+
+def kept_on_this_address() -> bool:
+    """Tell whether the page is bound to this computer alone; on any other address nothing is kept."""
+    return st.get_option("server.address") in HOME
+
+
+def working_states() -> WorkingStates:
+    """Return the store of working states; raises NotebookComplaint where it cannot be opened (and tries again next time)."""
+    return _states_at(database_url())
+
+
+@st.cache_resource(show_spinner=False, max_entries=4)
+def _states_at(url: str) -> WorkingStates:
+    return WorkingStates(url)
+
+
+@lru_cache(maxsize=16)
+def read(source: Source) -> Intake:
+    """Return what was read from a source."""
+    return meanlab.read(source.content, source.filename, source.chosen() or None)
+
+
+@lru_cache(maxsize=8)
+def columns(content: bytes, filename: str) -> tuple[Any, ...]:
+    """Return what can be chosen in a file."""
+    return tuple(meanlab.columns(content, filename))
+
+
+@lru_cache(maxsize=16)
+def readings(source: Source, left_out: tuple[tuple[int, str], ...] = ()) -> ReadingSet:
+    """Return the readings of a source without those left out by hand."""
+    return read(source).reading_set(left_out=dict(left_out))
+
+
+@lru_cache(maxsize=64)
+def outcome(source: Source, left_out: tuple[tuple[int, str], ...], question: Question) -> Outcome:
+    """Return everything found about a question on the readings of a source, with the texts of the panel."""
+    analysis = meanlab.analyse(readings(source, left_out), question)
+    return Outcome(analysis, panel_texts(analysis))

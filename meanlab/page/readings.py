@@ -1,0 +1,100 @@
+"""The readings: openers, the box to paste into, the line of counts and what a file needs to have chosen."""
+
+import html
+from datetime import UTC, datetime
+
+import streamlit as st
+
+from meanlab.intake import Intake
+from meanlab.page import bench, cache, clock, file_choice, samples_opener, state
+from meanlab.page.guard import guarded, say
+
+BOX_HEIGHT = 180
+BOX_HEIGHT_BESIDE_A_FILE = 68
+
+
+def draw() -> None:
+    """Draw the upper half of the left column."""
+    with st.container(key="openers", horizontal=True, gap="small"):
+        st.file_uploader("From a file", key="readings_file", label_visibility="collapsed", on_change=_opened)
+        samples_opener.draw()
+        bench.draw()
+    _label_row()
+    beside_file = state.working().file is not None
+    st.text_area(
+        "Readings, one a line",
+        key="readings_text",
+        height=BOX_HEIGHT_BESIDE_A_FILE if beside_file else BOX_HEIGHT,
+        label_visibility="collapsed",
+        placeholder="Paste here to use typed readings" if beside_file else "Paste the readings, one a line",
+    )
+    with guarded("file"):
+        file_choice.draw()
+    with guarded("readings"):
+        _counts(intake())
+    _put_back()
+
+
+def intake() -> Intake | None:
+    """Return what was read, None where there is nothing to read."""
+    source = file_choice.source()
+    return None if source is None else cache.read(source)
+
+
+def left_out(found: Intake) -> tuple[tuple[int, str], ...]:
+    """Return the readings left out by hand with their causes, as far as they still stand where they stood."""
+    entries = {str(entry.index): entry.text for entry in found.entries}
+    return tuple(
+        (int(place), said["cause"])
+        for place, said in sorted(state.working().left_out.items(), key=lambda item: int(item[0]))
+        if entries.get(place) == said["text"]
+    )
+
+
+def _opened() -> None:
+    file = state.widget("readings_file")
+    if file is not None:
+        state.use_file(file.name, file.getvalue())
+
+
+def _label_row() -> None:
+    now = state.working()
+    with st.container(key="label_row", horizontal=True, vertical_alignment="center"):
+        st.html('<span class="ml-label">Readings, one a line</span>')
+        if now.fields["readings_text"].strip() or now.file is not None:
+            st.button("Clear", key="clear", type="tertiary", on_click=state.clear)
+        st.html(f'<span class="ml-saved" role="status">{html.escape(_saved())}</span>')
+
+
+def _saved() -> str:
+    now = state.working()
+    if not cache.kept_on_this_address():
+        return "Not kept"
+    if now.trouble:
+        return "Not saved"
+    return "" if now.saved is None else clock.saved_text(now.saved, clock.visitor_zone(), datetime.now(UTC))
+
+
+def _counts(found: Intake | None) -> None:
+    if found is None:
+        return
+    if found.refused:
+        say(found.reason)
+        return
+    st.html(f'<p class="ml-counts" role="status">{html.escape(found.counts_line())}</p>')
+    for warning in found.warnings[:2]:
+        say(warning, "notice")
+    if len(found.warnings) > 2:
+        say(f'{len(found.warnings) - 2} more under "What was read".', "notice")
+
+
+def _put_back() -> None:
+    previous = state.working().previous
+    if previous is not None:
+        st.button(
+            "Put back the previous readings",
+            key="put_back",
+            type="tertiary",
+            help=f"{previous['cause'].capitalize()}.",
+            on_click=state.put_back,
+        )

@@ -1,0 +1,364 @@
+"""What the page remembers: every session key with its default, kept at each change and brought back by its address.
+
+The only file that says session_state. Widgets take their value from here: their key is the name of a field.
+"""
+
+from collections.abc import Mapping
+from copy import deepcopy
+from dataclasses import dataclass, field
+from datetime import datetime
+from hashlib import sha256
+from types import MappingProxyType
+from typing import Any
+
+import streamlit as st
+
+from meanlab.core.complaints import NotebookComplaint
+from meanlab.page import cache
+
+FIELDS: Mapping[str, Any] = MappingProxyType(
+    {
+        # the readings
+        "readings_text": "",
+        "decimal_sign": "as written",
+        "sheet": None,
+        "column": None,
+        "replicates": [],
+        "filter_column": None,
+        "filter_value": None,
+        # the question
+        "target": "",
+        "unit": "",
+        "target_kind": "nominal value",
+        "significance": "5 %",
+        "alternative": "two-sided",
+        "quantity": "",
+        "material": "",
+        # what else is known
+        "units_are": "",
+        "conditions": "not stated",
+        "run_order": False,
+        "certificate_value": "",
+        "certificate_meaning": "not given",
+        "certificate_k": "",
+        "certificate_df": "",
+        "historical_count": "",
+        "own_uncertainty": "",
+        "sigma": "",
+        "sigma_origin": "",
+        "sigma_df": "",
+        "limit": "",
+        "matters": "",
+        "procedure": "rule",
+        "parameter": "mean",
+        "resolution": "",
+        "fixed_before": False,
+        # below the panel
+        "part": "What was read",
+        "plan_kind": "a difference that matters",
+        "plan_difference": "",
+        "plan_limit": "",
+        "plan_true": "",
+        "plan_half_width": "",
+        "plan_s": "",
+        "plan_power": "80 %",
+    }
+)
+READINGS_FIELDS = (
+    "readings_text",
+    "decimal_sign",
+    "sheet",
+    "column",
+    "replicates",
+    "filter_column",
+    "filter_value",
+)
+PICKS = READINGS_FIELDS[1:]
+MOST_KEPT_CHARACTERS = 10_000_000
+ADDRESS = "nb"
+_WORKING = "working"
+_FILES = "files"
+
+
+@dataclass
+class Working:
+    """One visitor's page: the value of every field, and what has no field of its own.
+
+    file      name and digest of the file in use, None where the readings are typed
+    left_out  {place of the entry: {"text": as typed, "cause": why}}
+    previous  what a clear, a replace or an opened sample set took away, None where nothing was
+    first     the parts of the question as they stood when these readings first had a result
+    looks     how many results these readings had while they grew
+    """
+
+    fields: dict[str, Any]
+    file: dict[str, str] | None = None
+    left_out: dict[str, dict[str, str]] = field(default_factory=dict)
+    previous: dict[str, Any] | None = None
+    first: dict[str, Any] | None = None
+    looks: int = 1
+    key: str = ""
+    saved: datetime | None = None
+    trouble: str = ""
+    notice: str = ""
+    last_kept: str = ""
+
+
+def begin() -> Working:
+    """Bring the page back or take in what was typed since the last run, and keep it before anything is computed."""
+    if _WORKING not in st.session_state:
+        st.session_state[_FILES] = {}
+        st.session_state[_WORKING] = _brought_back()
+    now = working()
+    for name in FIELDS:
+        if name in st.session_state:
+            _take_in(now, name, st.session_state[name])
+        else:
+            st.session_state[name] = now.fields[name]
+    keep()
+    return now
+
+
+def working() -> Working:
+    """Return the page of this visitor."""
+    found = st.session_state[_WORKING]
+    assert isinstance(found, Working)
+    return found
+
+
+def value(name: str) -> Any:
+    """Return the value of a field."""
+    return working().fields[name]
+
+
+def put(name: str, given: Any) -> None:
+    """Set a field, in a callback: before the widgets of the next run are made."""
+    working().fields[name] = given
+    st.session_state[name] = given
+
+
+def file_bytes() -> bytes | None:
+    """Return the content of the file in use, None where the readings are typed."""
+    file = working().file
+    return None if file is None else st.session_state[_FILES].get(file["digest"])
+
+
+def use_file(name: str, content: bytes) -> None:
+    """Take the readings from a file from now on."""
+    _set_aside("a file was opened")
+    digest = sha256(content).hexdigest()
+    st.session_state[_FILES][digest] = content
+    for pick in PICKS:
+        put(pick, deepcopy(FIELDS[pick]))
+    put("readings_text", "")
+    working().file = {"name": name, "digest": digest}
+    _forget_looks()
+
+
+def widget(key: str) -> Any:
+    """Return what a widget holds at this moment, in a callback before the fields are taken in."""
+    return st.session_state.get(key)
+
+
+def clear() -> None:
+    """Take the readings away; they can be put back."""
+    _set_aside("the readings were cleared")
+    _empty_readings()
+
+
+def open_set(name: str, fields: Mapping[str, Any], file: tuple[str, bytes] | None = None) -> None:
+    """Open a sample set: its readings and its question in place of everything on the page."""
+    _set_aside(f'the sample set "{name}" was opened', with_question=True)
+    _empty_readings()
+    for key, default in FIELDS.items():
+        if key != "part":
+            put(key, deepcopy(fields.get(key, default)))
+    if file is not None:
+        digest = sha256(file[1]).hexdigest()
+        st.session_state[_FILES][digest] = file[1]
+        working().file = {"name": file[0], "digest": digest}
+
+
+def put_back() -> None:
+    """Put back what the last clear, replace or sample set took away; what stood there can be put back in turn."""
+    now = working()
+    before = now.previous
+    if before is None:
+        return
+    now.previous = _snapshot("the previous readings were put back", before["with_question"])
+    for name, given in before["fields"].items():
+        if name in FIELDS:
+            put(name, given)
+    now.file, now.left_out = before["file"], before["left_out"]
+    now.first, now.looks = before.get("first"), before.get("looks", 1)
+
+
+def leave_out(place: int, text: str, cause: str) -> None:
+    """Leave a reading out by hand, with its cause."""
+    working().left_out[str(place)] = {"text": text, "cause": cause}
+
+
+def take_back(place: int) -> None:
+    """Count a reading again that was left out."""
+    working().left_out.pop(str(place), None)
+
+
+def start_afresh() -> None:
+    """Begin an empty page under an address of its own; the one before stays under its address."""
+    st.query_params.pop(ADDRESS, None)
+    st.session_state[_FILES] = {}
+    st.session_state[_WORKING] = _empty()
+    for name, default in FIELDS.items():
+        put(name, deepcopy(default))
+
+
+def saw_result(parts: Mapping[str, Any], entries: tuple[str, ...]) -> Working:
+    """Note that a result was shown: with which parts of the question, and whether the readings grew since the last."""
+    now = working()
+    before = None if now.first is None else now.first["entries"]
+    digest = [sha256(entry.encode()).hexdigest()[:12] for entry in entries[:1000]]
+    grown = before is not None and len(digest) > len(before) and digest[: len(before)] == before
+    if now.first is None or (before is not None and not grown and not _alike(before, digest)):
+        now.first, now.looks = {"parts": dict(parts), "entries": digest}, 1
+    elif grown:
+        now.looks += 1
+        now.first["entries"] = digest
+    elif before != digest:
+        now.first["entries"] = digest
+    return now
+
+
+def keep() -> None:
+    """Keep the page as it is now, where something changed; a failure is said on the page, which works on."""
+    now = working()
+    if not cache.kept_on_this_address():
+        now.trouble = ""
+        return
+    if len(now.fields["readings_text"]) > MOST_KEPT_CHARACTERS:
+        now.trouble = "Not saved: the text is longer than 10 MB."
+        return
+    content = {
+        "fields": now.fields,
+        "file": now.file,
+        "left_out": now.left_out,
+        "previous": now.previous,
+        "first": now.first,
+        "looks": now.looks,
+    }
+    mark = sha256(repr(content).encode()).hexdigest()
+    if mark == now.last_kept or (not now.key and _nothing_typed(now)):
+        return
+    try:
+        states = cache.working_states()
+        key = now.key or states.new_key()
+        for digest in _digests(now):
+            if digest in st.session_state[_FILES]:
+                states.keep_file(key, st.session_state[_FILES][digest])
+        now.saved = states.keep(key, content, _digests(now))
+    except NotebookComplaint as complaint:
+        now.trouble = f"Not saved. {complaint}"
+        return
+    now.key, now.last_kept, now.trouble = key, mark, ""
+    st.query_params[ADDRESS] = key
+
+
+def _brought_back() -> Working:
+    key = st.query_params.get(ADDRESS, "")
+    now = _empty()
+    if not key or not cache.kept_on_this_address():
+        return now
+    try:
+        states = cache.working_states()
+        kept = states.load(key)
+        if kept is None:
+            st.query_params.pop(ADDRESS, None)
+            now.notice = "Nothing is kept under this address; this is an empty page."
+            return now
+        now.fields |= {name: given for name, given in kept.state["fields"].items() if name in FIELDS}
+        now.file, now.left_out = kept.state["file"], kept.state["left_out"]
+        now.previous = kept.state["previous"]
+        now.first, now.looks = kept.state.get("first"), kept.state.get("looks", 1)
+        now.key, now.saved = key, kept.saved
+        for digest in _digests(now):
+            content = states.load_file(key, digest)
+            if content is not None:
+                st.session_state[_FILES][digest] = content
+    except NotebookComplaint as complaint:
+        now.trouble = str(complaint)
+    return now
+
+
+def _empty() -> Working:
+    return Working(fields=deepcopy(dict(FIELDS)))
+
+
+def _nothing_typed(now: Working) -> bool:
+    return now.fields == dict(FIELDS) and now.file is None and now.previous is None
+
+
+def _take_in(now: Working, name: str, given: Any) -> None:
+    before = now.fields[name]
+    if given == before:
+        return
+    if name == "readings_text" and given.strip():
+        if now.file is not None:
+            _set_aside("readings were pasted in place of a file")
+            now.file = None
+            now.left_out, now.first = {}, None
+        elif _replaced(before, given):
+            _set_aside("the readings were replaced")
+            now.left_out = {}
+    elif name == "readings_text" and before.strip():
+        _set_aside("the readings were cleared")
+        now.left_out = {}
+        _forget_looks()
+    now.fields[name] = given
+
+
+def _replaced(before: str, given: str) -> bool:
+    """A new text with fewer than half of the old lines is another set of readings, not a correction."""
+    old, new = before.split(), set(given.split())
+    return bool(old) and sum(word in new for word in old) < len(old) / 2
+
+
+def _alike(before: list[str], entries: list[str]) -> bool:
+    known = set(before)
+    return sum(entry in known for entry in entries) >= len(before) / 2
+
+
+def _set_aside(cause: str, with_question: bool = False) -> None:
+    now = working()
+    if now.fields["readings_text"].strip() or now.file is not None:
+        now.previous = _snapshot(cause, with_question)
+
+
+def _snapshot(cause: str, with_question: bool) -> dict[str, Any]:
+    now = working()
+    names = [name for name in FIELDS if name != "part"] if with_question else READINGS_FIELDS
+    return {
+        "cause": cause,
+        "with_question": with_question,
+        "fields": {name: deepcopy(now.fields[name]) for name in names},
+        "file": now.file,
+        "left_out": dict(now.left_out),
+        "first": now.first,
+        "looks": now.looks,
+    }
+
+
+def _empty_readings() -> None:
+    for name in READINGS_FIELDS:
+        put(name, deepcopy(FIELDS[name]))
+    now = working()
+    now.file, now.left_out = None, {}
+    _forget_looks()
+
+
+def _forget_looks() -> None:
+    now = working()
+    now.first, now.looks = None, 1
+
+
+def _digests(now: Working) -> tuple[str, ...]:
+    files = (now.file, (now.previous or {}).get("file"))
+    return tuple(file["digest"] for file in files if file)

@@ -1,0 +1,56 @@
+"""The look of the page: one narrow column of inputs, one white panel, few lines."""
+
+import streamlit as st
+
+_CSS = """
+.block-container, [data-testid="stMainBlockContainer"] { padding: 0.5rem 1.25rem 2rem 1.25rem; max-width: 1500px; }
+[data-testid="stHeader"] { display: none; }
+.st-key-inputs, .st-key-inputs [data-testid="stVerticalBlock"] { gap: 0.35rem; }
+.st-key-page > [data-testid="stLayoutWrapper"] > [data-testid="stHorizontalBlock"] { gap: 1rem; }
+.st-key-inputs label p, .ml-label { font-size: 14px; }
+.st-key-inputs label { min-height: 1.2rem; margin-bottom: 1px; }
+.ml-saved, .ml-counts { font-size: 13px; }
+.ml-counts { margin: 0; line-height: 18px; }
+.ml-complaint, .ml-notice, .ml-status { font-size: 14px; margin: 0; line-height: 20px; overflow-wrap: anywhere; }
+.ml-complaint { border-left: 3px solid currentColor; padding-left: 8px; }
+.ml-notice { border-left: 1px dashed currentColor; padding-left: 10px; }
+.ml-empty { font-size: 17px; line-height: 26px; margin: 0 0 8px 0; }
+.st-key-openers { align-items: center; }
+.st-key-openers > div { width: auto !important; flex: 0 0 auto; }
+[data-testid="stFileUploaderDropzone"] { padding: 0; border: none; background: none; min-height: 0; gap: 0; }
+[data-testid="stFileUploaderDropzoneInstructions"], [data-testid="stFileUploader"] > label { display: none; }
+.st-key-readings_file, .st-key-readings_file [data-testid="stFileUploader"] { width: auto !important; }
+.st-key-label_row { gap: 0.5rem; min-height: 24px; }
+.st-key-label_row > div:last-child { margin-left: auto; }
+.st-key-label_row button, .st-key-put_back button { min-height: 22px; padding: 0; font-size: 13px; }
+.st-key-label_row button p, .st-key-put_back button p { font-size: 13px; text-decoration: underline; }
+
+.st-key-panel {
+  background: #fff; color: #000; border: 1px solid #000; padding: 14px 18px 10px 18px; gap: 6px;
+  color-scheme: light;
+}
+.st-key-panel * { color: #000; }
+.ml-head { display: flex; justify-content: space-between; align-items: baseline; gap: 24px; }
+.ml-title, .ml-verdict { font-size: 20px; line-height: 26px; font-weight: 600; overflow-wrap: anywhere; }
+.ml-verdict { text-align: right; }
+.ml-sentence { font-size: 17px; line-height: 24px; margin: 0; overflow-wrap: anywhere; }
+.ml-table { border-collapse: collapse; width: 100%; font-size: 13px; line-height: 18px; }
+.ml-table th { text-align: left; font-weight: 400; padding: 4px 8px 4px 0; width: 38%; white-space: nowrap; }
+.st-key-panel .ml-table th { color: #444; }
+.ml-table td { padding: 4px 0; overflow-wrap: anywhere; }
+.ml-table tr { border-bottom: 1px solid #ccc; }
+.ml-table tr:last-child { border-bottom: none; }
+.ml-foot { font-size: 12px; line-height: 16px; margin: 0; overflow-wrap: anywhere; }
+.st-key-panel .ml-foot { color: #444; }
+
+@media print {
+  body * { visibility: hidden; }
+  .st-key-panel, .st-key-panel * { visibility: visible; }
+  .st-key-panel { position: absolute; left: 0; top: 0; width: 100%; }
+}
+"""
+
+
+def apply() -> None:
+    """Put the style sheet on the page."""
+    st.html(f"<style>{_CSS}</style>")
