@@ -2,7 +2,7 @@
 
 import streamlit as st
 
-from meanlab.page import panel, parts, question, readings, state, styles, under_panel
+from meanlab.page import cache, panel, parts, question, readings, state, styles, under_panel
 from meanlab.page.guard import guarded, say
 
 
@@ -26,3 +26,8 @@ def show() -> None:
     with guarded("lower part"):
         parts.draw()
     state.keep()
+
+
+def warm_up() -> None:
+    """Import and run what the first result needs: the readings, the analysis, its texts and its pictures."""
+    cache.warm_up()

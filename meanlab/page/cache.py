@@ -51,7 +51,7 @@ def kept_on_this_address() -> bool:
 
 
 def working_states() -> WorkingStates:
-    """Return the store of working states; raises NotebookComplaint where it cannot be opened (and tries again next time)."""
+    """Return the store of working states; raises NotebookComplaint where it cannot be opened."""
     return _states_at(database_url())
 
 
@@ -83,3 +83,9 @@ def outcome(source: Source, left_out: tuple[tuple[int, str], ...], question: Que
     """Return everything found about a question on the readings of a source, with the texts of the panel."""
     analysis = meanlab.analyse(readings(source, left_out), question)
     return Outcome(analysis, panel_texts(analysis))
+
+
+def warm_up() -> None:
+    """Run one result through, so that the first visitor does not wait for imports."""
+    source = Source("5.02\n5.04\n4.98\n5.01\n5.03\n4.99\n5.00\n5.02\n")
+    outcome(source, (), Question("5.00"))

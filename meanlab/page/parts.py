@@ -1,7 +1,5 @@
 """Below the panel: one part at a time, chosen by a control that remembers."""
 
-
-
 PARTS = {}
 
 
