@@ -12,7 +12,7 @@ import streamlit as st
 import meanlab
 from meanlab.core.question import Question
 from meanlab.core.readings import ReadingSet
-from meanlab.core.results import Analysis
+from meanlab.core.results import Analysis, Plan
 from meanlab.intake import Intake
 from meanlab.notebook import WorkingStates
 from meanlab.notebook.place import database_url
@@ -83,6 +83,49 @@ def outcome(source: Source, left_out: tuple[tuple[int, str], ...], question: Que
     """Return everything found about a question on the readings of a source, with the texts of the panel."""
     analysis = meanlab.analyse(readings(source, left_out), question)
     return Outcome(analysis, panel_texts(analysis))
+
+
+@lru_cache(maxsize=64)
+def plan_detection(
+    difference: float,
+    s: float,
+    alternative: str,
+    significance: float,
+    power: float,
+    sigma_known: bool,
+    target_uncertainty: float,
+) -> Plan:
+    """Return how many readings find a difference."""
+    return meanlab.plan_detection(
+        difference,
+        s,
+        alternative=alternative,
+        significance=significance,
+        power=power,
+        sigma_known=sigma_known,
+        target_uncertainty=target_uncertainty,
+    )
+
+
+@lru_cache(maxsize=64)
+def plan_agreement(
+    limit: float, s: float, true_difference: float, significance: float, power: float, target_uncertainty: float
+) -> Plan:
+    """Return how many readings show agreement within a limit."""
+    return meanlab.plan_agreement(
+        limit,
+        s,
+        true_difference=true_difference,
+        significance=significance,
+        power=power,
+        target_uncertainty=target_uncertainty,
+    )
+
+
+@lru_cache(maxsize=64)
+def plan_interval(half_width: float, s: float, confidence: float) -> Plan:
+    """Return how many readings make the interval so narrow."""
+    return meanlab.plan_interval(half_width, s, confidence=confidence)
 
 
 def warm_up() -> None:

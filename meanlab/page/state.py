@@ -137,6 +137,11 @@ def put(name: str, given: Any) -> None:
     st.session_state[name] = given
 
 
+def note(key: str, given: Any) -> None:
+    """Set what a widget outside the fields holds, in a callback."""
+    st.session_state[key] = given
+
+
 def file_bytes() -> bytes | None:
     """Return the content of the file in use, None where the readings are typed."""
     file = working().file

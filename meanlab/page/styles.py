@@ -43,6 +43,17 @@ _CSS = """
 .ml-foot { font-size: 12px; line-height: 16px; margin: 0; overflow-wrap: anywhere; }
 .st-key-panel .ml-foot { color: #444; }
 
+.st-key-under_panel { align-items: center; }
+.ml-scroll { overflow: auto; }
+.ml-list { border-collapse: collapse; font-size: 14px; line-height: 20px; }
+.ml-list th { text-align: left; font-weight: 600; padding: 3px 18px 3px 0; position: sticky; top: 0;
+  background: var(--ml-page, inherit); }
+.ml-list td { padding: 3px 18px 3px 0; vertical-align: top; overflow-wrap: anywhere; }
+.ml-list tr { border-bottom: 1px solid #9a9a96; }
+.ml-text p { font-size: 14px; line-height: 20px; margin: 0 0 4px 0; max-width: 75em; overflow-wrap: anywhere; }
+.ml-h { font-size: 15px; line-height: 20px; font-weight: 600; margin: 8px 0 2px 0; padding: 0; }
+.st-key-lower_part [data-testid="stVerticalBlock"] { gap: 0.5rem; }
+
 @media print {
   body * { visibility: hidden; }
   .st-key-panel, .st-key-panel * { visibility: visible; }

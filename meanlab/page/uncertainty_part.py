@@ -1,0 +1,73 @@
+"""Uncertainty: the components and their shares, scatter alone beside the whole, and the bounds shown beside the test."""
+
+from meanlab.core.results import Analysis, Uncertainty
+from meanlab.page import tables
+from meanlab.page.cache import Outcome
+from meanlab.wording.numbers import (
+    df_text,
+    level_text,
+    p_text,
+    significant,
+    statistic_number,
+    statistic_text,
+    unit_text,
+)
+
+DIGITS_OF_U = 3
+
+
+def draw(found: Outcome | None) -> None:
+    """Draw the budget of the difference from the target."""
+    budget = None if found is None else found.analysis.uncertainty
+    if found is None or budget is None:
+        tables.sentences([_nothing(found)])
+        return
+    tables.draw(("Component", "Standard uncertainty u", "Degrees of freedom", "Share of u²"), _rows(found, budget))
+    tables.sentences([found.texts.mean_line, *_scatter_only(found.analysis, budget)])
+    if budget.bounds:
+        tables.draw(
+            ("Held beside the test; it does not decide", "|difference| must exceed", "Exceeded"),
+            [(bound.name, _in_unit(found, bound.bound), "yes" if bound.rejects else "no") for bound in budget.bounds],
+        )
+        tables.sentences(bound.message for bound in budget.bounds)
+
+
+def _nothing(found: Outcome | None) -> str:
+    if found is None:
+        return "The uncertainty stands here as soon as there is a result."
+    return "There is no uncertainty to state for this result: see the sentence in the panel."
+
+
+def _rows(found: Outcome, budget: Uncertainty) -> list[tuple[str, ...]]:
+    sign = found.texts.numbers.sign
+    rows = [
+        (part.name, _in_unit(found, part.u), _degrees(part.df, sign), level_text(round(part.share, 3), sign))
+        for part in budget.components
+    ]
+    rows.append(("combined", _in_unit(found, budget.combined), _degrees(budget.df, sign), level_text(1.0, sign)))
+    level = found.texts.numbers.interval_level
+    expanded = f"expanded U (k = {statistic_number(budget.k, sign)}, {level} two-sided)"
+    rows.append((expanded, _in_unit(found, budget.expanded), "", ""))
+    return rows
+
+
+def _scatter_only(analysis: Analysis, budget: Uncertainty) -> list[str]:
+    alone, test = budget.scatter_only, analysis.test
+    if alone is None or test is None:
+        return [
+            "Scatter of these readings is the only component; calibration, recovery and the certificate add theirs."
+        ]
+    sign = analysis.readings.decimal_sign
+    return [
+        f"With scatter alone: {statistic_text(alone, sign)}, {p_text(alone.p_value, alone.significance, sign)}; "
+        f"with all components: {statistic_text(test, sign)}, {p_text(test.p_value, test.significance, sign)}. "
+        "The decision rests on all components."
+    ]
+
+
+def _in_unit(found: Outcome, number: float) -> str:
+    return unit_text(significant(number, DIGITS_OF_U, found.texts.numbers.sign), found.texts.numbers.unit)
+
+
+def _degrees(df: float | None, sign: str) -> str:
+    return "infinite" if df is None else df_text(df, sign)
