@@ -20,11 +20,11 @@ def show() -> None:
         with right:
             for sentence in filter(None, (now.notice, now.trouble)):
                 say(sentence, "notice")
-            panel.draw()
+            found = panel.draw()
             with guarded("copies"):
-                under_panel.draw()
+                under_panel.draw(found)
     with guarded("lower part"):
-        parts.draw()
+        parts.draw(found)
     state.keep()
 
 

@@ -3,8 +3,8 @@
 No widget here: fields in, `Question` or a complaint out.
 """
 
-from collections.abc import Mapping
-from decimal import Decimal
+from collections.abc import Mapping, Sequence
+from decimal import Decimal, InvalidOperation
 from math import inf, sqrt
 from statistics import NormalDist
 from typing import Any
@@ -23,7 +23,6 @@ MEANINGS = (
     "bounds ± a (rectangular)",
 )
 CONDITIONS = ("not stated", "repeatability", "intermediate precision")
-EVERY_SETTING = ("alternative", "equivalence limit", "difference that matters")
 
 
 def question_from(fields: Mapping[str, Any], sign: str, set_after: tuple[str, ...] = (), look: int = 1) -> Question:
@@ -127,15 +126,33 @@ def units_in_words(units: str, conditions: str) -> str:
     return ", ".join(part for part in (units.strip(), said) if part)
 
 
-def parts_set(fields: Mapping[str, Any], left_out: Mapping[str, Any]) -> dict[str, Any]:
+def parts_set(fields: Mapping[str, Any], left_out: Sequence[str]) -> dict[str, Any]:
     """Return the parts of a question that lose their meaning when they are set after the readings were seen."""
+    side_of_kind = SIDE_OF_KIND.get(fields["target_kind"])
     return {
-        "alternative": fields["alternative"],
-        "target": fields["target"].strip(),
-        "equivalence limit": fields["limit"].strip(),
-        "difference that matters": fields["matters"].strip(),
+        "alternative": "two-sided" if side_of_kind == fields["alternative"] else fields["alternative"],
+        "target": _plain(fields["target"]),
+        "equivalence limit": _plain(fields["limit"]),
+        "difference that matters": _plain(fields["matters"]),
         "left-out readings": sorted(left_out),
     }
+
+
+def set_after(first: Mapping[str, Any], now: Mapping[str, Any]) -> tuple[str, ...]:
+    """Return the parts of a question that were set after a result of these readings was seen.
+
+    Asking either way, the side that a limit itself asks for, and a limit taken away again are no choice that suits.
+    """
+    return tuple(part for part in first if now[part] != first[part] and now[part] not in ("", [], "two-sided"))
+
+
+def _plain(text: str) -> str:
+    """The number without its zeros, so that 5.0 and 5.00 are the same."""
+    bare = text.strip().replace(",", ".")
+    try:
+        return str(Decimal(bare).normalize())
+    except InvalidOperation:
+        return bare
 
 
 def _as_typed(fields: Mapping[str, Any], name: str, noun: str, sign: str) -> str:

@@ -16,6 +16,7 @@ from meanlab.core.results import Analysis, Plan
 from meanlab.intake import Intake
 from meanlab.notebook import WorkingStates
 from meanlab.notebook.place import database_url
+from meanlab.records.panel import panel_png
 from meanlab.wording import PanelTexts, panel_texts
 
 HOME = ("localhost", "127.0.0.1", "::1")
@@ -83,6 +84,11 @@ def outcome(source: Source, left_out: tuple[tuple[int, str], ...], question: Que
     """Return everything found about a question on the readings of a source, with the texts of the panel."""
     analysis = meanlab.analyse(readings(source, left_out), question)
     return Outcome(analysis, panel_texts(analysis))
+
+
+def picture(found: Outcome) -> bytes:
+    """Return the panel as a picture (PNG); drawn when it is asked for."""
+    return panel_png(found.analysis)
 
 
 @lru_cache(maxsize=64)

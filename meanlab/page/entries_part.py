@@ -60,7 +60,7 @@ def _leave_out(found: Intake) -> None:
     complaint = state.widget("leave_out_complaint")
     if complaint:
         say(complaint)
-    for place, text in sorted(readings.left_out(found)):
+    for place, _ in sorted(readings.left_out(found)):
         st.button(f"Count no. {place + 1} again", key=f"take_back_{place}", on_click=state.take_back, args=(place,))
 
 

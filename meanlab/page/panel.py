@@ -2,6 +2,7 @@
 
 import html
 import re
+from dataclasses import replace
 
 import streamlit as st
 
@@ -22,23 +23,28 @@ def outcome() -> cache.Outcome | None:
     found = None if source is None else cache.read(source)
     if source is None or found is None or found.refused or not found.has_readings:
         return None
-    now = state.working()
-    if asked.missing(now.fields, has_readings=True):
+    fields = state.working().fields
+    if asked.missing(fields, has_readings=True):
         return None
     left_out = readings.left_out(found)
-    sign = found.decimal_sign
-    question = asked.question_from(now.fields, sign)
+    question = asked.question_from(fields, found.decimal_sign)
+    parts = asked.parts_set(fields, [str(place) for place, _ in left_out])
+    history = state.saw_result(parts, tuple(entry.text for entry in found.entries[: state.MOST_COMPARED]))
+    if not fields["fixed_before"]:
+        question = replace(question, set_after=asked.set_after(history.first_parts, parts), look=history.looks)
     return cache.outcome(source, left_out, question)
 
 
-def draw() -> None:
-    """Draw the panel, or the sentence that says what it waits for."""
+def draw() -> cache.Outcome | None:
+    """Draw the panel, or the sentence that says what it waits for; returns the result that is shown."""
+    found = None
     with st.container(key="panel"), guarded("result"):
         found = outcome()
         if found is None:
             _waiting()
         else:
             _texts(found.analysis, found.texts)
+    return found
 
 
 def _waiting() -> None:

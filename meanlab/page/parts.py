@@ -5,14 +5,12 @@ from types import MappingProxyType
 
 import streamlit as st
 
-from meanlab.core.complaints import Complaint
 from meanlab.page import (
     agreement_part,
     checks_part,
     enough_part,
     entries_part,
     others_part,
-    panel,
     state,
     uncertainty_part,
 )
@@ -31,18 +29,11 @@ PARTS: Mapping[str, Callable[[Outcome | None], None]] = MappingProxyType(
 )
 
 
-def draw() -> None:
+def draw(found: Outcome | None) -> None:
     """Draw the control and the one part it names."""
     st.segmented_control("Below the panel", tuple(PARTS), key="part", label_visibility="collapsed")
     name = state.value("part")
     if name not in PARTS:
         return
     with st.container(key="lower_part"), guarded(name):
-        PARTS[name](_found())
-
-
-def _found() -> Outcome | None:
-    try:
-        return panel.outcome()
-    except Complaint:  # said in the panel
-        return None
+        PARTS[name](found)

@@ -74,6 +74,7 @@ READINGS_FIELDS = (
     "filter_value",
 )
 PICKS = READINGS_FIELDS[1:]
+MOST_COMPARED = 1_000  # entries looked at to tell a further look from other readings
 MOST_KEPT_CHARACTERS = 10_000_000
 ADDRESS = "nb"
 _WORKING = "working"
@@ -102,6 +103,11 @@ class Working:
     trouble: str = ""
     notice: str = ""
     last_kept: str = ""
+
+    @property
+    def first_parts(self) -> Mapping[str, Any]:
+        """The parts of the question at the first result of these readings."""
+        return {} if self.first is None else self.first["parts"]
 
 
 def begin() -> Working:
@@ -218,18 +224,19 @@ def start_afresh() -> None:
 
 
 def saw_result(parts: Mapping[str, Any], entries: tuple[str, ...]) -> Working:
-    """Note that a result was shown: with which parts of the question, and whether the readings grew since the last."""
+    """Note that a result is shown: with which parts of the question, and whether the readings grew since the last.
+
+    Other readings begin a new count; a correction does not; readings added to the ones before are a further look.
+    """
     now = working()
+    marks = [sha256(entry.encode()).hexdigest()[:12] for entry in entries]
     before = None if now.first is None else now.first["entries"]
-    digest = [sha256(entry.encode()).hexdigest()[:12] for entry in entries[:1000]]
-    grown = before is not None and len(digest) > len(before) and digest[: len(before)] == before
-    if now.first is None or (before is not None and not grown and not _alike(before, digest)):
-        now.first, now.looks = {"parts": dict(parts), "entries": digest}, 1
-    elif grown:
+    if before is None or not _alike(before, marks):
+        now.first, now.looks = {"parts": dict(parts), "entries": marks}, 1
+        return now
+    if len(marks) > len(before) and marks[: len(before)] == before:
         now.looks += 1
-        now.first["entries"] = digest
-    elif before != digest:
-        now.first["entries"] = digest
+    now.first = {"parts": now.first["parts"], "entries": marks} if now.first else None
     return now
 
 

@@ -14,8 +14,8 @@ def draw(headings: Sequence[str], rows: Iterable[Sequence[str]], height: int | N
 def table_html(headings: Sequence[str], rows: Iterable[Sequence[str]], height: int | None = None) -> str:
     """Return a table as HTML with every text escaped.
 
-    >>> table_html(["a"], [["<b>"]])
-    '<div class="ml-scroll" tabindex="0"><table class="ml-list"><tr><th scope="col">a</th></tr><tr><td>&lt;b&gt;</td></tr></table></div>'
+    >>> "<td>&lt;b&gt;</td>" in table_html(["a"], [["<b>"]])
+    True
     """
     head = "".join(f'<th scope="col">{html.escape(text)}</th>' for text in headings)
     body = "".join("<tr>" + "".join(f"<td>{html.escape(text)}</td>" for text in row) + "</tr>" for row in rows)

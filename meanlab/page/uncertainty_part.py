@@ -1,11 +1,11 @@
-"""Uncertainty: the components and their shares, scatter alone beside the whole, and the bounds shown beside the test."""
+"""Uncertainty: the components and their shares, scatter alone beside the whole, and the bounds beside the test."""
 
 from meanlab.core.results import Analysis, Uncertainty
 from meanlab.page import tables
 from meanlab.page.cache import Outcome
 from meanlab.wording.numbers import (
+    decimal_text,
     df_text,
-    level_text,
     p_text,
     significant,
     statistic_number,
@@ -41,10 +41,10 @@ def _nothing(found: Outcome | None) -> str:
 def _rows(found: Outcome, budget: Uncertainty) -> list[tuple[str, ...]]:
     sign = found.texts.numbers.sign
     rows = [
-        (part.name, _in_unit(found, part.u), _degrees(part.df, sign), level_text(round(part.share, 3), sign))
+        (part.name, _in_unit(found, part.u), _degrees(part.df, sign), _share(part.share, sign))
         for part in budget.components
     ]
-    rows.append(("combined", _in_unit(found, budget.combined), _degrees(budget.df, sign), level_text(1.0, sign)))
+    rows.append(("combined", _in_unit(found, budget.combined), _degrees(budget.df, sign), _share(1.0, sign)))
     level = found.texts.numbers.interval_level
     expanded = f"expanded U (k = {statistic_number(budget.k, sign)}, {level} two-sided)"
     rows.append((expanded, _in_unit(found, budget.expanded), "", ""))
@@ -55,7 +55,7 @@ def _scatter_only(analysis: Analysis, budget: Uncertainty) -> list[str]:
     alone, test = budget.scatter_only, analysis.test
     if alone is None or test is None:
         return [
-            "Scatter of these readings is the only component; calibration, recovery and the certificate add theirs."
+            "Scatter of these readings is the only component; a certificate, calibration and recovery would add theirs."
         ]
     sign = analysis.readings.decimal_sign
     return [
@@ -67,6 +67,10 @@ def _scatter_only(analysis: Analysis, budget: Uncertainty) -> list[str]:
 
 def _in_unit(found: Outcome, number: float) -> str:
     return unit_text(significant(number, DIGITS_OF_U, found.texts.numbers.sign), found.texts.numbers.unit)
+
+
+def _share(share: float, sign: str) -> str:
+    return f"{decimal_text(100 * share, 1, sign)} %"
 
 
 def _degrees(df: float | None, sign: str) -> str:
