@@ -13,13 +13,14 @@ def show() -> None:
     with st.container(key="page"):
         left, right = st.columns([324, 990], gap="small")
         with left, st.container(key="inputs"):
-            with guarded("readings"):
+            with st.container(key="readings"), guarded("readings"):
                 readings.draw()
-            with guarded("question"):
+            with st.container(key="question"), guarded("question"):
                 question.draw()
         with right:
-            for sentence in filter(None, (now.notice, now.trouble)):
-                say(sentence, "notice")
+            with st.container(key="notices"):
+                for sentence in filter(None, (now.notice, now.trouble)):
+                    say(sentence, "notice")
             found = panel.draw()
             with guarded("copies"):
                 under_panel.draw(found)

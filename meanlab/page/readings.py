@@ -14,7 +14,11 @@ BOX_HEIGHT_BESIDE_A_FILE = 68
 
 
 def draw() -> None:
-    """Draw the upper half of the left column."""
+    """Draw the upper half of the left column.
+
+    What comes and goes stands in containers that are always there: an element that moved would be made anew by the
+    browser, and lose what is being typed into it.
+    """
     with st.container(key="openers", horizontal=True, gap="small"):
         st.file_uploader("From a file", key="readings_file", label_visibility="collapsed", on_change=_opened)
         samples_opener.draw()
@@ -28,11 +32,12 @@ def draw() -> None:
         label_visibility="collapsed",
         placeholder="Paste here to use typed readings" if beside_file else "Paste the readings, one a line",
     )
-    with guarded("file"):
+    with st.container(key="file_choice"), guarded("file"):
         file_choice.draw()
-    with guarded("readings"):
+    with st.container(key="counts"), guarded("readings"):
         _counts(intake())
-    _put_back()
+    with st.container(key="put_back_row"):
+        _put_back()
 
 
 def intake() -> Intake | None:
@@ -61,8 +66,9 @@ def _label_row() -> None:
     now = state.working()
     with st.container(key="label_row", horizontal=True, vertical_alignment="center"):
         st.html('<span class="ml-label">Readings, one a line</span>')
-        if now.fields["readings_text"].strip() or now.file is not None:
-            st.button("Clear", key="clear", type="tertiary", on_click=state.clear)
+        with st.container(key="clear_place", width="content"):
+            if now.fields["readings_text"].strip() or now.file is not None:
+                st.button("Clear", key="clear", type="tertiary", on_click=state.clear)
         st.html(f'<span class="ml-saved" role="status">{html.escape(_saved())}</span>')
 
 

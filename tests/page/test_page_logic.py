@@ -166,9 +166,9 @@ def test_a_limit_set_after_the_result_is_said_unless_it_was_fixed_before(twelve)
     """The sentence says so; the technician can state that the limit was fixed before measuring."""
     page = typed(opened(), twelve, "5.000")
     page.text_input(key="limit").set_value("0.05").run()
-    assert "set after the readings were seen" in said(page)
+    assert "Set after the readings were seen" in said(page)
     page.checkbox(key="fixed_before").check().run()
-    assert "set after the readings were seen" not in said(page)
+    assert "Set after the readings were seen" not in said(page)
 
 
 def test_a_place_that_cannot_be_written_is_said_and_the_page_works_on(twelve, tmp_path, monkeypatch):
@@ -212,7 +212,8 @@ def test_markup_stays_text(twelve):
 
 
 @pytest.mark.parametrize(
-    "part", ["What was read", "Checks", "Same readings, other procedures", "Enough readings?", "Uncertainty", "Agreement"]
+    "part",
+    ["What was read", "Checks", "Same readings, other procedures", "Enough readings?", "Uncertainty", "Agreement"],
 )
 def test_every_lower_part_can_be_drawn_with_and_without_a_result(part, twelve):
     """No part needs a result to say what it is for."""
