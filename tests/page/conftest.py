@@ -36,6 +36,10 @@ QUIET = (
 )
 TWELVE = "5.012\n5.043\n5.028\n5.009\n5.051\n5.017\n5.026\n5.033\n4.998\n4.987\n5.021\n5.034"
 SCREEN = {"width": 1366, "height": 650}
+PUT = """(box, text) => {
+  Object.getOwnPropertyDescriptor(HTMLTextAreaElement.prototype, "value").set.call(box, text);
+  box.dispatchEvent(new Event("input", { bubbles: true }));
+}"""
 HOME = ("localhost", "127.0.0.1", "[::1]", "")
 
 
@@ -143,7 +147,8 @@ def twelve() -> str:
 def paste(page: Page, text: str) -> None:
     """Put a text into the box as a paste does, and leave it."""
     box = page.locator(".st-key-readings_text textarea")
-    box.fill(text)
+    box.focus()
+    box.evaluate(PUT, text)
     box.blur()
 
 
