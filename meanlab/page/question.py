@@ -76,10 +76,9 @@ def _what_one_reading_is() -> None:
         placeholder="e.g. one independent preparation",
         help="n counts what was prepared independently. Injections of one preparation are no independent readings.",
     )
-    left, right = st.columns(2, gap="small", vertical_alignment="bottom")
-    left.selectbox("Conditions", asked.CONDITIONS, key="conditions")
-    right.checkbox(
-        "In order of measurement",
+    st.selectbox("Conditions", asked.CONDITIONS, key="conditions")
+    st.checkbox(
+        "Typed in the order of measurement",
         key="run_order",
         help="Ticked, drift and dependence between neighbours are looked for.",
     )
@@ -119,9 +118,9 @@ def _known_sigma() -> None:
 
 
 def _limits() -> None:
-    left, right = st.columns(2, gap="small")
+    left, right = st.columns([2, 3], gap="small")
     left.text_input(
-        "Equivalence limit E",
+        "Limit E",
         key="limit",
         help="Agreement is claimed only where the mean is shown to lie within target ± E. Set it before measuring.",
     )
@@ -131,9 +130,10 @@ def _limits() -> None:
         help="The smallest true difference that must not be missed.",
     )
     st.checkbox(
-        "Side and limits were fixed before measuring",
+        "Side and limits fixed before",
         key="fixed_before",
-        help="Otherwise what is changed after a result was shown is said in the sentence.",
+        help="Tick where the side asked and the limits were fixed before measuring. Otherwise what is changed after a "
+        "result was shown is said in the sentence.",
     )
 
 
@@ -148,7 +148,7 @@ def _procedure() -> None:
     )
     right.selectbox("Speaks of the", ("mean", "median"), key="parameter")
     st.text_input(
-        "Resolution of the readings",
+        "Resolution",
         key="resolution",
-        help="The step of the display, where the digits typed do not show it.",
+        help="The step of the instrument's display, where the digits typed do not show it.",
     )

@@ -83,6 +83,7 @@ def _saved() -> str:
 
 def _counts(found: Intake | None) -> None:
     if found is None:
+        st.html('<p class="ml-counts" role="status">&nbsp;</p>')
         return
     if found.refused:
         say(found.reason)

@@ -6,7 +6,14 @@ _CSS = """
 .block-container, [data-testid="stMainBlockContainer"] { padding: 0.5rem 1.25rem 2rem 1.25rem; max-width: 1500px; }
 [data-testid="stHeader"] { display: none; }
 .st-key-inputs, .st-key-inputs [data-testid="stVerticalBlock"] { gap: 0.35rem; }
-.st-key-page > [data-testid="stLayoutWrapper"] > [data-testid="stHorizontalBlock"] { gap: 1rem; }
+[data-testid="stColumn"]:has(.st-key-inputs) { flex: 0 0 324px; width: 324px; min-width: 0; }
+[data-testid="stColumn"]:has(.st-key-panel) { flex: 1 1 640px; min-width: 0; max-width: 1160px; }
+@media (max-width: 1040px) {
+  [data-testid="stHorizontalBlock"]:has(> [data-testid="stColumn"] .st-key-inputs) { flex-direction: column; }
+  [data-testid="stColumn"]:has(.st-key-inputs), [data-testid="stColumn"]:has(.st-key-panel) {
+    flex: 1 1 auto; width: 100%; max-width: none;
+  }
+}
 .st-key-inputs label p, .ml-label { font-size: 14px; }
 .st-key-inputs label { min-height: 1.2rem; margin-bottom: 1px; }
 .ml-saved, .ml-counts { font-size: 13px; }
