@@ -2,7 +2,7 @@
 
 import streamlit as st
 
-from meanlab.page import cache, panel, parts, question, readings, state, styles, under_panel
+from meanlab.page import cache, focus, panel, parts, question, readings, state, styles, under_panel
 from meanlab.page.guard import guarded, say
 
 
@@ -26,6 +26,7 @@ def show() -> None:
                 under_panel.draw(found)
     with guarded("lower part"):
         parts.draw(found)
+    focus.draw()
     state.keep()
 
 

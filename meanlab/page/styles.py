@@ -26,7 +26,29 @@ _CSS = """
 .st-key-openers > div { width: auto !important; flex: 0 0 auto; }
 [data-testid="stFileUploaderDropzone"] { padding: 0; border: none; background: none; min-height: 0; gap: 0; }
 [data-testid="stFileUploaderDropzoneInstructions"], [data-testid="stFileUploader"] > label { display: none; }
+.st-key-readings_file [data-testid="stFileChip"]:not([aria-invalid="true"]),
+.st-key-readings_file:has([data-testid="stFileChip"]:not([aria-invalid="true"])) [aria-invalid="true"] { display: none; }
+.st-key-readings_file button[aria-label="Add files"] {
+  width: auto; min-height: 37px; padding: 0 12px; border: 1px solid; border-radius: 2px; font-size: 14px; color: inherit;
+}
+.st-key-readings_file [data-testid="stFileChips"] { gap: 0; margin: 0; padding: 0; }
+.st-key-readings_file button[aria-label="Add files"] > * { display: none; }
+.st-key-readings_file button[aria-label="Add files"]::after { content: "Upload"; }
+.st-key-readings_file:has([aria-invalid="true"]):not(:has([data-testid="stFileChip"]:not([aria-invalid="true"]))) {
+  flex: 1 0 100% !important;
+}
+.st-key-readings_file [aria-invalid="true"], .st-key-readings_file [aria-invalid="true"] ~ * { max-width: none; }
+.st-key-readings_file [data-testid="stFileChips"] *:has(> [aria-invalid="true"]) { max-width: none; width: 100% !important; }
+.st-key-readings_file [aria-invalid="true"] { flex-wrap: wrap; height: auto; width: 100%; }
+.st-key-readings_file [aria-invalid="true"] [role="alert"] {
+  position: static; width: 100%; height: auto; clip: auto; clip-path: none; margin: 0; padding: 4px; white-space: normal;
+  overflow: visible; font-size: 14px; line-height: 20px;
+}
+.st-key-readings_file [aria-invalid="true"] [role="alert"]::after {
+  content: " Save the sheet with the readings as a file of its own, or paste the column.";
+}
 .st-key-readings_file, .st-key-readings_file [data-testid="stFileUploader"] { width: auto !important; }
+.st-key-focus { position: absolute; height: 0; overflow: hidden; }
 .st-key-label_row { gap: 0.5rem; min-height: 24px; }
 .st-key-label_row > div:last-child { margin-left: auto; }
 .st-key-label_row button, .st-key-put_back button { min-height: 22px; padding: 0; font-size: 13px; }
