@@ -35,7 +35,8 @@ def draw(_found: Outcome | None) -> None:
 
 def _rows(found: Intake) -> list[tuple[str, ...]]:
     out = dict(readings.left_out(found))
-    plain, special = [], []
+    plain: list[tuple[str, ...]] = []
+    special: list[tuple[str, ...]] = []
     for entry in found.entries:
         cause = out.get(entry.index)
         role = entry.role if cause is None else f"left out: {cause}"

@@ -5,109 +5,21 @@ The only file that says session_state. Widgets take their value from here: their
 
 from collections.abc import Mapping
 from copy import deepcopy
-from dataclasses import dataclass, field
-from datetime import datetime
 from hashlib import sha256
-from types import MappingProxyType
 from typing import Any
 
 import streamlit as st
 
 from meanlab.core.complaints import NotebookComplaint
 from meanlab.page import cache
+from meanlab.page.fields import FIELDS, PICKS, READINGS_FIELDS
+from meanlab.page.working import Working, alike, digests, empty, nothing_typed, replaced
 
-FIELDS: Mapping[str, Any] = MappingProxyType(
-    {
-        # the readings
-        "readings_text": "",
-        "decimal_sign": "as written",
-        "sheet": None,
-        "column": None,
-        "replicates": [],
-        "filter_column": None,
-        "filter_value": None,
-        # the question
-        "target": "",
-        "unit": "",
-        "target_kind": "nominal value",
-        "significance": "5 %",
-        "alternative": "two-sided",
-        "quantity": "",
-        "material": "",
-        # what else is known
-        "units_are": "",
-        "conditions": "not stated",
-        "run_order": False,
-        "certificate_value": "",
-        "certificate_meaning": "not given",
-        "certificate_k": "",
-        "certificate_df": "",
-        "historical_count": "",
-        "own_uncertainty": "",
-        "sigma": "",
-        "sigma_origin": "",
-        "sigma_df": "",
-        "limit": "",
-        "matters": "",
-        "procedure": "rule",
-        "parameter": "mean",
-        "resolution": "",
-        "fixed_before": False,
-        # below the panel
-        "part": "What was read",
-        "plan_kind": "a difference that matters",
-        "plan_difference": "",
-        "plan_limit": "",
-        "plan_true": "",
-        "plan_half_width": "",
-        "plan_s": "",
-        "plan_power": "80 %",
-    }
-)
-READINGS_FIELDS = (
-    "readings_text",
-    "decimal_sign",
-    "sheet",
-    "column",
-    "replicates",
-    "filter_column",
-    "filter_value",
-)
-PICKS = READINGS_FIELDS[1:]
 MOST_COMPARED = 1_000  # entries looked at to tell a further look from other readings
 MOST_KEPT_CHARACTERS = 10_000_000
 ADDRESS = "nb"
 _WORKING = "working"
 _FILES = "files"
-
-
-@dataclass
-class Working:
-    """One visitor's page: the value of every field, and what has no field of its own.
-
-    file      name and digest of the file in use, None where the readings are typed
-    left_out  {place of the entry: {"text": as typed, "cause": why}}
-    previous  what a clear, a replace or an opened sample set took away, None where nothing was
-    first     the parts of the question as they stood when these readings first had a result
-    looks     how many results these readings had while they grew
-    """
-
-    fields: dict[str, Any]
-    file: dict[str, str] | None = None
-    left_out: dict[str, dict[str, str]] = field(default_factory=dict)
-    previous: dict[str, Any] | None = None
-    first: dict[str, Any] | None = None
-    looks: int = 1
-    key: str = ""
-    saved: datetime | None = None
-    trouble: str = ""
-    notice: str = ""
-    last_kept: str = ""
-
-    @property
-    def first_parts(self) -> Mapping[str, Any]:
-        """The parts of the question at the first result of these readings."""
-        return {} if self.first is None else self.first["parts"]
 
 
 def begin() -> Working:
@@ -218,7 +130,7 @@ def start_afresh() -> None:
     """Begin an empty page under an address of its own; the one before stays under its address."""
     st.query_params.pop(ADDRESS, None)
     st.session_state[_FILES] = {}
-    st.session_state[_WORKING] = _empty()
+    st.session_state[_WORKING] = empty()
     for name, default in FIELDS.items():
         put(name, deepcopy(default))
 
@@ -231,7 +143,7 @@ def saw_result(parts: Mapping[str, Any], entries: tuple[str, ...]) -> Working:
     now = working()
     marks = [sha256(entry.encode()).hexdigest()[:12] for entry in entries]
     before = None if now.first is None else now.first["entries"]
-    if before is None or not _alike(before, marks):
+    if before is None or not alike(before, marks):
         now.first, now.looks = {"parts": dict(parts), "entries": marks}, 1
         return now
     if len(marks) > len(before) and marks[: len(before)] == before:
@@ -258,15 +170,15 @@ def keep() -> None:
         "looks": now.looks,
     }
     mark = sha256(repr(content).encode()).hexdigest()
-    if mark == now.last_kept or (not now.key and _nothing_typed(now)):
+    if mark == now.last_kept or (not now.key and nothing_typed(now)):
         return
     try:
         states = cache.working_states()
         key = now.key or states.new_key()
-        for digest in _digests(now):
+        for digest in digests(now):
             if digest in st.session_state[_FILES]:
                 states.keep_file(key, st.session_state[_FILES][digest])
-        now.saved = states.keep(key, content, _digests(now))
+        now.saved = states.keep(key, content, digests(now))
     except NotebookComplaint as complaint:
         now.trouble = f"Not saved. {complaint}"
         return
@@ -276,7 +188,7 @@ def keep() -> None:
 
 def _brought_back() -> Working:
     key = st.query_params.get(ADDRESS, "")
-    now = _empty()
+    now = empty()
     if not key or not cache.kept_on_this_address():
         return now
     try:
@@ -291,21 +203,13 @@ def _brought_back() -> Working:
         now.previous = kept.state["previous"]
         now.first, now.looks = kept.state.get("first"), kept.state.get("looks", 1)
         now.key, now.saved = key, kept.saved
-        for digest in _digests(now):
+        for digest in digests(now):
             content = states.load_file(key, digest)
             if content is not None:
                 st.session_state[_FILES][digest] = content
     except NotebookComplaint as complaint:
         now.trouble = str(complaint)
     return now
-
-
-def _empty() -> Working:
-    return Working(fields=deepcopy(dict(FIELDS)))
-
-
-def _nothing_typed(now: Working) -> bool:
-    return now.fields == dict(FIELDS) and now.file is None and now.previous is None
 
 
 def _take_in(now: Working, name: str, given: Any) -> None:
@@ -317,7 +221,7 @@ def _take_in(now: Working, name: str, given: Any) -> None:
             _set_aside("readings were pasted in place of a file")
             now.file = None
             now.left_out, now.first = {}, None
-        elif _replaced(before, given):
+        elif replaced(before, given):
             _set_aside("the readings were replaced")
             now.left_out = {}
     elif name == "readings_text" and before.strip():
@@ -325,17 +229,6 @@ def _take_in(now: Working, name: str, given: Any) -> None:
         now.left_out = {}
         _forget_looks()
     now.fields[name] = given
-
-
-def _replaced(before: str, given: str) -> bool:
-    """A new text with fewer than half of the old lines is another set of readings, not a correction."""
-    old, new = before.split(), set(given.split())
-    return bool(old) and sum(word in new for word in old) < len(old) / 2
-
-
-def _alike(before: list[str], entries: list[str]) -> bool:
-    known = set(before)
-    return sum(entry in known for entry in entries) >= len(before) / 2
 
 
 def _set_aside(cause: str, with_question: bool = False) -> None:
@@ -369,8 +262,3 @@ def _empty_readings() -> None:
 def _forget_looks() -> None:
     now = working()
     now.first, now.looks = None, 1
-
-
-def _digests(now: Working) -> tuple[str, ...]:
-    files = (now.file, (now.previous or {}).get("file"))
-    return tuple(file["digest"] for file in files if file)

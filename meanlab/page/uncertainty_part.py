@@ -40,7 +40,7 @@ def _nothing(found: Outcome | None) -> str:
 
 def _rows(found: Outcome, budget: Uncertainty) -> list[tuple[str, ...]]:
     sign = found.texts.numbers.sign
-    rows = [
+    rows: list[tuple[str, ...]] = [
         (part.name, _in_unit(found, part.u), _degrees(part.df, sign), _share(part.share, sign))
         for part in budget.components
     ]

@@ -7,7 +7,7 @@ import pytest
 
 from meanlab.core.complaints import QuestionComplaint
 from meanlab.page import asked
-from meanlab.page.state import FIELDS
+from meanlab.page.fields import FIELDS
 
 
 def fields(**given):

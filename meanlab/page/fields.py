@@ -1,0 +1,64 @@
+"""Every field of the page with its default; the name of a field is the key of its widget."""
+
+from collections.abc import Mapping
+from types import MappingProxyType
+from typing import Any
+
+FIELDS: Mapping[str, Any] = MappingProxyType(
+    {
+        # the readings
+        "readings_text": "",
+        "decimal_sign": "as written",
+        "sheet": None,
+        "column": None,
+        "replicates": [],
+        "filter_column": None,
+        "filter_value": None,
+        # the question
+        "target": "",
+        "unit": "",
+        "target_kind": "nominal value",
+        "significance": "5 %",
+        "alternative": "two-sided",
+        "quantity": "",
+        "material": "",
+        # what else is known
+        "units_are": "",
+        "conditions": "not stated",
+        "run_order": False,
+        "certificate_value": "",
+        "certificate_meaning": "not given",
+        "certificate_k": "",
+        "certificate_df": "",
+        "historical_count": "",
+        "own_uncertainty": "",
+        "sigma": "",
+        "sigma_origin": "",
+        "sigma_df": "",
+        "limit": "",
+        "matters": "",
+        "procedure": "rule",
+        "parameter": "mean",
+        "resolution": "",
+        "fixed_before": False,
+        # below the panel
+        "part": "What was read",
+        "plan_kind": "a difference that matters",
+        "plan_difference": "",
+        "plan_limit": "",
+        "plan_true": "",
+        "plan_half_width": "",
+        "plan_s": "",
+        "plan_power": "80 %",
+    }
+)
+READINGS_FIELDS = (
+    "readings_text",
+    "decimal_sign",
+    "sheet",
+    "column",
+    "replicates",
+    "filter_column",
+    "filter_value",
+)
+PICKS = READINGS_FIELDS[1:]

@@ -1,0 +1,70 @@
+"""One visitor's page as facts: the fields, the file, what was left out, what can be put back, and how they changed."""
+
+from collections.abc import Mapping
+from copy import deepcopy
+from dataclasses import dataclass, field
+from datetime import datetime
+from typing import Any
+
+from meanlab.page.fields import FIELDS
+
+
+@dataclass
+class Working:
+    """One visitor's page: the value of every field, and what has no field of its own.
+
+    file      name and digest of the file in use, None where the readings are typed
+    left_out  {place of the entry: {"text": as typed, "cause": why}}
+    previous  what a clear, a replace or an opened sample set took away, None where nothing was
+    first     the parts of the question as they stood when these readings first had a result
+    looks     how many results these readings had while they grew
+    """
+
+    fields: dict[str, Any]
+    file: dict[str, str] | None = None
+    left_out: dict[str, dict[str, str]] = field(default_factory=dict)
+    previous: dict[str, Any] | None = None
+    first: dict[str, Any] | None = None
+    looks: int = 1
+    key: str = ""
+    saved: datetime | None = None
+    trouble: str = ""
+    notice: str = ""
+    last_kept: str = ""
+
+    @property
+    def first_parts(self) -> Mapping[str, Any]:
+        """The parts of the question at the first result of these readings."""
+        return {} if self.first is None else self.first["parts"]
+
+
+def empty() -> Working:
+    """Return a page on which nothing was typed."""
+    return Working(fields=deepcopy(dict(FIELDS)))
+
+
+def nothing_typed(now: Working) -> bool:
+    """Tell whether a page is as it was when it was opened."""
+    return now.fields == dict(FIELDS) and now.file is None and now.previous is None
+
+
+def digests(now: Working) -> tuple[str, ...]:
+    """Return the digests of the files a page still needs: the one in use, and the one that can be put back."""
+    files = (now.file, (now.previous or {}).get("file"))
+    return tuple(file["digest"] for file in files if file)
+
+
+def replaced(before: str, given: str) -> bool:
+    """Tell whether a text is another set of readings: it holds fewer than half of the old lines, so is no correction.
+
+    >>> replaced("5.02 5.03 5.04", "5.02 5.30 5.04"), replaced("5.02 5.03 5.04", "7.1 7.2 7.3")
+    (False, True)
+    """
+    old, new = before.split(), set(given.split())
+    return bool(old) and sum(word in new for word in old) < len(old) / 2
+
+
+def alike(before: list[str], entries: list[str]) -> bool:
+    """Tell whether at least half of the entries before are still among the entries now."""
+    known = set(before)
+    return sum(entry in known for entry in entries) >= len(before) / 2
