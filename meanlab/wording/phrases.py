@@ -12,7 +12,7 @@ WITH_UNCERTAINTY = ("certified value", "historical level")
 
 
 def opening_phrase(analysis: Analysis, numbers: Shown) -> str:
-    """Return "The mean of 12 independent readings of Nitrate in NC-7, 5.022 mg/L (95 % interval …)"."""
+    """Return "The mean of 12 readings of Nitrate in NC-7, 5.022 mg/L (95 % interval …)"."""
     counted_units = f"{units_phrase(analysis)}{of_subject(analysis)}"
     return f"The {parameter_of(analysis)} of {counted_units}{value_and_interval(analysis, numbers)}"
 
@@ -31,12 +31,17 @@ def parameter_of(analysis: Analysis) -> str:
 
 
 def units_phrase(analysis: Analysis) -> str:
-    """Return n and what a unit is: "12 independent readings (weighings on one day; 1 left out, with cause)"."""
+    """Return n and what a unit is: "12 readings (weighings on one day; 1 left out, with cause)".
+
+    Independence is the technician's to know: where nothing was said about the units, the sentence says what it takes
+    for granted.
+    """
     summary, nested = analysis.summary, analysis.readings.preparations is not None
     remarks = [counted(summary.n_readings, "reading")] if nested else []
-    remarks += [described] if (described := plain_words(analysis.question.units_are)) else []
+    described = plain_words(analysis.question.units_are)
+    remarks += [described or "taken as independent"] if summary.n > 1 or described else []
     remarks += [f"{summary.left_out} left out, with cause"] if summary.left_out else []
-    text = counted(summary.n, "independent preparation" if nested else "independent reading")
+    text = counted(summary.n, "preparation" if nested else "reading")
     return f"{text} ({'; '.join(remarks)})" if remarks else text
 
 
@@ -47,26 +52,30 @@ def of_subject(analysis: Analysis) -> str:
 
 
 def value_and_interval(analysis: Analysis, numbers: Shown) -> str:
-    """Return the estimate with its interval, as an apposition."""
+    """Return the estimate with its interval, or with its one bound for a one-sided question, as an apposition."""
     attained = f", attained {numbers.attained}" if numbers.attained else ""
-    interval = f"{numbers.interval_level} interval {numbers.interval}{attained}"
+    side = {"greater": "lower bound", "less": "upper bound"}.get(analysis.question.alternative, "interval")
+    ends = numbers.interval if side == "interval" else without_side(numbers.interval)
+    interval = f"{numbers.interval_level} {side} {ends or 'none'}{attained}"
     if numbers.estimate:
         return f", {numbers.estimate} ({interval})"
     return f" (which lies among the readings below or above a limit; {interval})"
 
 
-def difference_phrase(numbers: Shown) -> str:
-    """Return "+0.022 mg/L (+0.43 %)"."""
+def difference_phrase(numbers: Shown, bare: bool = False) -> str:
+    """Return "+0.022 mg/L (+0.43 %)"; ``bare``, for a place beside other brackets, "+0.022 mg/L, +0.43 %"."""
     if not numbers.difference:
         return "not defined"
     relative = numbers.percent
     if relative and numbers.unit == "%":
         relative = f"{relative} of the target"
-    return f"{numbers.difference} ({relative})" if relative else numbers.difference
+    if not relative:
+        return numbers.difference
+    return f"{numbers.difference}, {relative}" if bare else f"{numbers.difference} ({relative})"
 
 
 def scatter_phrase(analysis: Analysis, numbers: Shown) -> str:
-    """Return "12 independent readings with a standard deviation of 0.0183 mg/L"."""
+    """Return "12 readings with a standard deviation of 0.0183 mg/L"."""
     s = significant(analysis.power.planning_s or 0.0, DIGITS_OF_S, numbers.sign)
     return f"{units_phrase(analysis)} with a standard deviation of {unit_text(s, numbers.unit)}"
 
@@ -130,8 +139,16 @@ def bound_phrase(analysis: Analysis, numbers: Shown) -> str:
     side = {"greater": "upper bound", "less": "lower bound"}.get(analysis.question.alternative)
     if side is None:
         return f"its {numbers.agreement_level} interval for agreement, {numbers.agreement}"
-    bound = numbers.agreement.removeprefix("at most ").removeprefix("at least ")
-    return f"its {numbers.agreement_level} {side}, {bound}"
+    return f"its {numbers.agreement_level} {side}, {without_side(numbers.agreement)}"
+
+
+def without_side(bounds: str) -> str:
+    """Return the number of a one-sided interval; "" where it has no bound.
+
+    >>> without_side("at least 5.01 mg/L"), without_side("without bounds")
+    ('5.01 mg/L', '')
+    """
+    return bounds.removeprefix("at most ").removeprefix("at least ").removeprefix("without bounds")
 
 
 def leaves_target_uncertainty_out(analysis: Analysis) -> bool:

@@ -45,6 +45,8 @@ def verdict_word(analysis: Analysis) -> str:
     key = verdict_key(analysis)
     if key.startswith("cannot tell") or key == "undecided":
         return "cannot tell"
+    if key == "differs, with a limit":
+        key = "differs"
     if key == "not testable":
         return key
     noun = short_noun(analysis.question.target_kind)
@@ -62,6 +64,8 @@ def verdict_key(analysis: Analysis) -> str:
         return "cannot tell, with a limit" if limit and analysis.equivalence is not None else "cannot tell"
     if verdict == "agrees" and question.alternative != "two-sided" and limit:
         return "agrees, with a limit"
+    if verdict == "differs" and limit and analysis.equivalence is not None:
+        return "differs, with a limit"
     return verdict
 
 
@@ -158,16 +162,18 @@ def _word_of(without: Without, question: Question | None) -> str:
 
 
 def _parts(analysis: Analysis, numbers: Shown) -> dict[str, str]:
+    two_sided = analysis.question.alternative == "two-sided"
     return {
         "opening": opening_phrase(analysis, numbers),
         "target": target_phrase(analysis, numbers),
         "difference": difference_phrase(numbers),
+        "plain_difference": difference_phrase(numbers, bare=True),
         "figures": figures_phrase(analysis, numbers),
         "sides": sides_phrase(analysis, numbers),
         "missed": missed_phrase(analysis, numbers),
         "limit": numbers.limit,
         "bound": bound_phrase(analysis, numbers),
-        "agreeing": f"{numbers.p_agreement} for agreement",
+        "agreeing": f"{numbers.p_agreement} for {'agreement' if two_sided else 'that'}",
         "cause": cause_of_no_decision(analysis, numbers.sign, analysis.question.alpha),
     }
 

@@ -3,15 +3,15 @@
 A template is a frame for the verdict with the evidence of the family in it. Names in braces are filled by
 sentences.py:
 
-    opening     "The mean of 12 independent readings of Nitrate in NC-7, 5.022 mg/L (95 % interval …)"
+    opening     "The mean of 12 readings of Nitrate in NC-7, 5.022 mg/L (95 % interval …)"
     target      "the certified value 5.000 mg/L", exactly as typed
-    difference  "+0.022 mg/L (+0.43 %)"
+    difference  "+0.022 mg/L (+0.43 %)"; plain_difference "+0.022 mg/L, +0.43 %"
     figures     "t(11) = 4.08, p = 0.0018, level 5 %; scatter of these readings only"
     sides       "9 of 10 lie above it"
     missed      what could have been missed
     limit       the equivalence limit E as typed
     bound       the interval held against the limits, with its level
-    agreeing    "p < 0.001 for agreement"
+    agreeing    "p < 0.001 for agreement"; one-sided "p < 0.001 for that"
 """
 
 from collections.abc import Mapping
@@ -29,17 +29,17 @@ _EVIDENCE: Mapping[str, tuple[str, str, str]] = {
     "mean": (
         "the difference of {difference} is more than scatter explains ({figures})",
         "the difference of {difference} is not more than scatter explains ({figures})",
-        "the difference is {difference} ({figures})",
+        "the difference is {plain_difference} ({figures})",
     ),
     "centre of symmetry": (
         "the difference of {difference} is more than scatter about a symmetric centre explains ({figures})",
         "the difference of {difference} is not more than scatter about a symmetric centre explains ({figures})",
-        "the difference is {difference} ({figures})",
+        "the difference is {plain_difference} ({figures})",
     ),
     "median": (
-        "{sides}, more to one side than chance explains (difference {difference}; {figures})",
-        "{sides}, which chance alone can bring about (difference {difference}; {figures})",
-        "{sides} (difference {difference}; {figures})",
+        "{sides}, more to one side than chance explains (difference {plain_difference}; {figures})",
+        "{sides}, which chance alone can bring about (difference {plain_difference}; {figures})",
+        "{sides} (difference {plain_difference}; {figures})",
     ),
 }
 
@@ -67,6 +67,10 @@ _SIDES: Mapping[str, Mapping[str, str]] = {
 
 _TWO_SIDED: Mapping[str, tuple[str, int]] = {
     "differs": ("{opening}, differs from {target}: {evidence}.", 0),
+    "differs, with a limit": (
+        "{opening}, differs from {target}: {evidence}; {bound}, does not lie within ± {limit} of it ({agreeing}).",
+        0,
+    ),
     "differs, within the limit": (
         "{opening}, differs from {target}, but by less than {limit}: {evidence}; {bound}, lies within ± {limit} of it "
         "({agreeing}).",
@@ -87,6 +91,11 @@ _TWO_SIDED: Mapping[str, tuple[str, int]] = {
 
 _ONE_SIDED: Mapping[str, tuple[str, int]] = {
     "differs": ("{opening}, [exceeds] {target}: {evidence}.", 0),
+    "differs, with a limit": (
+        "{opening}, [exceeds] {target}: {evidence}; that it does so by less than {limit} is not shown: {bound} "
+        "({agreeing}).",
+        0,
+    ),
     "differs, within the limit": (
         "{opening}, [exceeds] {target}, by less than {limit}: {evidence}; {bound}, keeps to that ({agreeing}).",
         0,

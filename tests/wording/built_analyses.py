@@ -22,7 +22,7 @@ from meanlab.core.results import (
     Uncertainty,
 )
 
-NITRATE = "5.012 5.043 5.028 5.009 5.051 5.017 5.026 5.033 4.998 5.021 5.034 4.987".split()
+NITRATE = ["5.012", "5.043", "5.028", "5.009", "5.051", "5.017", "5.026", "5.033", "4.998", "5.021", "5.034", "4.987"]
 PARAMETERS = {"signed_rank": "centre of symmetry", "sign": "median"}
 MINUTE = "2026-12-01T05:30:12+00:00"
 FINGERPRINT = "3f9a61c022be" + "0" * 52
@@ -75,7 +75,9 @@ def test_of(x, question, procedure):
         above, below = int((x > target).sum()), int((x < target).sum())
         if procedure == "sign":
             statistic, critical = float(above), (2.0, n - 2.0)
-            tails = tuple(stats.binomtest(above, above + below, alternative=side).pvalue for side in ("greater", "less"))
+            tails = tuple(
+                stats.binomtest(above, above + below, alternative=side).pvalue for side in ("greater", "less")
+            )
         else:
             ranks = stats.rankdata(np.abs(x - target))
             statistic, critical = float(ranks[x > target].sum()), (13.0, 65.0)
