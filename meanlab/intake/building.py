@@ -49,11 +49,12 @@ class SheetBuilder:
     def __init__(self, name: str, room: Room, hidden: bool = False) -> None:
         self.name = shown_text(name)
         self.hidden = hidden
-        self.hidden_rows: set[int] = set()
+        self.hidden_row_ranges: set[tuple[int, int]] = set()
         self.hidden_columns: set[tuple[int, int]] = set()
         self.struck: list[str] = []
         self.comments: list[tuple[str, str]] = []
         self.twice: list[str] = []
+        self.merged: list[tuple[int, int, int]] = []
         self._room = room
         self._rows: dict[int, dict[int, Cell]] = {}
 
@@ -71,16 +72,18 @@ class SheetBuilder:
         """The cell at one place so far."""
         return self._rows.get(row, {}).get(column, EMPTY)
 
-    def fill_down(self, first_row: int, last_row: int, column: int) -> None:
+    def _fill_merged(self) -> None:
         """Repeat the text of a cell merged over several rows in each of them; a number stays one reading."""
-        cell = self.at(first_row, column)
-        if cell.kind == "text" and cell.text and last_row - first_row <= _ROW_GAP:
-            for row in range(first_row + 1, last_row + 1):
-                if not self.at(row, column).text:
-                    self.put(row, column, cell)
+        for first_row, last_row, column in self.merged:
+            cell = self.at(first_row, column)
+            if cell.kind == "text" and cell.text and last_row - first_row <= _ROW_GAP:
+                for row in range(first_row + 1, last_row + 1):
+                    if row in self._rows and column not in self._rows[row]:
+                        self.put(row, column, cell)
 
     def sheet(self) -> Sheet:
         """The finished sheet; a cell far from all others is left out, which a remark tells."""
+        self._fill_merged()
         strays: list[str] = []
         last_row = _before_gap(self._rows, _ROW_GAP)
         last_column = _before_gap({column for cells in self._rows.values() for column in cells}, _COLUMN_GAP)
@@ -98,12 +101,23 @@ class SheetBuilder:
             name=self.name,
             rows=rows,
             hidden=self.hidden,
-            hidden_rows=frozenset(row for row in self.hidden_rows if row in self._rows and row <= last_row),
+            hidden_rows=self._hidden_rows(last_row),
             hidden_columns=frozenset(
                 column for first, last in self.hidden_columns for column in range(first, min(last, last_column) + 1)
             ),
             remarks=tuple(self._remarks(strays)),
         )
+
+    def _hidden_rows(self, last_row: int) -> frozenset[int]:
+        spans = sorted(self.hidden_row_ranges)
+        hidden, place, reach = [], 0, -1
+        for row in sorted(row for row in self._rows if row <= last_row):
+            while place < len(spans) and spans[place][0] <= row:
+                reach = max(reach, spans[place][1])
+                place += 1
+            if row <= reach:
+                hidden.append(row)
+        return frozenset(hidden)
 
     def _remarks(self, strays: list[str]) -> Iterable[str]:
         if strays:

@@ -70,7 +70,7 @@ class NumberFormat:
             return Cell(date_text(number, since_1904), "date")
         if not section.shows_number and section.before:
             return Cell(section.before)
-        return _number_cell(number, section)
+        return number_cell(number, section)
 
     def _section_for(self, number: float) -> Section:
         numeric = self.sections[:3]
@@ -121,7 +121,8 @@ def with_decimals(text: str, decimals: int) -> str:
     return f"{Decimal(text):.{decimals}f}"
 
 
-def _number_cell(number: float, section: Section) -> Cell:
+def number_cell(number: float, section: Section) -> Cell:
+    """The cell of a stored number shown as one section of a format says."""
     text = number_text(number)
     computed = len(Decimal(text).as_tuple().digits) > _INSTRUMENT_DIGITS
     if section.percent:

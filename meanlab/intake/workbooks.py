@@ -1,13 +1,38 @@
 """Workbook files: which kind a file is, judged by its content, and its sheets."""
 
 from meanlab.core.complaints import IntakeComplaint
+from meanlab.intake.child import sheets_from_child
+from meanlab.intake.containers import workbook_kind
 from meanlab.intake.grid import Sheet
+from meanlab.intake.ods import read_ods
 from meanlab.intake.parts import Parts
 from meanlab.intake.xlsx import read_xlsx
 
+SMALL = 8 * 2**20
+
 
 def sheets_of(data: bytes, filename: str = "") -> tuple[Sheet, ...]:
-    """The sheets of a workbook file; raises IntakeComplaint when it is none, damaged, locked or too large."""
-    if not data:
-        raise IntakeComplaint("The file is empty. Choose the file that holds the readings.")
-    return read_xlsx(Parts(data))
+    """The sheets of a workbook file; raises IntakeComplaint when it is none, damaged, locked or too large.
+
+    Small .xlsx and .ods files are read here: their reader counts what it takes. Everything else is read in a child
+    process with limits.
+    """
+    kind, parts = workbook_kind(data, filename)
+    if parts is not None and kind != "xlsb" and parts.unpacked <= SMALL:
+        sheets = read_xlsx(parts) if kind == "xlsx" else read_ods(parts)
+    else:
+        sheets = sheets_from_child(data, kind)
+    if not any(sheet.rows for sheet in sheets):
+        raise IntakeComplaint("The workbook holds no filled cell. Choose the workbook that holds the readings.")
+    return sheets
+
+
+def read_kind(data: bytes, kind: str) -> tuple[Sheet, ...]:
+    """The sheets of a workbook of a known kind, read in this process: for the child process alone."""
+    if kind == "xlsx":
+        return read_xlsx(Parts(data))
+    if kind == "ods":
+        return read_ods(Parts(data))
+    from meanlab.intake.old_workbooks import read_old_workbook
+
+    return read_old_workbook(data)

@@ -214,7 +214,7 @@ class _Cells(Walker):
         self._row = _whole(attributes.get("r"), self._row + 2) - 1
         self._column = -1
         if attributes.get("hidden") in _TRUE or _size(attributes.get("ht")) == 0:
-            self._builder.hidden_rows.add(self._row)
+            self._builder.hidden_row_ranges.add((self._row, self._row))
 
     def _begin_cell(self, attributes: Attributes) -> None:
         place = _place(attributes.get("r", ""))
@@ -228,7 +228,7 @@ class _Cells(Walker):
         first, _, last = reference.partition(":")
         begin, end = _place(first), _place(last)
         if begin and end and end[0] > begin[0]:
-            self._builder.fill_down(begin[0], end[0], begin[1])
+            self._builder.merged.append((begin[0], end[0], begin[1]))
 
     def _cell(self) -> Cell:
         kind = self._attributes.get("t", "n")

@@ -1,0 +1,155 @@
+"""Reads a workbook in a process of its own, so that a hostile or huge file can end that process and nothing else.
+
+The parent sends the file through standard input and gets the sheets back as JSON. The child limits its own memory and
+processor time where the system knows such limits, and the parent ends it when it takes longer or more all the same.
+
+    python -m meanlab.intake.child xlsb < file
+"""
+
+import json
+import os
+import subprocess
+import sys
+import time
+from pathlib import Path
+
+from meanlab.core.complaints import IntakeComplaint
+from meanlab.intake.grid import EMPTY, Cell, Sheet
+
+SECONDS = 30
+MEMORY = 1536 * 2**20
+_LOOK_EVERY = 0.1
+_ROOT = Path(__file__).resolve().parents[2]
+
+
+def sheets_from_child(data: bytes, kind: str, seconds: float = SECONDS, memory: int = MEMORY) -> tuple[Sheet, ...]:
+    """The sheets of a workbook of this kind, read by a child process within so many seconds and bytes of memory.
+
+    Raises IntakeComplaint for what the child complains of, and when it had to be ended or ended itself.
+    """
+    child = subprocess.Popen(
+        [sys.executable, "-m", "meanlab.intake.child", kind, str(memory), str(seconds)],
+        stdin=subprocess.PIPE,
+        stdout=subprocess.PIPE,
+        stderr=subprocess.DEVNULL,
+        env={**os.environ, "PYTHONPATH": os.pathsep.join([str(_ROOT), *filter(None, sys.path)])},
+        creationflags=getattr(subprocess, "CREATE_NO_WINDOW", 0),
+    )
+    try:
+        answer = _answer(child, data, seconds, memory)
+    finally:
+        child.kill()
+        child.wait()
+    if child.returncode not in (0, None) or not answer:
+        raise _too_much(memory, seconds)
+    return _unpacked(json.loads(answer))
+
+
+def _answer(child: "subprocess.Popen[bytes]", data: bytes, seconds: float, memory: int) -> bytes:
+    end = time.monotonic() + seconds
+    to_send: bytes | None = data
+    while True:
+        try:
+            return child.communicate(to_send, timeout=_LOOK_EVERY)[0]
+        except subprocess.TimeoutExpired:
+            to_send = None
+        if time.monotonic() > end or _memory_of(child.pid) > memory:
+            raise _too_much(memory, seconds)
+
+
+def _memory_of(identity: int) -> int:
+    import psutil
+
+    try:
+        return int(psutil.Process(identity).memory_info().rss)
+    except psutil.Error:
+        return 0
+
+
+def _too_much(memory: int, seconds: float) -> IntakeComplaint:
+    return IntakeComplaint(
+        f"The workbook cannot be opened: it is damaged, or reading it takes more than {seconds:g} seconds or "
+        f"{memory // 2**20:,} MB of memory, which is the limit. Open it where it was made and save only the sheet "
+        "with the readings, as .xlsx or .csv."
+    )
+
+
+def packed(sheets: tuple[Sheet, ...]) -> list[list[object]]:
+    """Sheets as plain lists for JSON; a plain text cell is its text, rows without cells are counted."""
+    return [
+        [
+            sheet.name,
+            [[_packed_cell(cell) for cell in row] for row in sheet.rows],
+            sheet.hidden,
+            sorted(sheet.hidden_rows),
+            sorted(sheet.hidden_columns),
+            list(sheet.remarks),
+        ]
+        for sheet in sheets
+    ]
+
+
+def _packed_cell(cell: Cell) -> object:
+    if cell.kind == "text" and not cell.computed:
+        return cell.text
+    if cell.kind == "number" and not cell.computed:
+        return [cell.text]
+    return [cell.text, cell.kind, cell.computed]
+
+
+def _unpacked(answer: dict[str, object]) -> tuple[Sheet, ...]:
+    if "complaint" in answer:
+        raise IntakeComplaint(str(answer["complaint"]))
+    return tuple(
+        Sheet(
+            name,
+            [tuple(_unpacked_cell(cell) for cell in row) for row in rows],
+            hidden,
+            frozenset(hidden_rows),
+            frozenset(hidden_columns),
+            tuple(remarks),
+        )
+        for name, rows, hidden, hidden_rows, hidden_columns, remarks in answer["sheets"]  # type: ignore[attr-defined]
+    )
+
+
+def _unpacked_cell(packed_cell: str | list) -> Cell:
+    if packed_cell == "":
+        return EMPTY
+    if isinstance(packed_cell, str):
+        return Cell(packed_cell)
+    return Cell(packed_cell[0], "number") if len(packed_cell) == 1 else Cell(*packed_cell)
+
+
+def _limit_own_process(memory: int, seconds: float) -> None:
+    """Limit this process where the system can; elsewhere the parent watches alone."""
+    try:
+        import resource
+    except ImportError:
+        return
+    for limit, most in (
+        (resource.RLIMIT_AS, memory),
+        (resource.RLIMIT_CPU, int(seconds) + 2),
+        (resource.RLIMIT_CORE, 0),
+    ):
+        try:
+            resource.setrlimit(limit, (most, most))
+        except (ValueError, OSError):
+            continue
+
+
+def main(kind: str, memory: str, seconds: str) -> None:
+    """Read one workbook from standard input and write its sheets, or the complaint, to standard output as JSON."""
+    _limit_own_process(int(memory), float(seconds))
+    from meanlab.intake.workbooks import read_kind
+
+    data = sys.stdin.buffer.read()
+    try:
+        answer: dict[str, object] = {"sheets": packed(read_kind(data, kind))}
+    except IntakeComplaint as complaint:
+        answer = {"complaint": str(complaint)}
+    sys.stdout.buffer.write(json.dumps(answer, separators=(",", ":")).encode())
+
+
+if __name__ == "__main__":
+    main(*sys.argv[1:4])

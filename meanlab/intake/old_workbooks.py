@@ -1,0 +1,59 @@
+"""Workbooks of the older binary kinds (.xls, .xlsb), read by python-calamine.
+
+The library can ask for any amount of memory and end its whole process on a hostile file, so this module is only ever
+used by the child process (``child.py``).
+"""
+
+import datetime
+import io
+
+import python_calamine
+
+from meanlab.core.complaints import IntakeComplaint
+from meanlab.intake.building import Room, SheetBuilder, shown_text
+from meanlab.intake.grid import Cell, Sheet
+from meanlab.intake.number_formats import GENERAL, NumberFormat
+from meanlab.intake.parts import DAMAGED
+
+_ROWS_AT_ONCE = 1_048_576
+
+
+def read_old_workbook(data: bytes) -> tuple[Sheet, ...]:
+    """All sheets of an .xls or .xlsb workbook; raises IntakeComplaint when it is damaged or locked."""
+    try:
+        with python_calamine.load_workbook(io.BytesIO(data)) as book:
+            room = Room()
+            return tuple(
+                _sheet(book, about, room)
+                for about in book.sheets_metadata
+                if about.typ == python_calamine.SheetTypeEnum.WorkSheet
+            )
+    except python_calamine.PasswordError as error:
+        raise IntakeComplaint(
+            "The workbook is locked with a password. Open it, save it without a password and choose it again."
+        ) from error
+    except (python_calamine.CalamineError, ValueError, OSError) as error:
+        if isinstance(error, IntakeComplaint):
+            raise
+        raise IntakeComplaint(DAMAGED) from error
+
+
+def _sheet(book: python_calamine.CalamineWorkbook, about: python_calamine.SheetMetadata, room: Room) -> Sheet:
+    hidden = about.visible != python_calamine.SheetVisibleEnum.Visible
+    builder = SheetBuilder(about.name, room, hidden)
+    sheet = book.get_sheet_by_name(about.name)
+    plain = NumberFormat(GENERAL)
+    for row, values in enumerate(sheet.iter_rows()):
+        for column, value in enumerate(values):
+            builder.put(row, column, _cell(value, plain))
+    return builder.sheet()
+
+
+def _cell(value: object, plain: NumberFormat) -> Cell:
+    if isinstance(value, bool):
+        return Cell("TRUE" if value else "FALSE", "boolean")
+    if isinstance(value, int | float):
+        return plain.cell(float(value))
+    if isinstance(value, datetime.date | datetime.time | datetime.timedelta):
+        return Cell(str(value), "date")
+    return Cell(shown_text(str(value)))
