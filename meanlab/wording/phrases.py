@@ -96,19 +96,29 @@ def figures_phrase(analysis: Analysis, numbers: Shown) -> str:
 
 
 def scatter_clause(analysis: Analysis) -> str:
-    """Return which uncertainty the statement rests on, and whether the target's is included."""
+    """Return which uncertainties the statement rests on, and what of the target is left out.
+
+    "scatter of these readings only, target treated as exact"; "scatter of these readings and uncertainty of the target".
+    """
     question, test = analysis.question, analysis.test
-    takes = test is not None and test.procedure in INCLUDES_FURTHER
-    own, target = (bool(question.number(name)) for name in ("measurement_uncertainty", "target_uncertainty"))
-    if own and takes:
-        text = "measurement uncertainty included"
-    elif test is not None and test.procedure == "z":
-        text = "scatter by the known σ only"
-    else:
-        text = "scatter of these readings only"
-    if target:
-        return f"{text}, target uncertainty {'included' if takes else 'not included'}"
-    return f"{text}, target treated as exact" if question.target_kind in WITH_UNCERTAINTY else text
+    start = "scatter by the known σ" if test is not None and test.procedure == "z" else "scatter of these readings"
+    further = further_in_force(analysis)
+    included = f"{start} and {' and '.join(further)}" if further else f"{start} only"
+    if question.number("target_uncertainty"):
+        return included if "uncertainty of the target" in further else f"{included}, target uncertainty not included"
+    return f"{included}, target treated as exact" if question.target_kind in WITH_UNCERTAINTY else included
+
+
+def further_in_force(analysis: Analysis) -> tuple[str, ...]:
+    """Return the uncertainties beside scatter that the procedure in force takes in."""
+    question, test = analysis.question, analysis.test
+    if test is None or test.procedure not in INCLUDES_FURTHER:
+        return ()
+    named = {
+        "measurement_uncertainty": "the laboratory's own uncertainty",
+        "target_uncertainty": "uncertainty of the target",
+    }
+    return tuple(name for field, name in named.items() if question.number(field))
 
 
 def excess_noun(analysis: Analysis) -> str:

@@ -5,7 +5,7 @@ from meanlab.core.question import Question
 from meanlab.core.results import Analysis, Without
 from meanlab.wording.digits import estimate_of
 from meanlab.wording.names import PROCEDURE_NAMES, counted, short_noun
-from meanlab.wording.numbers import level_text, p_text, plain_words, significant, statistic_text, unit_text
+from meanlab.wording.numbers import level_text, number_text, p_text, plain_words, statistic_text, unit_text
 from meanlab.wording.phrases import (
     about_word,
     afterthoughts,
@@ -14,6 +14,7 @@ from meanlab.wording.phrases import (
     difference_phrase,
     excess_noun,
     figures_phrase,
+    further_in_force,
     leaves_target_uncertainty_out,
     missed_phrase,
     of_subject,
@@ -169,6 +170,7 @@ def _parts(analysis: Analysis, numbers: Shown) -> dict[str, str]:
         "difference": difference_phrase(numbers),
         "plain_difference": difference_phrase(numbers, bare=True),
         "figures": figures_phrase(analysis, numbers),
+        "scatter": "the combined uncertainty" if further_in_force(analysis) else "scatter",
         "sides": sides_phrase(analysis, numbers),
         "missed": missed_phrase(analysis, numbers),
         "limit": numbers.limit,
@@ -225,7 +227,7 @@ def _beside(analysis: Analysis, numbers: Shown) -> str:
     step = analysis.summary.resolution
     beside = ""
     if not_testable_cause(analysis) == "identical" and step:
-        beside = f", beside half a step of {unit_text(significant(step / 2, 2, numbers.sign), numbers.unit)}"
+        beside = f", beside half a step of {unit_text(number_text(step / 2, numbers.sign), numbers.unit)}"
     return f"The difference is {difference_phrase(numbers)}{beside}."
 
 

@@ -7,6 +7,7 @@ sentences.py:
     target      "the certified value 5.000 mg/L", exactly as typed
     difference  "+0.022 mg/L (+0.43 %)"; plain_difference "+0.022 mg/L, +0.43 %"
     figures     "t(11) = 4.08, p = 0.0018, level 5 %; scatter of these readings only"
+    scatter     "scatter", or "the combined uncertainty" where more than scatter is in it
     sides       "9 of 10 lie above it"
     missed      what could have been missed
     limit       the equivalence limit E as typed
@@ -27,8 +28,8 @@ FAMILIES: Mapping[str, str] = {
 # family → evidence where the test rejects, where a two-sided one does not, where a one-sided one does not
 _EVIDENCE: Mapping[str, tuple[str, str, str]] = {
     "mean": (
-        "the difference of {difference} is more than scatter explains ({figures})",
-        "the difference of {difference} is not more than scatter explains ({figures})",
+        "the difference of {difference} is more than {scatter} explains ({figures})",
+        "the difference of {difference} is not more than {scatter} explains ({figures})",
         "the difference is {plain_difference} ({figures})",
     ),
     "centre of symmetry": (

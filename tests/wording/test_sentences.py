@@ -150,7 +150,9 @@ def test_units_of_the_technician_are_repeated():
 def test_an_uncertain_target_is_said_to_be_included_or_not():
     """z and t take the target's uncertainty in; the others say that they do not, and decide nothing."""
     uncertain = asked(target_uncertainty="0.004")
-    assert "target uncertainty included" in conclusion(built(question=uncertain))
+    included = conclusion(built(question=uncertain))
+    assert "is more than the combined uncertainty explains" in included
+    assert "scatter of these readings and uncertainty of the target)" in included
     undecided = built(question=uncertain, procedure="signed_rank", verdict="cannot tell")
     assert verdict_key(undecided) == "undecided"
     assert "signed rank cannot take the uncertainty of the target in" in conclusion(undecided)
