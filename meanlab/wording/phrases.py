@@ -98,7 +98,8 @@ def figures_phrase(analysis: Analysis, numbers: Shown) -> str:
 def scatter_clause(analysis: Analysis) -> str:
     """Return which uncertainties the statement rests on, and what of the target is left out.
 
-    "scatter of these readings only, target treated as exact"; "scatter of these readings and uncertainty of the target".
+    "scatter of these readings only, target treated as exact"; "scatter of these readings and uncertainty of the
+    target".
     """
     question, test = analysis.question, analysis.test
     start = "scatter by the known σ" if test is not None and test.procedure == "z" else "scatter of these readings"
