@@ -1,8 +1,265 @@
-"""The readings on one scale with mean, interval and target."""
+"""The readings on one scale in their unit, with mean, interval and target."""
+
+from dataclasses import dataclass
+from math import isfinite
 
 from meanlab.core.results import Analysis
-from meanlab.pictures.drawing import Drawing
+from meanlab.pictures.axis import Scale, below
+from meanlab.pictures.drawing import Drawing, Mark, Stroke, Words, line, together
+from meanlab.pictures.entries import Entries, Entry, entries_of, thinned
+from meanlab.pictures.measure import Box, shortened
+from meanlab.pictures.places import Obstacles
+from meanlab.wording.digits import estimate_of
+from meanlab.wording.names import counted, short_noun
+from meanlab.wording.numbers import level_text
+from meanlab.wording.phrases import parameter_of
+from meanlab.wording.shown import shown
+
+WIDTH, HEIGHT = 620.0, 132.0
+SIDE = 12.0
+ROOM_BELOW = 38.0
+INTERVAL_ROW = 16.0
+FIRST_ROW = 34.0
+ROW = 15.0
+FAR = 8.0
+MOST_ROWS_OF_PREPARATIONS = 5
 
 
-def readings_picture(analysis: Analysis, width: float = 620, height: float = 132) -> Drawing:
-    return Drawing(width, height)
+@dataclass(frozen=True)
+class Frame:
+    """What one picture of readings stands in: scale, base line, width, decimal sign, and the noun for the target."""
+
+    scale: Scale
+    base: float
+    width: float
+    sign: str
+    noun: str
+
+
+def readings_picture(analysis: Analysis, width: float = WIDTH, height: float = HEIGHT) -> Drawing:
+    """Return the drawing of the readings with mean, interval and target on an axis in their unit."""
+    entries = entries_of(analysis)
+    low, high = span_of(analysis, entries)
+    base = height - ROOM_BELOW
+    noun = short_noun(analysis.question.target_kind)
+    frame = Frame(Scale(low, high, SIDE, width - SIDE), base, width, entries.sign, noun)
+    obstacles = Obstacles(Box(0, 0, width, base - 1))
+    interval = _interval(analysis, frame, obstacles)
+    rows = _rows(analysis, entries, frame, obstacles)
+    target = _target(analysis, frame, obstacles)
+    axis = below(frame.scale, base, title_of(analysis, entries, width), entries.sign, width=width)
+    return together(width, height, (axis, interval, *rows, target, _limits(analysis, frame, obstacles)), alt_of(analysis))
+
+
+def alt_of(analysis: Analysis) -> str:
+    """Return the drawing in a sentence."""
+    numbers, summary = shown(analysis), analysis.summary
+    noun = short_noun(analysis.question.target_kind)
+    parts = [counted(summary.n_readings, "reading")]
+    parts += [f"{summary.left_out} left out"] if summary.left_out else []
+    parts += [f"{parameter_of(analysis)} {numbers.estimate}"] if numbers.estimate else []
+    parts += [f"{numbers.interval_level} interval {numbers.interval}"] if numbers.interval else []
+    return f"Readings on their scale: {', '.join(parts)}; {noun} {numbers.target}."
+
+
+def title_of(analysis: Analysis, entries: Entries, width: float) -> str:
+    """Return the title of the axis: the unit and what stands above it."""
+    test = analysis.test
+    nested = analysis.readings.preparations is not None
+    shown_of = len(entries.kept)
+    what = "readings" if len(thinned(entries.kept)) == shown_of else f"readings ({len(thinned(entries.kept))} of {shown_of})"
+    if nested:
+        what = "injections (ticks) and preparation means"
+    if test is not None:
+        level = level_text(test.interval.level, entries.sign)
+        what += f"; above: {parameter_of(analysis)} with {level} interval"
+    elif analysis.summary.mean is not None:
+        what += "; above: mean"
+    unit = shortened(entries.unit, width / 3, 12)
+    return f"{unit}: {what}" if unit else what
+
+
+def span_of(analysis: Analysis, entries: Entries) -> tuple[float, float]:
+    """Return both ends of the axis: all readings, the interval, and the target unless it is far away."""
+    values = [entry.value for entry in entries.kept]
+    values += [group.limit for group in entries.at_limit if group.limit is not None and not group.left_out]
+    if analysis.test is not None:
+        interval = analysis.test.interval
+        values += [end for end in (interval.low, interval.high, analysis.test.estimate) if end is not None]
+    target = float(analysis.question.exact_target)
+    low, high = (min(values), max(values)) if values else (target, target)
+    step = analysis.summary.resolution or 0.0
+    span = max(high - low, 4 * step) or abs(high) * 0.01 or 1.0
+    limit = analysis.question.number("equivalence_limit") or 0.0
+    further = [target, target - limit, target + limit, *(entry.value for entry in entries.left_out)]
+    near = [value for value in further if low - FAR * span <= value <= high + FAR * span]
+    low, high = min([low, *near]), max([high, *near])
+    room = 0.05 * max(high - low, span)
+    return _finite(low - room), _finite(high + room)
+
+
+def _finite(value: float) -> float:
+    return value if isfinite(value) else (1.7e308 if value > 0 else -1.7e308)
+
+
+def _interval(analysis: Analysis, frame: Frame, obstacles: Obstacles) -> Drawing:
+    test, estimate, scale = analysis.test, estimate_of(analysis), frame.scale
+    strokes, marks, y = [], [], INTERVAL_ROW
+    if test is not None and (test.interval.low is not None or test.interval.high is not None):
+        ends = (test.interval.low, test.interval.high)
+        left, right = (scale.start if ends[0] is None else scale.px(ends[0])), (
+            scale.end if ends[1] is None else scale.px(ends[1])
+        )
+        strokes.append(line(left, y, right, y, width=2.0))
+        for end, x, shape in ((ends[0], left, "left"), (ends[1], right, "right")):
+            if end is None:
+                marks.append(Mark(x, y, shape, 9, "no bound on this side"))
+            else:
+                strokes.append(line(x, y - 6, x, y + 6, width=1.6))
+        obstacles.boxes.append(Box(left - 5, y - 7, right + 5, y + 7))
+    if estimate is not None:
+        marks.append(Mark(scale.px(estimate), y, "dot", 9, f"{parameter_of(analysis)} {shown(analysis).estimate}"))
+        obstacles.boxes.append(Box(scale.px(estimate) - 6, y - 7, scale.px(estimate) + 6, y + 7))
+    return Drawing(frame.width, frame.base, tuple(strokes), marks=tuple(marks))
+
+
+def _target(analysis: Analysis, frame: Frame, obstacles: Obstacles) -> Drawing:
+    target, scale = float(analysis.question.exact_target), frame.scale
+    text = f"{frame.noun} {shortened(analysis.question.target_as_typed, 160, 12)}"
+    if scale.holds(target):
+        x = scale.px(target)
+        upright = line(x, 2, x, frame.base, "dot", 1.8)
+        found = beside(text, x, obstacles)
+        return Drawing(frame.width, frame.base, (upright,), words=(found,) if found else ())
+    above = target > scale.high
+    edge = scale.end if above else scale.start
+    inner = edge - 26 if above else edge + 26
+    candidates = [
+        Words(inner - 4 if above else inner + 4, y, text, "right" if above else "left") for y in heights(frame.base)
+    ]
+    found = obstacles.place(candidates)
+    y = found.y if found else 6.0
+    arrow = Stroke(((inner, y), (edge - 5 if above else edge + 5, y)), "dot", 1.8)
+    head = Mark(edge - 4 if above else edge + 4, y, "right" if above else "left", 8, f"{text}, beyond this axis")
+    return Drawing(frame.width, frame.base, (arrow,), marks=(head,), words=(found,) if found else ())
+
+
+def heights(base: float) -> list[float]:
+    """Return the heights at which a label may stand, the upper ones first."""
+    return [8.0 + 4 * step for step in range(int((base - 16) / 4))]
+
+
+def beside(text: str, x: float, obstacles: Obstacles) -> Words | None:
+    """Return a label left or right of an upright line where nothing else stands."""
+    sides = ((x - 5, "right"), (x + 5, "left"))
+    base = obstacles.frame.bottom
+    return obstacles.place(Words(at, y, text, side) for y in heights(base) for at, side in sides)  # type: ignore[arg-type]
+
+
+def _limits(analysis: Analysis, frame: Frame, obstacles: Obstacles) -> Drawing:
+    """Return target ± E, as far as it lies on the axis; one-sided: the side that counts."""
+    limit = analysis.question.number("equivalence_limit")
+    if limit is None:
+        return Drawing(frame.width, frame.base)
+    target, alternative = float(analysis.question.exact_target), analysis.question.alternative
+    ends = [(target - limit, f"{frame.noun} − E")] if alternative != "greater" else []
+    ends += [(target + limit, f"{frame.noun} + E")] if alternative != "less" else []
+    strokes, words = [], []
+    for value, text in ends:
+        if not frame.scale.holds(value):
+            continue
+        x = frame.scale.px(value)
+        strokes.append(line(x, 2, x, frame.base, "dashdot", 1.0))
+        obstacles.paths.append(strokes[-1].points)
+        found = beside(text, x, obstacles)
+        words += [found] if found else []
+    return Drawing(frame.width, frame.base, tuple(strokes), words=tuple(words))
+
+
+def _rows(analysis: Analysis, entries: Entries, frame: Frame, obstacles: Obstacles) -> list[Drawing]:
+    """Return the rows under the interval: entries at a limit, readings or preparations, readings left out."""
+    top, bottom = FIRST_ROW, frame.base - 3
+    drawn = []
+    if entries.at_limit:
+        drawn.append(_at_limits(entries, frame, obstacles, top + ROW / 2))
+        top += ROW
+    if entries.left_out:
+        bottom -= ROW
+        drawn.append(_left_out(entries, frame, obstacles, bottom + ROW / 2))
+    if analysis.readings.preparations is None:
+        marks = _stacked(thinned(entries.kept), entries, frame.scale, top, bottom)
+    else:
+        marks = _nested(analysis, entries, frame.scale, top, bottom)
+    for mark in marks:
+        half = mark.size / 2 if mark.shape == "tick" else 4
+        obstacles.boxes.append(Box(mark.x - 2, mark.y - half, mark.x + 2, mark.y + half))
+    return [*drawn, Drawing(frame.width, frame.base, marks=marks)]
+
+
+def _stacked(
+    chosen: tuple[Entry, ...], entries: Entries, scale: Scale, top: float, bottom: float
+) -> tuple[Mark, ...]:
+    """Return a tick for each reading; equal ones stand on each other."""
+    heaps: dict[int, list[Entry]] = {}
+    for entry in chosen:
+        heaps.setdefault(round(scale.px(entry.value)), []).append(entry)
+    tallest = max(map(len, heaps.values()), default=1)
+    pitch = min(18.0, (bottom - top) / tallest)
+    return tuple(
+        Mark(scale.px(entry.value), bottom - pitch * (level + 0.5), "tick", pitch * 0.8, entries.said(entry))
+        for heap in heaps.values()
+        for level, entry in enumerate(heap)
+    )
+
+
+def _nested(
+    analysis: Analysis, entries: Entries, scale: Scale, top: float, bottom: float
+) -> tuple[Mark, ...]:
+    """Return a row for each of a few preparations, or two rows for many: means above, injections below."""
+    lines = analysis.summary.preparations
+    few = len(lines) <= MOST_ROWS_OF_PREPARATIONS
+    pitch = (bottom - top) / len(lines) if few else (bottom - top) / 2
+    row = {one.label: top + pitch * ((place if few else 0) + 0.5) for place, one in enumerate(lines)}
+    marks = [
+        Mark(scale.px(entry.value), row[entry.preparation] + (0 if few else pitch), "tick", min(9, pitch * 0.8),
+             entries.said(entry))
+        for entry in thinned(entries.kept)
+    ]  # fmt: skip
+    marks += [
+        Mark(scale.px(one.mean), row[one.label], "diamond", min(7, pitch * 0.7), f"mean of preparation {one.label}")
+        for one in lines
+        if one.mean is not None
+    ]
+    return tuple(marks)
+
+
+def _left_out(entries: Entries, frame: Frame, obstacles: Obstacles, y: float) -> Drawing:
+    scale, marks = frame.scale, []
+    for entry in thinned(entries.left_out):
+        says = f"{entries.said(entry)}, left out"
+        if scale.holds(entry.value):
+            marks.append(Mark(scale.px(entry.value), y, "cross", 9, says))
+        else:
+            above = entry.value > scale.high
+            marks.append(Mark(scale.end - 3 if above else scale.start + 3, y, "right" if above else "left", 8, says))
+    for mark in marks:
+        obstacles.boxes.append(Box(mark.x - 5, y - 5, mark.x + 5, y + 5))
+    xs = sorted(mark.x for mark in marks)
+    found = obstacles.place((Words(xs[0] - 8, y, "left out", "right"), Words(xs[-1] + 8, y, "left out", "left")))
+    return Drawing(frame.width, frame.base, marks=tuple(marks), words=(found,) if found else ())
+
+
+def _at_limits(entries: Entries, frame: Frame, obstacles: Obstacles, y: float) -> Drawing:
+    marks, strokes, words = [], [], []
+    for group in entries.at_limit:
+        below_it = group.kind == "below"
+        at = group.limit if group.limit is not None else (frame.scale.low if below_it else frame.scale.high)
+        x = min(max(frame.scale.px(at), frame.scale.start), frame.scale.end)
+        tip = max(x - 16, 4.0) if below_it else min(x + 16, frame.width - 4)
+        strokes += [line(x, y, tip, y), line(x, y - 5, x, y + 5)]
+        marks.append(Mark(tip, y, "left" if below_it else "right", 8, group.words))
+        obstacles.boxes.append(Box(min(x, tip) - 5, y - 6, max(x, tip) + 5, y + 6))
+        sides = (Words(max(x, tip) + 7, y, group.words, "left"), Words(min(x, tip) - 7, y, group.words, "right"))
+        found = obstacles.place(sides if below_it else sides[::-1])
+        words += [found] if found else []
+    return Drawing(frame.width, frame.base, tuple(strokes), marks=tuple(marks), words=tuple(words))
