@@ -7,8 +7,8 @@ from dataclasses import replace
 import streamlit as st
 
 from meanlab.core.results import Analysis
-from meanlab.page import asked, cache, file_choice, readings, state
-from meanlab.page.guard import guarded, say
+from meanlab.page import asked, cache, file_choice, pictures, readings, state
+from meanlab.page.guard import guarded
 from meanlab.wording import PanelTexts
 
 _COUNT_FIRST = re.compile(r"\d+")
@@ -65,10 +65,10 @@ def _texts(analysis: Analysis, texts: PanelTexts) -> None:
     )
     with st.container(key="conclusion"):
         st.html(f'<p class="ml-sentence">{html.escape(texts.sentence)}</p>')
-    table, pictures = st.columns([296, 640], gap="small")
+    table, places = st.columns([296, 640], gap="small")
     table.html(_table(texts.rows))
-    with pictures, guarded("pictures"):
-        _pictures(analysis)
+    with places, guarded("pictures"):
+        pictures.panel(analysis)
     foot = " ".join(part for part in (texts.why, texts.caution) if part)
     st.html(f'<p class="ml-foot">{html.escape(foot)} {html.escape(texts.origin)}</p>')
 
@@ -86,7 +86,3 @@ def _cell(label: str, text: str) -> str:
     if leading is None:
         return html.escape(text)
     return f"<span>{leading.group()}</span>{html.escape(text[leading.end() :])}"
-
-
-def _pictures(analysis: Analysis) -> None:
-    say("The pictures come here.", "status")
