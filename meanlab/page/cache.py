@@ -13,7 +13,7 @@ import meanlab
 from meanlab.core.question import Question
 from meanlab.core.readings import ReadingSet
 from meanlab.core.results import Analysis, Plan
-from meanlab.intake import Intake
+from meanlab.intake import Column, Intake
 from meanlab.notebook import WorkingStates
 from meanlab.notebook.place import database_url
 from meanlab.records.panel import panel_png
@@ -24,11 +24,15 @@ HOME = ("localhost", "127.0.0.1", "::1")
 
 @dataclass(frozen=True)
 class Source:
-    """Where readings come from: a pasted text or a file's bytes, the file's name and what was chosen in it."""
+    """Where readings come from: a pasted text or a file's bytes, the file's name and what was chosen in it.
+
+    ``by_preparation``: the labels that were read name preparations, and readings of one count once.
+    """
 
     content: str | bytes
     filename: str | None = None
     selection: tuple[tuple[str, Any], ...] = ()
+    by_preparation: bool = False
 
     def chosen(self) -> dict[str, Any]:
         """Return what was chosen as `meanlab.read` takes it."""
@@ -68,15 +72,16 @@ def read(source: Source) -> Intake:
 
 
 @lru_cache(maxsize=8)
-def columns(content: bytes, filename: str) -> tuple[Any, ...]:
-    """Return what can be chosen in a file."""
+def columns(content: str | bytes, filename: str | None) -> tuple[Column, ...]:
+    """Return what can be chosen in a file or a pasted table."""
     return tuple(meanlab.columns(content, filename))
 
 
 @lru_cache(maxsize=16)
 def readings(source: Source, left_out: tuple[tuple[int, str], ...] = ()) -> ReadingSet:
     """Return the readings of a source without those left out by hand."""
-    return read(source).reading_set(left_out=dict(left_out))
+    found = read(source)
+    return found.reading_set(dict(left_out), found.preparations if source.by_preparation else None)
 
 
 @lru_cache(maxsize=64)

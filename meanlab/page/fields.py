@@ -13,7 +13,9 @@ FIELDS: Mapping[str, Any] = MappingProxyType(
         "column": None,
         "replicates": [],
         "filter_column": None,
-        "filter_value": None,
+        "filter_value": "",
+        "preparation": None,
+        "labels_name_preparations": False,
         # the question
         "target": "",
         "unit": "",
@@ -60,5 +62,7 @@ READINGS_FIELDS = (
     "replicates",
     "filter_column",
     "filter_value",
+    "preparation",
+    "labels_name_preparations",
 )
 PICKS = READINGS_FIELDS[1:]
