@@ -12,8 +12,10 @@ import subprocess
 import sys
 import time
 from pathlib import Path
+from typing import cast
 
 from meanlab.core.complaints import IntakeComplaint
+from meanlab.intake.containers import Workbook
 from meanlab.intake.grid import EMPTY, Cell, Sheet
 
 SECONDS = 30
@@ -22,7 +24,7 @@ _LOOK_EVERY = 0.1
 _ROOT = Path(__file__).resolve().parents[2]
 
 
-def sheets_from_child(data: bytes, kind: str, seconds: float = SECONDS, memory: int = MEMORY) -> tuple[Sheet, ...]:
+def sheets_from_child(data: bytes, kind: Workbook, seconds: float = SECONDS, memory: int = MEMORY) -> tuple[Sheet, ...]:
     """The sheets of a workbook of this kind, read by a child process within so many seconds and bytes of memory.
 
     Raises IntakeComplaint for what the child complains of, and when it had to be ended or ended itself.
@@ -145,7 +147,7 @@ def main(kind: str, memory: str, seconds: str) -> None:
 
     data = sys.stdin.buffer.read()
     try:
-        answer: dict[str, object] = {"sheets": packed(read_kind(data, kind))}
+        answer: dict[str, object] = {"sheets": packed(read_kind(data, cast(Workbook, kind)))}
     except IntakeComplaint as complaint:
         answer = {"complaint": str(complaint)}
     sys.stdout.buffer.write(json.dumps(answer, separators=(",", ":")).encode())

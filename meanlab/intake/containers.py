@@ -7,7 +7,8 @@ Sources of the first bytes: ISO 32000 (PDF), ISO/IEC 15948 (PNG), ISO/IEC 10918-
 from typing import Literal
 
 from meanlab.core.complaints import IntakeComplaint
-from meanlab.intake.parts import DAMAGED, Parts
+from meanlab.intake.compound import Compound
+from meanlab.intake.parts import DAMAGED, LOCKED, Parts
 
 Workbook = Literal["xlsx", "xlsb", "ods", "xls"]
 
@@ -111,22 +112,14 @@ def _open_document_kind(parts: Parts) -> Workbook:
 
 
 def _compound_kind(data: bytes) -> Workbook:
-    """Told by the names in the directory of the compound file, which are stored in UTF-16 ([MS-CFB] §2.6.1)."""
-    if _names(data, "EncryptedPackage"):
-        raise IntakeComplaint(
-            "The workbook is locked with a password. Open it, save it without a password and choose it again."
-        )
-    if _names(data, "WordDocument"):
+    names = Compound(data).names()
+    if "EncryptedPackage" in names:
+        raise IntakeComplaint(LOCKED)
+    if "WordDocument" in names:
         raise IntakeComplaint(f"The file is a text document, no workbook. {_SAVE_AS}")
-    if not (_names(data, "Workbook") or _names(data, "Book")):
-        raise IntakeComplaint(
-            f"The file is an office file of another kind or damaged; no workbook is in it. {_SAVE_AS}"
-        )
-    return "xls"
-
-
-def _names(data: bytes, name: str) -> bool:
-    return (name + "\0").encode("utf-16-le") in data
+    if "Workbook" in names or "Book" in names:
+        return "xls"
+    raise IntakeComplaint(f"The file is an office file of another kind; no workbook is in it. {_SAVE_AS}")
 
 
 def _bare_sheet(data: bytes) -> bool:

@@ -12,7 +12,7 @@ from meanlab.intake.building import LAST_COLUMN, LAST_ROW, Room, SheetBuilder, p
 from meanlab.intake.grid import Cell, Sheet
 from meanlab.intake.markup import Attributes, Walker, walk
 from meanlab.intake.number_formats import Section, number_cell
-from meanlab.intake.parts import Parts
+from meanlab.intake.parts import LOCKED, Parts
 
 _HIDDEN = ("collapse", "filter")
 _LONGEST_FORMULA = 60
@@ -33,9 +33,7 @@ def read_ods(parts: Parts) -> tuple[Sheet, ...]:
 class _Locks(Walker):
     def start(self, name: str, attributes: Attributes) -> None:
         if name == "encryption-data":
-            raise IntakeComplaint(
-                "The workbook is locked with a password. Open it, save it without a password and choose it again."
-            )
+            raise IntakeComplaint(LOCKED)
 
 
 class _Content(Walker):

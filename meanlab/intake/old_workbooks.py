@@ -13,9 +13,7 @@ from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.building import Room, SheetBuilder, shown_text
 from meanlab.intake.grid import Cell, Sheet
 from meanlab.intake.number_formats import GENERAL, NumberFormat
-from meanlab.intake.parts import DAMAGED
-
-_ROWS_AT_ONCE = 1_048_576
+from meanlab.intake.parts import DAMAGED, LOCKED
 
 
 def read_old_workbook(data: bytes) -> tuple[Sheet, ...]:
@@ -29,9 +27,7 @@ def read_old_workbook(data: bytes) -> tuple[Sheet, ...]:
                 if about.typ == python_calamine.SheetTypeEnum.WorkSheet
             )
     except python_calamine.PasswordError as error:
-        raise IntakeComplaint(
-            "The workbook is locked with a password. Open it, save it without a password and choose it again."
-        ) from error
+        raise IntakeComplaint(LOCKED) from error
     except (python_calamine.CalamineError, ValueError, OSError) as error:
         if isinstance(error, IntakeComplaint):
             raise
@@ -43,8 +39,9 @@ def _sheet(book: python_calamine.CalamineWorkbook, about: python_calamine.SheetM
     builder = SheetBuilder(about.name, room, hidden)
     sheet = book.get_sheet_by_name(about.name)
     plain = NumberFormat(GENERAL)
-    for row, values in enumerate(sheet.iter_rows()):
-        for column, value in enumerate(values):
+    first_row, first_column = sheet.start or (0, 0)
+    for row, values in enumerate(sheet.to_python(skip_empty_area=True), first_row):
+        for column, value in enumerate(values, first_column):
             builder.put(row, column, _cell(value, plain))
     return builder.sheet()
 

@@ -23,6 +23,7 @@ DAMAGED = (
     "The workbook is damaged and cannot be opened: a piece of it is missing or altered. "
     "Fetch the file again, or open it where it was made and save it as .xlsx or .csv."
 )
+LOCKED = "The file is locked with a password. Open it, save it without a password and choose it again."
 
 
 class Parts:
@@ -55,7 +56,7 @@ class Parts:
         if entry is None:
             raise IntakeComplaint(DAMAGED)
         if entry.flag_bits & 0x1:
-            raise IntakeComplaint("The file is locked with a password. Save it without a password and choose it again.")
+            raise IntakeComplaint(LOCKED)
         if entry.compress_type not in (zipfile.ZIP_STORED, zipfile.ZIP_DEFLATED):
             raise IntakeComplaint(DAMAGED)
         try:

@@ -15,8 +15,9 @@ from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.building import LAST_COLUMN, Room, SheetBuilder, place_name, shown_text
 from meanlab.intake.grid import Cell, Sheet
 from meanlab.intake.markup import Attributes, Walker, walk
-from meanlab.intake.number_formats import BUILT_IN, GENERAL, NumberFormat
+from meanlab.intake.number_formats import GENERAL
 from meanlab.intake.parts import DAMAGED, Parts
+from meanlab.intake.styles import Styles
 
 _REFERENCE = re.compile(r"\$?([A-Za-z]{1,3})\$?([0-9]{1,7})")
 _ESCAPE = re.compile(r"_x([0-9A-Fa-f]{4})_")
@@ -34,11 +35,12 @@ def read_xlsx(parts: Parts) -> tuple[Sheet, ...]:
     walk(parts.chunks(book_name), book)
     relations = _relations(parts, book_name)
     by_kind = dict(relations.values())
-    texts, styles = _Texts(), _Styles()
+    texts, styles = _Texts(), Styles()
     if by_kind.get("sharedStrings", "") in parts:
         walk(parts.chunks(by_kind["sharedStrings"]), texts)
     if by_kind.get("styles", "") in parts:
-        walk(parts.chunks(by_kind["styles"]), styles)
+        walk(parts.chunks(by_kind["styles"]), _StyleSheet(styles))
+    styles.since_1904 = book.since_1904
     room = Room()
     sheets = []
     for name, identity, hidden in book.sheets[:_MOST_SHEETS]:
@@ -46,7 +48,7 @@ def read_xlsx(parts: Parts) -> tuple[Sheet, ...]:
         if kind != "worksheet":
             continue
         builder = SheetBuilder(name, room, hidden)
-        walk(parts.chunks(target), _Cells(builder, texts.texts, styles, book.since_1904))
+        walk(parts.chunks(target), _Cells(builder, texts.texts, styles))
         _add_comments(parts, target, builder)
         sheets.append(builder.sheet())
     return tuple(sheets)
@@ -127,51 +129,38 @@ class _Texts(Walker):
             self.texts.append(_plain_text("".join(self._pieces)))
 
 
-class _Styles(Walker):
-    """The number format of each cell style, and which styles are struck through."""
+class _StyleSheet(Walker):
+    """The number format and the font of each cell style."""
 
-    def __init__(self) -> None:
-        self._codes = dict(BUILT_IN)
-        self._struck_fonts: list[bool] = []
-        self._styles: list[tuple[int, int]] = []
-        self._formats: dict[int, NumberFormat] = {}
+    def __init__(self, styles: Styles) -> None:
+        self._styles = styles
+        self._fonts = 0
         self._within = ""
 
     def start(self, name: str, attributes: Attributes) -> None:
         if name in ("fonts", "cellXfs", "cellStyleXfs", "dxfs"):
             self._within = name
         elif name == "numFmt" and self._within != "dxfs":
-            self._codes[_whole(attributes.get("numFmtId"))] = attributes.get("formatCode", GENERAL)
+            self._styles.codes[_whole(attributes.get("numFmtId"))] = attributes.get("formatCode", GENERAL)
         elif name == "font" and self._within == "fonts":
-            self._struck_fonts.append(False)
-        elif name == "strike" and self._within == "fonts" and self._struck_fonts:
-            self._struck_fonts[-1] = attributes.get("val", "1") in _TRUE
+            self._fonts += 1
+        elif name == "strike" and self._within == "fonts" and attributes.get("val", "1") in _TRUE:
+            self._styles.struck_fonts.add(self._fonts - 1)
         elif name == "xf" and self._within == "cellXfs":
-            self._styles.append((_whole(attributes.get("numFmtId")), _whole(attributes.get("fontId"))))
+            self._styles.styles.append((_whole(attributes.get("numFmtId")), _whole(attributes.get("fontId"))))
 
     def end(self, name: str) -> None:
         if name == self._within:
             self._within = ""
 
-    def format(self, style: int) -> NumberFormat:
-        identity = self._styles[style][0] if 0 <= style < len(self._styles) else 0
-        if identity not in self._formats:
-            self._formats[identity] = NumberFormat(self._codes.get(identity, GENERAL))
-        return self._formats[identity]
-
-    def struck(self, style: int) -> bool:
-        font = self._styles[style][1] if 0 <= style < len(self._styles) else -1
-        return 0 <= font < len(self._struck_fonts) and self._struck_fonts[font]
-
 
 class _Cells(Walker):
     """The cells of one sheet on their way into the builder."""
 
-    def __init__(self, builder: SheetBuilder, texts: list[str], styles: _Styles, since_1904: bool) -> None:
+    def __init__(self, builder: SheetBuilder, texts: list[str], styles: Styles) -> None:
         self._builder = builder
         self._texts = texts
         self._styles = styles
-        self._since_1904 = since_1904
         self._row = self._column = -1
         self._attributes: Attributes = {}
         self._pieces: dict[str, list[str]] = {"v": [], "f": [], "t": []}
@@ -260,7 +249,7 @@ class _Cells(Walker):
             return Cell(shown_text(value))
         if number in (float("inf"), float("-inf")) or number != number:
             return Cell(shown_text(value), "error")
-        return self._styles.format(_whole(self._attributes.get("s"))).cell(number, self._since_1904)
+        return self._styles.cell(number, _whole(self._attributes.get("s")))
 
 
 class _Comments(Walker):
