@@ -22,7 +22,15 @@ MEANINGS = (
     "half of a 95 % interval",
     "bounds ± a (rectangular)",
 )
-CONDITIONS = ("not stated", "repeatability", "intermediate precision")
+NOT_STATED = "not stated"
+CONDITIONS = (NOT_STATED, "repeatability", "intermediate precision")
+UNITS = (
+    NOT_STATED,
+    "a preparation of its own",
+    "a portion of its own",
+    "an injection of one preparation",
+    "a repeat on one portion",
+)
 
 
 def question_from(fields: Mapping[str, Any], sign: str, set_after: tuple[str, ...] = (), look: int = 1) -> Question:
@@ -119,11 +127,15 @@ def missing(fields: Mapping[str, Any], has_readings: bool) -> str:
 def units_in_words(units: str, conditions: str) -> str:
     """Return what one reading is and under which conditions, in one phrase.
 
-    >>> units_in_words("independent preparations", "repeatability")
-    'independent preparations, repeatability conditions'
+    >>> units_in_words("a preparation of its own", "repeatability")
+    'each a preparation of its own, repeatability conditions'
+    >>> units_in_words("separate weighings", "not stated")
+    'separate weighings'
     """
-    said = "" if conditions == CONDITIONS[0] else f"{conditions} conditions"
-    return ", ".join(part for part in (units.strip(), said) if part)
+    what = "" if units.strip() == NOT_STATED else units.strip()
+    what = f"each {what}" if what in UNITS else what
+    said = "" if conditions == NOT_STATED else f"{conditions} conditions"
+    return ", ".join(part for part in (what, said) if part)
 
 
 def parts_set(fields: Mapping[str, Any], left_out: Sequence[str]) -> dict[str, Any]:

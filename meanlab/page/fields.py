@@ -25,7 +25,7 @@ FIELDS: Mapping[str, Any] = MappingProxyType(
         "quantity": "",
         "material": "",
         # what else is known
-        "units_are": "",
+        "units_are": "not stated",
         "conditions": "not stated",
         "run_order": False,
         "certificate_value": "",

@@ -3,7 +3,7 @@
 import streamlit as st
 
 from meanlab.core.question import TARGET_KINDS
-from meanlab.page import asked, state
+from meanlab.page import asked, readings, state
 from meanlab.wording.names import ALTERNATIVE_QUESTIONS
 
 LEVELS = ("10 %", "5 %", "2.5 %", "1 %", "0.1 %")
@@ -20,12 +20,19 @@ SIGMA_HELP = (
     "Its origin is printed with the result."
 )
 
+UNITS_HELP = (
+    "n counts what was prepared independently: choose what one reading is, or type it. Injections or repeats of one "
+    "preparation are no independent readings; where the file names the preparations, choose their column above."
+)
+
 
 def draw() -> None:
-    """Draw the lower half of the left column."""
+    """Draw the lower half of the left column; unit and name that the heading gave stand in their fields, in grey."""
+    found = readings.intake()
+    unit, name = ("", "") if found is None else (found.unit or "", found.name or "")
     left, right = st.columns([3, 2], gap="small")
     left.text_input("Target", key="target", placeholder="e.g. 5.000")
-    right.text_input("Unit", key="unit", placeholder="e.g. mg/L")
+    right.text_input("Unit", key="unit", placeholder=unit or "e.g. mg/L")
     left, right = st.columns([3, 2], gap="small")
     left.selectbox("The target is a", TARGET_KINDS, key="target_kind", on_change=_side_follows_kind)
     right.selectbox(
@@ -35,14 +42,20 @@ def draw() -> None:
         accept_new_options=True,
         help="Significance level: the risk of a false alarm when the true mean is at the target.",
     )
-    st.selectbox(
-        _side_label(), tuple(ALTERNATIVE_QUESTIONS), format_func=ALTERNATIVE_QUESTIONS.__getitem__, key="alternative"
-    )
     left, right = st.columns(2, gap="small")
-    left.text_input("Quantity", key="quantity", placeholder="e.g. Nitrate")
+    left.selectbox(
+        "The true mean …",
+        tuple(ALTERNATIVE_QUESTIONS),
+        format_func=ALTERNATIVE_QUESTIONS.__getitem__,
+        key="alternative",
+        help="What is asked of the true mean against the target. A limit asks its own side. Set it before measuring.",
+    )
+    right.selectbox("One reading is", asked.UNITS, key="units_are", accept_new_options=True, help=UNITS_HELP)
+    left, right = st.columns(2, gap="small")
+    left.text_input("Quantity", key="quantity", placeholder=name or "e.g. Nitrate")
     right.text_input("Material", key="material", placeholder="e.g. control solution")
-    with st.expander("Known σ · U · E · what one reading is", key="more"):
-        _what_one_reading_is()
+    with st.expander("Known σ · U of the target · limit E · conditions", key="more"):
+        _conditions()
         _target_uncertainty()
         _known_sigma()
         _limits()
@@ -58,25 +71,13 @@ def _side_follows_kind() -> None:
         state.put("alternative", "two-sided")
 
 
-def _side_label() -> str:
-    kind = state.value("target_kind")
-    if asked.SIDE_OF_KIND.get(kind) == state.value("alternative"):
-        return (
-            f"Question: the true mean … (asked of an {kind})"
-            if kind[0] in "aeiou"
-            else (f"Question: the true mean … (asked of a {kind})")
-        )
-    return "Question: the true mean …"
-
-
-def _what_one_reading_is() -> None:
-    st.text_input(
-        "One reading is",
-        key="units_are",
-        placeholder="e.g. one independent preparation",
-        help="n counts what was prepared independently. Injections of one preparation are no independent readings.",
+def _conditions() -> None:
+    st.selectbox(
+        "Conditions",
+        asked.CONDITIONS,
+        key="conditions",
+        help="Repeatability: one run, one analyst, one instrument. Intermediate precision: several days or analysts.",
     )
-    st.selectbox("Conditions", asked.CONDITIONS, key="conditions")
     st.checkbox(
         "Typed in the order of measurement",
         key="run_order",
