@@ -106,8 +106,25 @@ def below(scale: Scale, y: float, title: str, sign: str, size: float = WORDS, wi
     return Drawing(right, y + TICK + 34, tuple(strokes), words=tuple(words))
 
 
-def guides(scale: Scale, marks: tuple[Marked, ...], top: float, bottom: float) -> tuple[Stroke, ...]:
-    """Return faint upright lines at round values."""
-    return tuple(
-        Stroke(((scale.px(mark.value), top), (scale.px(mark.value), bottom)), width=0.6, faint=True) for mark in marks
-    )
+def upright(scale: Scale, x: float, title: str, sign: str, right: float, size: float = WORDS) -> Drawing:
+    """Return an upright axis at pixel x with round values left of it, its title above it and faint guides to ``right``.
+
+    The texts of the values need about 60 pixels left of x.
+    """
+    room = max(2, int(abs(scale.start - scale.end) / (size * 2.2)))
+    marks = round_marks(scale.low, scale.high, min(room, MOST_MARKS), sign)
+    strokes = [line(x, scale.start, x, scale.end, width=1.0)]
+    words = [Words(0.0, scale.end - size, title, "left", size)]
+    for mark in marks:
+        y = scale.px(mark.value)
+        strokes.append(line(x - TICK, y, x, y, width=1.0))
+        strokes.append(Stroke(((x, y), (right, y)), width=0.6, faint=True))
+        words.append(Words(x - TICK - 3, y, mark.text, "right", size))
+    return Drawing(right, scale.start, tuple(strokes), words=tuple(words))
+
+
+def widest(scale: Scale, sign: str, size: float = WORDS) -> float:
+    """Return the room that the texts of an upright axis need, in pixels."""
+    room = max(2, int(abs(scale.start - scale.end) / (size * 2.2)))
+    marks = round_marks(scale.low, scale.high, min(room, MOST_MARKS), sign)
+    return max((width_of(mark.text, size) for mark in marks), default=0.0) + TICK + 3

@@ -5,7 +5,7 @@ from math import isfinite
 
 from meanlab.core.results import Analysis
 from meanlab.pictures.axis import Scale, below
-from meanlab.pictures.drawing import Drawing, Mark, Stroke, Words, line, together
+from meanlab.pictures.drawing import WORDS, Align, Dash, Drawing, Mark, Stroke, Words, line, together
 from meanlab.pictures.entries import Entries, Entry, entries_of, thinned
 from meanlab.pictures.measure import Box, shortened
 from meanlab.pictures.places import Obstacles
@@ -44,11 +44,16 @@ def readings_picture(analysis: Analysis, width: float = WIDTH, height: float = H
     noun = short_noun(analysis.question.target_kind)
     frame = Frame(Scale(low, high, SIDE, width - SIDE), base, width, entries.sign, noun)
     obstacles = Obstacles(Box(0, 0, width, base - 1))
-    interval = _interval(analysis, frame, obstacles)
-    rows = _rows(analysis, entries, frame, obstacles)
-    target = _target(analysis, frame, obstacles)
-    axis = below(frame.scale, base, title_of(analysis, entries, width), entries.sign, width=width)
-    return together(width, height, (axis, interval, *rows, target, _limits(analysis, frame, obstacles)), alt_of(analysis))
+    uprights = _uprights(analysis, frame)
+    obstacles.paths += [stroke.points for stroke, _ in uprights]
+    parts = [
+        below(frame.scale, base, title_of(analysis, entries, width), entries.sign, width=width),
+        _interval(analysis, frame, obstacles),
+        *_rows(analysis, entries, frame, obstacles),
+        _named(uprights, frame, obstacles),
+        _far_target(analysis, frame, obstacles),
+    ]
+    return together(width, height, parts, alt_of(analysis))
 
 
 def alt_of(analysis: Analysis) -> str:
@@ -123,57 +128,61 @@ def _interval(analysis: Analysis, frame: Frame, obstacles: Obstacles) -> Drawing
     return Drawing(frame.width, frame.base, tuple(strokes), marks=tuple(marks))
 
 
-def _target(analysis: Analysis, frame: Frame, obstacles: Obstacles) -> Drawing:
-    target, scale = float(analysis.question.exact_target), frame.scale
-    text = f"{frame.noun} {shortened(analysis.question.target_as_typed, 160, 12)}"
-    if scale.holds(target):
-        x = scale.px(target)
-        upright = line(x, 2, x, frame.base, "dot", 1.8)
-        found = beside(text, x, obstacles)
-        return Drawing(frame.width, frame.base, (upright,), words=(found,) if found else ())
-    above = target > scale.high
-    edge = scale.end if above else scale.start
-    inner = edge - 26 if above else edge + 26
-    candidates = [
-        Words(inner - 4 if above else inner + 4, y, text, "right" if above else "left") for y in heights(frame.base)
+def _uprights(analysis: Analysis, frame: Frame) -> list[tuple[Stroke, str]]:
+    """Return the lines at the target and at target ± E (one-sided: the end that counts) that lie on the axis."""
+    question, scale = analysis.question, frame.scale
+    target, limit = float(question.exact_target), question.number("equivalence_limit")
+    lines: list[tuple[float, Dash, float, str]] = [(target, "dot", 1.8, _target_words(analysis, frame))]
+    if limit is not None and question.alternative != "greater":
+        lines.append((target - limit, "dashdot", 1.0, f"{frame.noun} − E"))
+    if limit is not None and question.alternative != "less":
+        lines.append((target + limit, "dashdot", 1.0, f"{frame.noun} + E"))
+    return [
+        (line(scale.px(value), 2, scale.px(value), frame.base, dash, width), text)
+        for value, dash, width, text in lines
+        if scale.holds(value)
     ]
-    found = obstacles.place(candidates)
+
+
+def _target_words(analysis: Analysis, frame: Frame) -> str:
+    return f"{frame.noun} {shortened(analysis.question.target_as_typed, 160, WORDS)}"
+
+
+def _named(uprights: list[tuple[Stroke, str]], frame: Frame, obstacles: Obstacles) -> Drawing:
+    """Return the upright lines with their words left or right of them, where nothing else stands."""
+    words = []
+    for stroke, text in uprights:
+        x = stroke.points[0][0]
+        sides: tuple[tuple[float, Align], ...] = ((x - 5, "right"), (x + 5, "left"))
+        found = obstacles.place(
+            Words(at, y, text, side)
+            for y in heights(frame.base)
+            for at, side in sides
+        )
+        words += [found] if found else []
+    return Drawing(frame.width, frame.base, tuple(stroke for stroke, _ in uprights), words=tuple(words))
+
+
+def _far_target(analysis: Analysis, frame: Frame, obstacles: Obstacles) -> Drawing:
+    """Return an arrow towards a target that lies too far away for the axis."""
+    target, scale = float(analysis.question.exact_target), frame.scale
+    if scale.holds(target):
+        return Drawing(frame.width, frame.base)
+    text, above = f"{_target_words(analysis, frame)}, beyond this axis", target > scale.high
+    edge, back = (scale.end, -1) if above else (scale.start, 1)
+    inner = edge + 26 * back
+    found = obstacles.place(
+        Words(inner + 5 * back, y, text, "right" if above else "left") for y in heights(frame.base)
+    )
     y = found.y if found else 6.0
-    arrow = Stroke(((inner, y), (edge - 5 if above else edge + 5, y)), "dot", 1.8)
-    head = Mark(edge - 4 if above else edge + 4, y, "right" if above else "left", 8, f"{text}, beyond this axis")
+    arrow = line(inner, y, edge + 5 * back, y, "dot", 1.8)
+    head = Mark(edge + 4 * back, y, "right" if above else "left", 8, text)
     return Drawing(frame.width, frame.base, (arrow,), marks=(head,), words=(found,) if found else ())
 
 
 def heights(base: float) -> list[float]:
     """Return the heights at which a label may stand, the upper ones first."""
     return [8.0 + 4 * step for step in range(int((base - 16) / 4))]
-
-
-def beside(text: str, x: float, obstacles: Obstacles) -> Words | None:
-    """Return a label left or right of an upright line where nothing else stands."""
-    sides = ((x - 5, "right"), (x + 5, "left"))
-    base = obstacles.frame.bottom
-    return obstacles.place(Words(at, y, text, side) for y in heights(base) for at, side in sides)  # type: ignore[arg-type]
-
-
-def _limits(analysis: Analysis, frame: Frame, obstacles: Obstacles) -> Drawing:
-    """Return target ± E, as far as it lies on the axis; one-sided: the side that counts."""
-    limit = analysis.question.number("equivalence_limit")
-    if limit is None:
-        return Drawing(frame.width, frame.base)
-    target, alternative = float(analysis.question.exact_target), analysis.question.alternative
-    ends = [(target - limit, f"{frame.noun} − E")] if alternative != "greater" else []
-    ends += [(target + limit, f"{frame.noun} + E")] if alternative != "less" else []
-    strokes, words = [], []
-    for value, text in ends:
-        if not frame.scale.holds(value):
-            continue
-        x = frame.scale.px(value)
-        strokes.append(line(x, 2, x, frame.base, "dashdot", 1.0))
-        obstacles.paths.append(strokes[-1].points)
-        found = beside(text, x, obstacles)
-        words += [found] if found else []
-    return Drawing(frame.width, frame.base, tuple(strokes), words=tuple(words))
 
 
 def _rows(analysis: Analysis, entries: Entries, frame: Frame, obstacles: Obstacles) -> list[Drawing]:
