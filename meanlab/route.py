@@ -241,7 +241,7 @@ def _says_coarse(look: Look) -> str:
 
 def _says_w(look: Look) -> str:
     W, p = look.shapiro_wilk
-    return f"Shapiro–Wilk W = {look.text(W)}, {look.p(p)}"
+    return f"Shapiro–Wilk W = {look.text(W, 3)}, {look.p(p)}"
 
 
 def _says_shape(look: Look) -> str:
