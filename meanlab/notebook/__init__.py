@@ -1,5 +1,20 @@
-"""What is kept between two visits: the page as it was left. SQLAlchemy is imported here and nowhere else."""
+"""What is kept between two visits: the page as it was left, and the entries. SQLAlchemy is imported here alone."""
 
+from meanlab.notebook.entry import Entry, Listed
+from meanlab.notebook.notebook import Notebook
+from meanlab.notebook.recomputing import Changed, recompute
+from meanlab.notebook.source import Source, SourceEntry, source_of
 from meanlab.notebook.working_state import Kept, WorkingStates
 
-__all__ = ["Kept", "WorkingStates"]
+__all__ = [
+    "Changed",
+    "Entry",
+    "Kept",
+    "Listed",
+    "Notebook",
+    "Source",
+    "SourceEntry",
+    "WorkingStates",
+    "recompute",
+    "source_of",
+]

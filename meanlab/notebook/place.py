@@ -1,11 +1,13 @@
 """Where the notebook lies, and how its database is opened."""
 
 import os
+from collections.abc import Iterator
+from contextlib import contextmanager
 from pathlib import Path
 from typing import Any
 
 import platformdirs
-from sqlalchemy import Engine, create_engine, event, make_url
+from sqlalchemy import Connection, Engine, StaticPool, create_engine, event, make_url
 from sqlalchemy.exc import ArgumentError, NoSuchModuleError, SQLAlchemyError
 
 from meanlab.core.complaints import NotebookComplaint
@@ -46,7 +48,10 @@ def open_engine(url: str) -> Engine:
         on_disk = parsed.get_backend_name() == "sqlite" and parsed.database not in (None, "", ":memory:")
         if on_disk:
             Path(str(parsed.database)).expanduser().parent.mkdir(parents=True, exist_ok=True)
-        engine = create_engine(parsed)
+        if parsed.get_backend_name() == "sqlite" and not on_disk:  # in memory: one connection for every thread
+            engine = create_engine(parsed, poolclass=StaticPool, connect_args={"check_same_thread": False})
+        else:
+            engine = create_engine(parsed)
     except (ArgumentError, NoSuchModuleError, ImportError) as problem:
         raise NotebookComplaint(
             f'"{place_in_words(url)}" is no database that can be opened ({problem}). Correct {VARIABLE}.'
@@ -55,7 +60,15 @@ def open_engine(url: str) -> Engine:
         raise cannot_keep(url, problem) from problem
     if parsed.get_backend_name() == "sqlite":
         event.listen(engine, "connect", _set_up_sqlite)
+        event.listen(engine, "begin", _begin_sqlite)
     return engine
+
+
+@contextmanager
+def writing(engine: Engine) -> Iterator[Connection]:
+    """Open a transaction that writes: it waits until it is the only one, so that what it reads stays true."""
+    with engine.execution_options(writes=True).begin() as connection:
+        yield connection
 
 
 def cannot_keep(url: str, problem: Exception) -> NotebookComplaint:
@@ -69,8 +82,14 @@ def cannot_keep(url: str, problem: Exception) -> NotebookComplaint:
 
 
 def _set_up_sqlite(connection: Any, _record: Any) -> None:
+    connection.isolation_level = None  # transactions begin where _begin_sqlite says so, not before a first change
     cursor = connection.cursor()
     cursor.execute(f"PRAGMA busy_timeout = {WAIT_FOR_ANOTHER_WRITER}")
     cursor.execute("PRAGMA journal_mode = WAL")
     cursor.execute("PRAGMA synchronous = FULL")
     cursor.close()
+
+
+def _begin_sqlite(connection: Connection) -> None:
+    writes = connection.get_execution_options().get("writes")
+    connection.exec_driver_sql("BEGIN IMMEDIATE" if writes else "BEGIN")

@@ -2,19 +2,17 @@
 
 import json
 import secrets
-from collections.abc import Collection, Iterator, Mapping
-from contextlib import contextmanager
+from collections.abc import Collection, Mapping
 from dataclasses import dataclass
 from datetime import UTC, datetime
 from hashlib import sha256
 from typing import Any
 
-from sqlalchemy import Connection, delete, insert, select, update
-from sqlalchemy.exc import SQLAlchemyError
+from sqlalchemy import delete, insert, select, update
 
 from meanlab.core.complaints import NotebookComplaint
-from meanlab.notebook.place import cannot_keep, database_url, open_engine, place_in_words
-from meanlab.notebook.schema import WORKING_FILE, WORKING_STATE, prepare
+from meanlab.notebook.database import Database
+from meanlab.notebook.schema import WORKING_FILE, WORKING_STATE
 
 KEY_BYTES = 24
 
@@ -27,22 +25,8 @@ class Kept:
     saved: datetime
 
 
-class WorkingStates:
-    """The working states of one database.
-
-    Every method raises NotebookComplaint, with a sentence, where the database cannot be read or written.
-    """
-
-    def __init__(self, url: str | None = None) -> None:
-        self.url = url or database_url()
-        self._engine = open_engine(self.url)
-        with self._said_plainly():
-            prepare(self._engine)
-
-    @property
-    def place(self) -> str:
-        """Where the states are kept, for the technician to read."""
-        return place_in_words(self.url)
+class WorkingStates(Database):
+    """The working states of one database."""
 
     @staticmethod
     def new_key() -> str:
@@ -56,7 +40,7 @@ class WorkingStates:
         """
         now = datetime.now(UTC)
         row = {"saved": now.isoformat(timespec="microseconds"), "state": json.dumps(state, ensure_ascii=False)}
-        with self._transaction() as connection:
+        with self._writing() as connection:
             done = connection.execute(update(WORKING_STATE).where(WORKING_STATE.c.notebook == key).values(**row))
             if done.rowcount == 0:
                 connection.execute(insert(WORKING_STATE).values(notebook=key, **row))
@@ -68,7 +52,7 @@ class WorkingStates:
     def load(self, key: str) -> Kept | None:
         """Return the state kept under a key, None where there is none."""
         query = select(WORKING_STATE.c.state, WORKING_STATE.c.saved).where(WORKING_STATE.c.notebook == key)
-        with self._transaction() as connection:
+        with self._reading() as connection:
             row = connection.execute(query).one_or_none()
         if row is None:
             return None
@@ -83,7 +67,7 @@ class WorkingStates:
         """Keep the bytes of an uploaded file beside the state of a key; returns their SHA-256 (hexadecimal)."""
         digest = sha256(content).hexdigest()
         there = select(WORKING_FILE.c.digest).where(WORKING_FILE.c.notebook == key, WORKING_FILE.c.digest == digest)
-        with self._transaction() as connection:
+        with self._writing() as connection:
             if connection.execute(there).one_or_none() is None:
                 connection.execute(insert(WORKING_FILE).values(notebook=key, digest=digest, content=content))
         return digest
@@ -91,27 +75,11 @@ class WorkingStates:
     def load_file(self, key: str, digest: str) -> bytes | None:
         """Return the bytes of a file kept beside the state of a key, None where there are none."""
         query = select(WORKING_FILE.c.content).where(WORKING_FILE.c.notebook == key, WORKING_FILE.c.digest == digest)
-        with self._transaction() as connection:
+        with self._reading() as connection:
             return connection.execute(query).scalar()
 
     def latest_key(self) -> str | None:
         """Return the key of the state that was kept last, None where nothing is kept."""
         query = select(WORKING_STATE.c.notebook).order_by(WORKING_STATE.c.saved.desc()).limit(1)
-        with self._transaction() as connection:
+        with self._reading() as connection:
             return connection.execute(query).scalar()
-
-    def close(self) -> None:
-        """Let go of the database."""
-        self._engine.dispose()
-
-    @contextmanager
-    def _transaction(self) -> Iterator[Connection]:
-        with self._said_plainly(), self._engine.begin() as connection:
-            yield connection
-
-    @contextmanager
-    def _said_plainly(self) -> Iterator[None]:
-        try:
-            yield
-        except (SQLAlchemyError, OSError) as problem:
-            raise cannot_keep(self.url, problem) from problem
