@@ -5,13 +5,14 @@ from meanlab.core.results import Analysis, NotApplicable, Test
 from meanlab.page import tables
 from meanlab.page.cache import Outcome
 from meanlab.wording.names import PROCEDURE_NAMES
-from meanlab.wording.numbers import decimal_text, interval_text, p_text, statistic_text
+from meanlab.wording.numbers import decimal_text, interval_text, level_text, p_text, significant, statistic_text
 
 DECISIONS = {
     "two-sided": ("differs", "not shown to differ"),
     "greater": ("exceeds", "not shown to exceed"),
     "less": ("falls below", "not shown to fall below"),
 }
+DIGITS_OF_FIT = 4
 HEADINGS = ("Procedure", "Speaks of the", "Estimate", "Interval", "Statistic", "p", "At the level asked")
 
 
@@ -25,7 +26,7 @@ def draw(found: Outcome | None) -> None:
     rows = [_row(analysis, found.texts.numbers.places, others[name]) for name in PROCEDURES if name in others]
     tables.sentences([_in_force(analysis)])
     tables.draw(HEADINGS, rows)
-    tables.sentences([*_remarks(analysis), change_line(analysis)])
+    tables.sentences([*_remarks(analysis), censored_line(analysis), change_line(analysis)])
 
 
 def change_line(analysis: Analysis) -> str:
@@ -42,6 +43,24 @@ def change_line(analysis: Analysis) -> str:
     return (
         f"Decides otherwise at this level: {', '.join(otherwise)}. The procedure was chosen by its rule before any "
         "p-value was looked at; choosing the one that suits afterwards makes more false alarms than the level says."
+    )
+
+
+def censored_line(analysis: Analysis) -> str:
+    """Return what the normal model fitted to all readings gives, those below or above a limit included; "" without."""
+    fit, sign = analysis.censored_fit, analysis.readings.decimal_sign
+    if fit is None:
+        return ""
+    mean, s = (significant(value, DIGITS_OF_FIT, sign) for value in (fit.mean, fit.s))
+    ends = " to ".join(
+        significant(end, DIGITS_OF_FIT, sign) for end in (fit.interval.low, fit.interval.high) if end is not None
+    )
+    return (
+        f"Normal model fitted to all {fit.n} readings, {fit.censored} of them below or above a limit (maximum "
+        f"likelihood): mean {mean}, s {s}, {level_text(fit.interval.level, sign)} interval {ends} "
+        f"(profile likelihood), {p_text(fit.p_value, analysis.question.alpha, sign)} "
+        "against the target. It holds only if the readings are "
+        "normal, which readings below a limit cannot show; it decides nothing here."
     )
 
 

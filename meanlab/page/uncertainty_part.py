@@ -1,7 +1,7 @@
 """Uncertainty: the components and their shares, scatter alone beside the whole, and the bounds beside the test."""
 
 from meanlab.core.results import Analysis, Uncertainty
-from meanlab.page import tables
+from meanlab.page import preparations, tables
 from meanlab.page.cache import Outcome
 from meanlab.wording.numbers import (
     decimal_text,
@@ -21,6 +21,8 @@ def draw(found: Outcome | None) -> None:
     budget = None if found is None else found.analysis.uncertainty
     if found is None or budget is None:
         tables.sentences([_nothing(found)])
+        if found is not None:
+            preparations.draw(found.analysis)
         return
     tables.draw(("Component", "Standard uncertainty u", "Degrees of freedom", "Share of u²"), _rows(found, budget))
     tables.sentences([found.texts.mean_line, *_scatter_only(found.analysis, budget)])
@@ -30,6 +32,7 @@ def draw(found: Outcome | None) -> None:
             [(bound.name, _in_unit(found, bound.bound), "yes" if bound.rejects else "no") for bound in budget.bounds],
         )
         tables.sentences(bound.message for bound in budget.bounds)
+    preparations.draw(found.analysis)
 
 
 def _nothing(found: Outcome | None) -> str:
