@@ -90,10 +90,11 @@ class SheetBuilder:
         rows: list[tuple[Cell, ...]] = []
         for row in sorted(self._rows):
             cells = self._rows[row]
-            near = [column for column in cells if row <= last_row and column <= last_column]
-            strays.extend(place_name(row, column) for column in cells if row > last_row or column > last_column)
-            if near:
-                width = max(near) + 1
+            width = max(cells) + 1
+            if row > last_row or width > last_column + 1:
+                strays.extend(place_name(row, column) for column in cells if row > last_row or column > last_column)
+                width = max((column + 1 for column in cells if row <= last_row and column <= last_column), default=0)
+            if width:
                 self._room.take_places(row + 1 - len(rows) + width)
                 rows.extend([()] * (row - len(rows)))
                 rows.append(tuple(cells.get(column, EMPTY) for column in range(width)))

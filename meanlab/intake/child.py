@@ -10,9 +10,11 @@ import json
 import os
 import subprocess
 import sys
+import threading
 import time
+from contextlib import suppress
 from pathlib import Path
-from typing import cast
+from typing import IO, cast
 
 from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.containers import Workbook
@@ -49,14 +51,20 @@ def sheets_from_child(data: bytes, kind: Workbook, seconds: float = SECONDS, mem
 
 def _answer(child: "subprocess.Popen[bytes]", data: bytes, seconds: float, memory: int) -> bytes:
     end = time.monotonic() + seconds
-    to_send: bytes | None = data
+    threading.Thread(target=_send, args=(child.stdin, data), daemon=True).start()
+    # what communicate() was given to send is lost when its time runs out, so the thread sends
+    child.stdin = None
     while True:
-        try:
-            return child.communicate(to_send, timeout=_LOOK_EVERY)[0]
-        except subprocess.TimeoutExpired:
-            to_send = None
+        with suppress(subprocess.TimeoutExpired):
+            return child.communicate(timeout=_LOOK_EVERY)[0]
         if time.monotonic() > end or _memory_of(child.pid) > memory:
             raise _too_much(memory, seconds)
+
+
+def _send(stream: IO[bytes], data: bytes) -> None:
+    """Send the file; a child that ended before has its own reason."""
+    with suppress(OSError), stream:
+        stream.write(data)
 
 
 def _memory_of(identity: int) -> int:

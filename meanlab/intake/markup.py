@@ -7,13 +7,13 @@ from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.parts import DAMAGED
 
 Attributes = dict[str, str]
-_DEEPEST = 200
+_MOST_NAMES = 1_000
 
 
 class Walker:
-    """What meets the elements of one part; names come without their prefix.
+    """What meets the elements of one part; subclasses take what they need of ``start``, ``end`` and ``text``.
 
-    Subclasses take what they need of ``start``, ``end`` and ``text``.
+    Where the root element has a prefix, all names come without theirs; where it has none, only foreign names have one.
     """
 
     def start(self, name: str, attributes: Attributes) -> None:
@@ -35,8 +35,14 @@ def walk(chunks: Iterable[bytes], walker: Walker) -> None:
     parser = expat.ParserCreate()
     parser.buffer_text = True
     parser.StartDoctypeDeclHandler = _refuse_document_type
-    parser.StartElementHandler, parser.EndElementHandler = _handlers(walker)
     parser.CharacterDataHandler = walker.text
+
+    def begin(name: str, attributes: Attributes) -> None:
+        start, end = _without_prefix(walker) if ":" in name else (walker.start, walker.end)
+        parser.StartElementHandler, parser.EndElementHandler = start, end
+        start(name, attributes)
+
+    parser.StartElementHandler = begin
     try:
         for chunk in chunks:
             parser.Parse(chunk, False)
@@ -45,27 +51,21 @@ def walk(chunks: Iterable[bytes], walker: Walker) -> None:
         raise IntakeComplaint(DAMAGED) from error
 
 
-def _handlers(walker: Walker) -> tuple[Callable[[str, Attributes], None], Callable[[str], None]]:
+def _without_prefix(
+    walker: Walker,
+) -> tuple[Callable[[str, Attributes], None], Callable[[str], None]]:
+    """Hand elements to the walker without their prefix."""
     plain: dict[str, str] = {}
-    depth = 0
 
     def start(name: str, attributes: Attributes) -> None:
-        nonlocal depth
-        depth += 1
-        if depth > _DEEPEST or len(plain) > 10_000:
-            raise IntakeComplaint(DAMAGED)
-        for key in attributes:
-            if ":" in key:
-                attributes = _without_prefixes(attributes)
-                break
         local = plain.get(name)
         if local is None:
+            if len(plain) > _MOST_NAMES:
+                raise IntakeComplaint(DAMAGED)
             local = plain[name] = name.rpartition(":")[2]
-        walker.start(local, attributes)
+        walker.start(local, _without_prefixes(attributes))
 
     def end(name: str) -> None:
-        nonlocal depth
-        depth -= 1
         walker.end(plain[name])
 
     return start, end

@@ -91,10 +91,13 @@ def number_text(number: float) -> str:
     >>> number_text(0.1 + 0.2), number_text(5e-05), number_text(2 / 3)
     ('0.3', '0.00005', '0.6666666666666666')
     """
+    shortest = repr(number)
+    if len(shortest) <= _INSTRUMENT_DIGITS and "e" not in shortest:
+        return shortest.removesuffix(".0") if number else "0"
     shown = f"{number:.{_SHOWN_DIGITS}g}"
     exact = Decimal(shown).normalize()
     if len(exact.as_tuple().digits) > _INSTRUMENT_DIGITS:
-        exact = Decimal(repr(number))
+        exact = Decimal(shortest)
     return _decimal_text(exact)
 
 
@@ -115,16 +118,16 @@ def date_text(number: float, since_1904: bool = False) -> str:
 
 def with_decimals(text: str, decimals: int) -> str:
     """The same number with zeros up to so many decimals; never fewer digits than it has."""
-    exponent = Decimal(text).as_tuple().exponent
-    if not isinstance(exponent, int) or -exponent >= decimals or "e" in text.lower():
+    missing = decimals - len(text.partition(".")[2])
+    if missing <= 0 or "E" in text:
         return text
-    return f"{Decimal(text):.{decimals}f}"
+    return f"{text}{'' if '.' in text else '.'}{'0' * missing}"
 
 
 def number_cell(number: float, section: Section) -> Cell:
     """The cell of a stored number shown as one section of a format says."""
     text = number_text(number)
-    computed = len(Decimal(text).as_tuple().digits) > _INSTRUMENT_DIGITS
+    computed = len(text) > _INSTRUMENT_DIGITS and len(Decimal(text).as_tuple().digits) > _INSTRUMENT_DIGITS
     if section.percent:
         text = _decimal_text(Decimal(text).scaleb(2 * section.percent))
     if section.exponent:

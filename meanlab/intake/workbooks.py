@@ -10,7 +10,7 @@ from meanlab.intake.parts import Parts
 from meanlab.intake.xls import is_readable, read_xls
 from meanlab.intake.xlsx import read_xlsx
 
-SMALL = 8 * 2**20
+SMALL = 2 * 2**20
 
 
 def sheets_of(data: bytes, filename: str = "") -> tuple[Sheet, ...]:
