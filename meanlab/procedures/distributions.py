@@ -11,6 +11,9 @@ import numpy as np
 from scipy import special
 
 EXACT_COUNT = 1000
+NEAR = 1e-6
+FAR = 1e150
+FEW_SHARE = 1 / 500
 
 
 def normal_upper(z: Any) -> Any:
@@ -30,20 +33,25 @@ def normal_critical(tail: Any) -> Any:
 def t_upper(t: Any, df: Any) -> Any:
     """Return P(T > t) for Student's t with ``df`` degrees of freedom (infinite: the normal distribution).
 
-    Near 0 the incomplete beta function loses digits in its argument, so two terms of the series are used there.
+    Near 0 the incomplete beta function loses digits in its argument, so two terms of the series are used there; where
+    t² no longer fits a double, the leading term (√ν/t)^ν/(ν·B(ν/2, ½)) is all of the tail.
 
     >>> round(float(t_upper(2.2621571627982053, 9)), 12)
     0.025
     """
     t, df = np.asarray(t, dtype=float), np.asarray(df, dtype=float)
-    finite = np.where(np.isfinite(df), df, 1.0)
+    all_finite = bool(np.isfinite(df).all())
+    finite = df if all_finite else np.where(np.isfinite(df), df, 1.0)
     with np.errstate(over="ignore", under="ignore"):
         tail = special.stdtr(finite, -t)
-        near = t * t < 1e-6 * finite
-        if np.any(near):
+        near, far = t * t < NEAR * np.minimum(finite, 1.0), t > FAR
+        if near.any():
             series = 0.5 - t * _t_height(finite) * (1 - (finite + 1) / finite * t * t / 6)
             tail = np.where(near, series, tail)
-        if np.all(np.isfinite(df)):
+        if far.any():
+            leading = (np.sqrt(finite) / np.where(far, t, FAR)) ** finite / (finite * special.beta(finite / 2, 0.5))
+            tail = np.where(far, leading, tail)
+        if all_finite:
             return tail
         return np.where(np.isfinite(df), tail, special.ndtr(-t))
 
@@ -61,17 +69,22 @@ def t_critical(tail: Any, df: Any) -> Any:
     return np.where(np.isfinite(df), -special.stdtrit(finite, tail), -special.ndtri(tail))
 
 
-def t_density(t: Any, df: float) -> Any:
+def t_density(t: Any, df: Any) -> Any:
     """Return the density of Student's t; infinite ``df`` gives the normal density."""
-    t = np.asarray(t, dtype=float)
-    if not np.isfinite(df):
-        return np.exp(-t * t / 2) / np.sqrt(2 * np.pi)
-    return _t_height(df) * np.exp(-(df + 1) / 2 * np.log1p(t * t / df))
+    t, df = np.asarray(t, dtype=float), np.asarray(df, dtype=float)
+    finite = np.where(np.isfinite(df), df, 1.0)
+    with np.errstate(over="ignore", under="ignore"):
+        density = _t_height(finite) * np.exp(-(finite + 1) / 2 * np.log1p(t * t / finite))
+        if np.all(np.isfinite(df)):
+            return density
+        return np.where(np.isfinite(df), density, np.exp(-t * t / 2) / np.sqrt(2 * np.pi))
 
 
 def _t_height(df: Any) -> Any:
-    """Return the density of Student's t at 0."""
-    return 1 / (np.sqrt(df) * special.beta(df / 2, 0.5))
+    """Return the density of Student's t at 0; the beta function loses digits at many degrees of freedom."""
+    v = 1 / np.asarray(df, dtype=float)
+    many = (1 + v * (-1 / 4 + v * (1 / 32 + v * (5 / 128 - v * 21 / 2048)))) / np.sqrt(2 * np.pi)
+    return np.where(v < FEW_SHARE, many, 1 / (np.sqrt(df) * special.beta(np.asarray(df) / 2, 0.5)))
 
 
 def fair_lower(count: int, n: int) -> float:
