@@ -20,7 +20,11 @@ def draw(found: Outcome | None) -> None:
     """Draw what the readings at hand could have shown, and the planning of further ones."""
     if found is not None:
         tables.heading("These readings")
-        tables.sentences([enough_sentence(found.analysis)])
+        words, curve = st.columns([2, 3], gap="medium")
+        with words:
+            tables.sentences([enough_sentence(found.analysis)])
+        with curve:
+            pictures.missed(found.analysis)
     tables.heading("Planning")
     fields, result = st.columns([2, 3], gap="medium")
     with fields:

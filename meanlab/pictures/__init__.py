@@ -5,7 +5,8 @@ can land on another.
 """
 
 from meanlab.pictures.agreement import agreement_picture
-from meanlab.pictures.course import course_picture, operating_characteristic_picture
+from meanlab.pictures.characteristic import operating_characteristic_picture
+from meanlab.pictures.course import course_picture
 from meanlab.pictures.drawing import Drawing
 from meanlab.pictures.normality import normality_picture
 from meanlab.pictures.readings import readings_picture

@@ -2,7 +2,8 @@
 
 from meanlab.core.results import Analysis
 from meanlab.pictures.axis import Scale, below
-from meanlab.pictures.drawing import Drawing, Mark, Words, line, together
+from meanlab.pictures.drawing import Drawing, Words, line, together
+from meanlab.pictures.interval import interval_bar
 from meanlab.pictures.places import kept_inside
 from meanlab.wording.names import short_noun, unit_of
 from meanlab.wording.numbers import level_text
@@ -37,7 +38,8 @@ def agreement_picture(analysis: Analysis, width: float = WIDTH, height: float = 
 
 def _bars(analysis: Analysis) -> list[Bar]:
     found, test, sign = analysis.equivalence, analysis.test, analysis.readings.decimal_sign
-    assert found is not None and test is not None
+    assert found is not None
+    assert test is not None
     target = float(analysis.question.exact_target)
     ends = [None if end is None else end - target for end in (found.low, found.high)]
     one_sided = analysis.question.alternative != "two-sided"
@@ -59,17 +61,9 @@ def _limits(analysis: Analysis) -> list[float]:
 
 def _row(bar: Bar, scale: Scale, y: float, width: float) -> Drawing:
     name, low, high = bar
-    strokes, marks = [], []
-    left, right = scale.start if low is None else scale.px(low), scale.end if high is None else scale.px(high)
-    if low is None and high is None:
-        return Drawing(width, y, words=(Words(4, y, f"{name}: none", "left"),))
-    strokes.append(line(left, y, right, y, width=2.0))
-    for end, x, shape in ((low, left, "left"), (high, right, "right")):
-        if end is None:
-            marks.append(Mark(x, y, "left" if shape == "left" else "right", 9, "no bound on this side"))
-        else:
-            strokes.append(line(x, y - 7, x, y + 7, width=1.6))
-    return Drawing(width, y, tuple(strokes), marks=tuple(marks), words=(Words(4, y, name, "left"),))
+    text = f"{name}: none" if low is None and high is None else name
+    named = Drawing(width, y, words=(Words(4, y, text, "left"),))
+    return together(width, y, (interval_bar(low, high, scale, y, 7.0), named))
 
 
 def _uprights(limits: list[float], noun: str, scale: Scale, base: float, width: float) -> Drawing:

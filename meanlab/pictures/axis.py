@@ -67,8 +67,8 @@ def _first_step(raw: Decimal) -> Decimal:
 
 
 def _next_step(step: Decimal) -> Decimal:
-    times = {1: 2, 2: Decimal("2.5"), 5: 2}[step.normalize().as_tuple().digits[0]]
-    return step * times
+    first = step.normalize().as_tuple().digits[0]
+    return step * (Decimal("2.5") if first == 2 else Decimal(2))
 
 
 def marks_that_fit(scale: Scale, sign: str, right: float, size: float = WORDS) -> tuple[Marked, ...]:
@@ -106,25 +106,28 @@ def below(scale: Scale, y: float, title: str, sign: str, size: float = WORDS, wi
     return Drawing(right, y + TICK + 34, tuple(strokes), words=tuple(words))
 
 
-def upright(scale: Scale, x: float, title: str, sign: str, right: float, size: float = WORDS) -> Drawing:
+def upright(scale: Scale, x: float, title: str, sign: str, right: float, above: float = WORDS) -> Drawing:
     """Return an upright axis at pixel x with round values left of it, its title above it and faint guides to ``right``.
 
-    The texts of the values need about 60 pixels left of x.
+    The texts of the values need `widest` pixels left of x; the title stands ``above`` pixels over the upper end.
     """
-    room = max(2, int(abs(scale.start - scale.end) / (size * 2.2)))
-    marks = round_marks(scale.low, scale.high, min(room, MOST_MARKS), sign)
+    marks = _marks_up(scale, sign)
     strokes = [line(x, scale.start, x, scale.end, width=1.0)]
-    words = [Words(0.0, scale.end - size, title, "left", size)]
+    words = [Words(0.0, scale.end - above, title, "left")]
     for mark in marks:
         y = scale.px(mark.value)
         strokes.append(line(x - TICK, y, x, y, width=1.0))
         strokes.append(Stroke(((x, y), (right, y)), width=0.6, faint=True))
-        words.append(Words(x - TICK - 3, y, mark.text, "right", size))
+        words.append(Words(x - TICK - 3, y, mark.text, "right"))
     return Drawing(right, scale.start, tuple(strokes), words=tuple(words))
 
 
-def widest(scale: Scale, sign: str, size: float = WORDS) -> float:
+def widest(scale: Scale, sign: str) -> float:
     """Return the room that the texts of an upright axis need, in pixels."""
-    room = max(2, int(abs(scale.start - scale.end) / (size * 2.2)))
-    marks = round_marks(scale.low, scale.high, min(room, MOST_MARKS), sign)
-    return max((width_of(mark.text, size) for mark in marks), default=0.0) + TICK + 3
+    marks = _marks_up(scale, sign)
+    return max((width_of(mark.text, WORDS) for mark in marks), default=0.0) + TICK + 3
+
+
+def _marks_up(scale: Scale, sign: str) -> tuple[Marked, ...]:
+    room = int(abs(scale.start - scale.end) / (WORDS * 2.2))
+    return round_marks(scale.low, scale.high, max(2, min(room, MOST_MARKS)), sign)

@@ -2,6 +2,7 @@
 
 from io import BytesIO
 from threading import Lock
+from typing import Any
 
 import matplotlib
 from matplotlib.backends.backend_agg import FigureCanvasAgg
@@ -18,11 +19,11 @@ DOTS_PER_INCH = 200
 POINTS_PER_PIXEL = 72 / PIXELS_PER_INCH
 FONT = "DejaVu Sans"
 INK, GREY, FAINT = "#000000", "#444444", "#bbbbbb"
-DASHES = {"solid": "solid", "dash": (0, (5, 3)), "dot": (0, (1.2, 2)), "dashdot": (0, (6, 2, 1.2, 2))}
+DASHES: Any = {"solid": "solid", "dash": (0, (5, 3)), "dot": (0, (1.2, 2)), "dashdot": (0, (6, 2, 1.2, 2))}
 SHAPES = {"dot": "o", "circle": "o", "tick": "|", "cross": "x", "diamond": "D", "left": "<", "right": ">"}
 HOLLOW = ("circle",)
 NO_GLYPH = "□"
-_SAME_IDS = {"svg.hashsalt": "meanlab", "svg.fonttype": "path"}
+_SAME_IDS: Any = {"svg.hashsalt": "meanlab", "svg.fonttype": "path"}
 _ONE_AT_A_TIME = Lock()
 
 

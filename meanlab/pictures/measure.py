@@ -7,6 +7,7 @@ is narrower. tests/pictures compares them with what matplotlib draws.
 import unicodedata
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
+from itertools import pairwise
 from types import MappingProxyType
 
 _SETS = {
@@ -133,8 +134,7 @@ def shortened(text: str, width: float, size: float) -> str:
 
 def crossed(box: Box, points: Iterable[tuple[float, float]]) -> bool:
     """Tell whether a line through points enters a rectangle."""
-    path = tuple(points)
-    return any(_enters(box, start, end) for start, end in zip(path, path[1:], strict=False))
+    return any(_enters(box, start, end) for start, end in pairwise(points))
 
 
 def _enters(box: Box, start: tuple[float, float], end: tuple[float, float]) -> bool:

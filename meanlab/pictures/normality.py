@@ -85,7 +85,8 @@ def _points(
 
 
 def _key(plot: ProbabilityPlot, width: float, sign: str) -> Drawing:
-    text = f"grey: {level_text(plot.level, sign)} band for each point by itself; {outside(plot)} of {len(plot.line)} outside"
+    band = f"grey: {level_text(plot.level, sign)} band for each point by itself"
+    text = f"{band}; {outside(plot)} of {len(plot.line)} outside"
     return Drawing(width, TOP, words=(Words(0.0, 10.0, text, "left"),))
 
 

@@ -7,6 +7,7 @@ from meanlab.core.results import Analysis
 from meanlab.pictures.axis import Scale, below
 from meanlab.pictures.drawing import WORDS, Align, Dash, Drawing, Mark, Stroke, Words, line, together
 from meanlab.pictures.entries import Entries, Entry, entries_of, thinned
+from meanlab.pictures.interval import interval_bar
 from meanlab.pictures.measure import Box, shortened
 from meanlab.pictures.places import Obstacles
 from meanlab.wording.digits import estimate_of
@@ -71,8 +72,8 @@ def title_of(analysis: Analysis, entries: Entries, width: float) -> str:
     """Return the title of the axis: the unit and what stands above it."""
     test = analysis.test
     nested = analysis.readings.preparations is not None
-    shown_of = len(entries.kept)
-    what = "readings" if len(thinned(entries.kept)) == shown_of else f"readings ({len(thinned(entries.kept))} of {shown_of})"
+    drawn, there = len(thinned(entries.kept)), len(entries.kept)
+    what = "readings" if drawn == there else f"readings ({drawn} of {there})"
     if nested:
         what = "injections (ticks) and preparation means"
     if test is not None:
@@ -108,24 +109,19 @@ def _finite(value: float) -> float:
 
 
 def _interval(analysis: Analysis, frame: Frame, obstacles: Obstacles) -> Drawing:
-    test, estimate, scale = analysis.test, estimate_of(analysis), frame.scale
-    strokes, marks, y = [], [], INTERVAL_ROW
-    if test is not None and (test.interval.low is not None or test.interval.high is not None):
-        ends = (test.interval.low, test.interval.high)
-        left, right = (scale.start if ends[0] is None else scale.px(ends[0])), (
-            scale.end if ends[1] is None else scale.px(ends[1])
-        )
-        strokes.append(line(left, y, right, y, width=2.0))
-        for end, x, shape in ((ends[0], left, "left"), (ends[1], right, "right")):
-            if end is None:
-                marks.append(Mark(x, y, shape, 9, "no bound on this side"))
-            else:
-                strokes.append(line(x, y - 6, x, y + 6, width=1.6))
+    """Return the interval with its estimate, above the readings."""
+    test, estimate, scale, y = analysis.test, estimate_of(analysis), frame.scale, INTERVAL_ROW
+    low, high = (None, None) if test is None else (test.interval.low, test.interval.high)
+    bar = interval_bar(low, high, scale, y)
+    for stroke in bar.strokes[:1]:
+        (left, _), (right, _) = stroke.points
         obstacles.boxes.append(Box(left - 5, y - 7, right + 5, y + 7))
-    if estimate is not None:
-        marks.append(Mark(scale.px(estimate), y, "dot", 9, f"{parameter_of(analysis)} {shown(analysis).estimate}"))
-        obstacles.boxes.append(Box(scale.px(estimate) - 6, y - 7, scale.px(estimate) + 6, y + 7))
-    return Drawing(frame.width, frame.base, tuple(strokes), marks=tuple(marks))
+    if estimate is None:
+        return bar
+    x = scale.px(estimate)
+    obstacles.boxes.append(Box(x - 6, y - 7, x + 6, y + 7))
+    dot = Mark(x, y, "dot", 9, f"{parameter_of(analysis)} {shown(analysis).estimate}")
+    return together(frame.width, frame.base, (bar, Drawing(frame.width, frame.base, marks=(dot,))))
 
 
 def _uprights(analysis: Analysis, frame: Frame) -> list[tuple[Stroke, str]]:
@@ -154,11 +150,7 @@ def _named(uprights: list[tuple[Stroke, str]], frame: Frame, obstacles: Obstacle
     for stroke, text in uprights:
         x = stroke.points[0][0]
         sides: tuple[tuple[float, Align], ...] = ((x - 5, "right"), (x + 5, "left"))
-        found = obstacles.place(
-            Words(at, y, text, side)
-            for y in heights(frame.base)
-            for at, side in sides
-        )
+        found = obstacles.place(Words(at, y, text, side) for y in heights(frame.base) for at, side in sides)
         words += [found] if found else []
     return Drawing(frame.width, frame.base, tuple(stroke for stroke, _ in uprights), words=tuple(words))
 
@@ -171,9 +163,7 @@ def _far_target(analysis: Analysis, frame: Frame, obstacles: Obstacles) -> Drawi
     text, above = f"{_target_words(analysis, frame)}, beyond this axis", target > scale.high
     edge, back = (scale.end, -1) if above else (scale.start, 1)
     inner = edge + 26 * back
-    found = obstacles.place(
-        Words(inner + 5 * back, y, text, "right" if above else "left") for y in heights(frame.base)
-    )
+    found = obstacles.place(Words(inner + 5 * back, y, text, "right" if above else "left") for y in heights(frame.base))
     y = found.y if found else 6.0
     arrow = line(inner, y, edge + 5 * back, y, "dot", 1.8)
     head = Mark(edge + 4 * back, y, "right" if above else "left", 8, text)
@@ -205,9 +195,7 @@ def _rows(analysis: Analysis, entries: Entries, frame: Frame, obstacles: Obstacl
     return [*drawn, Drawing(frame.width, frame.base, marks=marks)]
 
 
-def _stacked(
-    chosen: tuple[Entry, ...], entries: Entries, scale: Scale, top: float, bottom: float
-) -> tuple[Mark, ...]:
+def _stacked(chosen: tuple[Entry, ...], entries: Entries, scale: Scale, top: float, bottom: float) -> tuple[Mark, ...]:
     """Return a tick for each reading; equal ones stand on each other."""
     heaps: dict[int, list[Entry]] = {}
     for entry in chosen:
@@ -221,9 +209,7 @@ def _stacked(
     )
 
 
-def _nested(
-    analysis: Analysis, entries: Entries, scale: Scale, top: float, bottom: float
-) -> tuple[Mark, ...]:
+def _nested(analysis: Analysis, entries: Entries, scale: Scale, top: float, bottom: float) -> tuple[Mark, ...]:
     """Return a row for each of a few preparations, or two rows for many: means above, injections below."""
     lines = analysis.summary.preparations
     few = len(lines) <= MOST_ROWS_OF_PREPARATIONS

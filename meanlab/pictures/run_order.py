@@ -1,5 +1,7 @@
 """The readings in the order in which they were entered or measured."""
 
+from collections.abc import Mapping
+
 from meanlab.core.results import Analysis
 from meanlab.pictures.axis import Scale, below, upright, widest
 from meanlab.pictures.drawing import Drawing, Mark, Stroke, Words, line, together
@@ -32,9 +34,9 @@ def run_order_picture(analysis: Analysis, width: float = WIDTH, height: float = 
         if values.holds(entry.value)
     ]
     noun, target = short_noun(analysis.question.target_kind), float(analysis.question.exact_target)
-    levels = [("dash", "mean", analysis.summary.mean), ("dot", noun, target)]
-    drawn = [(dash, text, values.px(value)) for dash, text, value in levels if value is not None and values.holds(value)]
-    strokes += [line(left, y, right, y, dash, 1.4) for dash, _, y in drawn]
+    levels = {"mean": analysis.summary.mean, noun: target}
+    drawn = {name: values.px(value) for name, value in levels.items() if value is not None and values.holds(value)}
+    strokes += [line(left, y, right, y, "dash" if name == "mean" else "dot") for name, y in drawn.items()]
     title = "order of measurement" if analysis.question.run_order else "order of the entries"
     unit = shortened(entries.unit, width / 3, 12) or "readings"
     axis = below(order, base, title, entries.sign, width=width)
@@ -46,10 +48,10 @@ def run_order_picture(analysis: Analysis, width: float = WIDTH, height: float = 
     )  # fmt: skip
 
 
-def _names(drawn: list[tuple[str, str, float]], right: float) -> tuple[Words, ...]:
+def _names(drawn: Mapping[str, float], right: float) -> tuple[Words, ...]:
     """Return the names of the levels at their right ends, moved apart where they would touch."""
     words: list[Words] = []
-    for _, text, y in sorted(drawn, key=lambda one: one[2]):
+    for text, y in sorted(drawn.items(), key=lambda one: one[1]):
         lowest = words[-1].y + 16 if words else y
         words.append(Words(right + 6, max(y, lowest), text, "left"))
     return tuple(words)

@@ -1,4 +1,4 @@
-"""The sampling distribution: what the statistic does if the true value is the target, what rejects, what was observed."""
+"""The sampling distribution: what the statistic does if the true value is the target, what rejects, what was seen."""
 
 from collections.abc import Iterator
 from dataclasses import dataclass
@@ -8,7 +8,7 @@ import numpy as np
 
 from meanlab.core.results import Test
 from meanlab.pictures.axis import Scale, below
-from meanlab.pictures.drawing import Drawing, Fill, Mark, Point, Stroke, Words, line, together
+from meanlab.pictures.drawing import Align, Drawing, Fill, Mark, Point, Stroke, Words, line, together
 from meanlab.pictures.measure import Box
 from meanlab.pictures.null_law import CURVE_POINTS, NullLaw, Region, drawn_statistic, null_law
 from meanlab.pictures.places import Obstacles, around, kept_inside
@@ -50,7 +50,7 @@ def sampling_distribution(
     base = height - ROOM_BELOW
     scale = Scale(low, high, SIDE, width - SIDE)
     frame = _Frame(scale, base, (base - STRIP - 4) / _peak(law), width)
-    obstacles = Obstacles(Box(0, STRIP, width, base - 2))
+    obstacles = Obstacles(Box(0, 0, width, base - 2))
     shape = _bars(law, frame, obstacles) if law.bars else _curve(law, frame, obstacles)
     seen = _observed(test, observed, far, frame, obstacles, sign)
     words = _region_words(test, law, frame, obstacles, sign)
@@ -131,9 +131,10 @@ def _curve(law: NullLaw, frame: _Frame, obstacles: Obstacles) -> Drawing:
         xs = np.concatenate(([start], inside, [end]))
         top = [frame.point(float(x), float(y)) for x, y in zip(xs, law.density(xs), strict=True)]
         fills.append(Fill(((top[0][0], frame.base), *top, (top[-1][0], frame.base))))
+    tops = [float(law.density(np.array([region.bound]))[0]) for region in law.regions]
     bounds = tuple(
-        line(*frame.point(region.bound, 0.0), *frame.point(region.bound, float(law.density(np.array([region.bound]))[0])))
-        for region in law.regions
+        line(*frame.point(region.bound, 0.0), *frame.point(region.bound, top))
+        for region, top in zip(law.regions, tops, strict=True)
     )
     return Drawing(frame.width, frame.base, (Stroke(curve, width=1.8), *bounds), tuple(fills))
 
@@ -154,9 +155,7 @@ def _bars(law: NullLaw, frame: _Frame, obstacles: Obstacles) -> Drawing:
     return Drawing(frame.width, frame.base, tuple(strokes), tuple(fills))
 
 
-def _observed(
-    test: Test, observed: float, far: int, frame: _Frame, obstacles: Obstacles, sign: str
-) -> Drawing:
+def _observed(test: Test, observed: float, far: int, frame: _Frame, obstacles: Obstacles, sign: str) -> Drawing:
     text = statistic_text(test, sign)
     middle = STRIP / 2
     if far:
@@ -164,18 +163,18 @@ def _observed(
         inner = edge - far * 30
         words = Words(inner - far * 6, middle, f"{text}, beyond this axis", "right" if far > 0 else "left", bold=True)
         arrow = line(inner, middle, edge - far * 6, middle, "dash", 1.8)
+        obstacles.boxes += [words.box, Box(min(inner, edge), 0, max(inner, edge), STRIP)]
         head = Mark(edge - far * 4, middle, "right" if far > 0 else "left", 9, text)
         return Drawing(frame.width, frame.base, (arrow,), (), (head,), (words,))
     x = frame.scale.px(observed)
     upright = line(x, STRIP - 1, x, frame.base, "dash", 1.8)
     obstacles.paths.append(upright.points)
     words = kept_inside(Words(x, middle, text, bold=True), frame.width)
+    obstacles.boxes.append(words.box)
     return Drawing(frame.width, frame.base, (upright,), words=(words,))
 
 
-def _region_words(
-    test: Test, law: NullLaw, frame: _Frame, obstacles: Obstacles, sign: str
-) -> tuple[Words, ...]:
+def _region_words(test: Test, law: NullLaw, frame: _Frame, obstacles: Obstacles, sign: str) -> tuple[Words, ...]:
     heights = [frame.base - 14 - 6 * step for step in range(int((frame.base - STRIP - 18) / 6))]
     if not law.regions:
         text = f"no outcome can reject at {level_text(test.significance, sign)}"
@@ -190,12 +189,12 @@ def _region_words(
     return tuple(placed)
 
 
-def _beside(
-    text: str, region: Region, frame: _Frame, obstacles: Obstacles, heights: list[float]
-) -> Iterator[Words]:
+def _beside(text: str, region: Region, frame: _Frame, obstacles: Obstacles, heights: list[float]) -> Iterator[Words]:
     """Return places for the words of a region: outside its bound first, then nearer to the middle."""
     bound = min(max(frame.scale.px(region.bound), 0.0), frame.width)
-    outwards, inwards, edge = ("left", "right", frame.width) if region.upper else ("right", "left", 0.0)
+    outwards: Align = "left" if region.upper else "right"
+    inwards: Align = "right" if region.upper else "left"
+    edge = frame.width if region.upper else 0.0
     step = 1.0 if region.upper else -1.0
     for y in heights:
         yield Words(bound + 4 * step, y, text, outwards)
@@ -209,3 +208,5 @@ def _beside(
         yield Words(bound, y, text)
         for part in range(1, 6):
             yield Words(bound - 20 * part * step, y, text, outwards)
+    yield Words(edge, STRIP / 2, text, inwards)
+    yield Words(frame.width - edge, STRIP / 2, text, outwards)

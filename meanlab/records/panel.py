@@ -63,7 +63,9 @@ def _head(texts: PanelTexts, inner: float) -> Drawing:
     ]
     taken = max(one.box.right - one.box.left for one in words)
     title = wrapped(texts.title, inner - taken - 24, TITLE, bold=True)
-    words += [Words(0.0, TITLE_LINE * (place + 0.5), text, "left", TITLE, bold=True) for place, text in enumerate(title)]
+    words += [
+        Words(0.0, TITLE_LINE * (place + 0.5), text, "left", TITLE, bold=True) for place, text in enumerate(title)
+    ]
     return Drawing(inner, TITLE_LINE * max(len(verdict), len(title)), words=tuple(words))
 
 
