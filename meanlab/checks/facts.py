@@ -1,12 +1,13 @@
 """What the checks are told beside the readings themselves."""
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 
 from meanlab.core.question import Question
-from meanlab.core.results import Check, Outcome
-from meanlab.wording.numbers import decimal_text, p_text
+from meanlab.wording.names import counted
+from meanlab.wording.numbers import decimal_text, level_text, number_text, p_text, significant, unit_text
 
-PRETEST = 0.05
+CHECK_LEVEL = 0.05
 
 
 @dataclass(frozen=True)
@@ -40,22 +41,53 @@ class Facts:
         """r/s, None where the step is unknown or the units do not scatter."""
         return self.resolution / self.s if self.resolution is not None and self.s else None
 
+    @property
+    def nested(self) -> bool:
+        """Whether any unit is a preparation of several readings."""
+        return any(len(places) > 1 for places in self.places)
+
+    @property
+    def noun(self) -> str:
+        """What a unit is called."""
+        return "preparation" if self.nested else "reading"
+
     def text(self, value: float, places: int = 2) -> str:
         """Return a figure with the decimal sign of the readings."""
         return decimal_text(value, places, self.decimal_sign)
 
-    def p(self, value: float) -> str:
+    def p(self, value: float, level: float = CHECK_LEVEL) -> str:
         """Return a p-value as text."""
-        return p_text(value, PRETEST, self.decimal_sign)
+        return p_text(value, level, self.decimal_sign)
 
-    def nested(self) -> bool:
-        """Whether a unit is a preparation of several readings."""
-        return any(len(places) > 1 for places in self.places)
+    def percent(self, share: float) -> str:
+        """Return a share in %."""
+        return level_text(share, self.decimal_sign)
+
+    @property
+    def readings(self) -> str:
+        """How many units, in words: "8 readings", "3 preparations"."""
+        return counted(self.n, self.noun)
+
+    def with_unit(self, value: float, digits: int = 3) -> str:
+        """Return a value with so many significant digits and the unit of the readings."""
+        return unit_text(significant(value, digits, self.decimal_sign), self.question.unit or self.unit)
+
+    def step_text(self, step: float) -> str:
+        """Return the step of the units: of single readings as it is, of preparation means with two digits."""
+        text = significant(step, 2, self.decimal_sign) if self.nested else number_text(step, self.decimal_sign)
+        return unit_text(text, self.question.unit or self.unit)
+
+
+def at_most(n: int, figures: Mapping[int, float]) -> tuple[int, float] | None:
+    """Return the entry of a table by n whose n is the largest not above ``n``; None below the first.
+
+    >>> at_most(9, {5: 0.15, 8: 0.31, 12: 0.48})
+    (8, 0.31)
+    """
+    known = [row for row in figures if row <= n]
+    return (max(known), figures[max(known)]) if known else None
 
 
 def coarse_limit(n: int) -> float:
-    """Return the r/s above which rounding makes a test of normality meaningless (row 8 of the rule)."""
+    """Return the r/s above which rounding makes a test of normality meaningless, as in row 8 of the rule."""
     return 0.3 if n <= 30 else 0.2 if n <= 60 else 0.1
-
-
-__all__ = ["PRETEST", "Check", "Facts", "Outcome", "coarse_limit"]

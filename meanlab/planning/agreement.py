@@ -1,19 +1,26 @@
 """The probability to show agreement within a limit: two one-sided tests, integrated over s."""
 
-from math import hypot, sqrt
+from math import hypot, inf, sqrt
 
 import numpy as np
+from scipy.optimize import brentq
 
 from meanlab.planning.detection import critical_distance
 from meanlab.planning.scatter import ratio_panels
 from meanlab.procedures.distributions import normal_critical, normal_upper, t_critical
 from meanlab.procedures.mean_tests import Further
 
+HIGHEST_RATIO = 50.0
+STEEPEST = 40.0
+
 
 def agreement_power(n: int, limit: float, s: float, true: float, significance: float, target_u: float = 0.0) -> float:
     """Return the probability that n units show agreement within ± limit at this true difference.
 
-    ∫ over s of P(|N(Δ, σ²/n + u²)| < E − t(ν(s))·√(s²/n + u²)). Source: Owen 1965; Schuirmann 1987.
+    ∫ over s of P(|N(Δ, σ²/n + u²)| < E − t(ν(s))·√(s²/n + u²)), tail α each. Source: Owen 1965; Schuirmann 1987.
+
+    >>> round(agreement_power(10, 1.0, 1.0, 0.0, 0.05), 4)
+    0.7952
     """
     if n < 2:
         return 0.0
@@ -22,7 +29,7 @@ def agreement_power(n: int, limit: float, s: float, true: float, significance: f
     steepest = float(t_critical(significance, df)) * scatter / total
     edge = (limit - abs(true)) / (steepest * total)
     last = _last_ratio(limit, scatter, df, further, significance)
-    r, weights = ratio_panels(df, edge, 1 / steepest, steps=min(steepest, 40.0), upto=last)
+    r, weights = ratio_panels(df, edge, 1 / steepest, steps=min(steepest, STEEPEST), upto=last)
     room = limit - critical_distance(r, scatter, df, further, significance)
     return float(weights @ _between(-(room + true) / total, (room - true) / total, room > 0))
 
@@ -31,24 +38,19 @@ def _last_ratio(limit: float, scatter: float, df: float, further: Further, signi
     """Return the ratio s/σ from which on nothing can agree, because the interval is wider than the limits."""
     if further.u == 0:
         return limit / (float(t_critical(significance, df)) * scatter)
-    low, high = 0.0, 1.0
 
-    def reaches(r: float) -> bool:
-        return bool(critical_distance(np.array([r]), scatter, df, further, significance)[0] >= limit)
+    def beyond(r: float) -> float:
+        return float(critical_distance(r, scatter, df, further, significance)) - limit
 
-    if reaches(0.0):
+    if beyond(0.0) >= 0:
         return 0.0
-    while not reaches(high) and high < 1e6:
-        low, high = high, 2 * high
-    for _ in range(60):
-        middle = (low + high) / 2
-        low, high = (low, middle) if reaches(middle) else (middle, high)
-    return high
+    return float(brentq(beyond, 0.0, HIGHEST_RATIO, xtol=1e-14)) if beyond(HIGHEST_RATIO) > 0 else inf
 
 
 def _between(low: np.ndarray, high: np.ndarray, there: np.ndarray) -> np.ndarray:
     """Return P(low < Z < high), 0 where there is no room."""
-    lower, upper = np.where(high > 0, -high, low), np.where(high > 0, -low, high)
+    right = low + high > 0  # both ends are taken in the tail where they are small, so that nothing cancels
+    lower, upper = np.where(right, low, -high), np.where(right, high, -low)
     return np.where(there, np.clip(normal_upper(lower) - normal_upper(upper), 0.0, None), 0.0)
 
 
@@ -59,4 +61,3 @@ def highest_agreement(limit: float, true: float, significance: float, target_u: 
     room = limit / target_u - float(normal_critical(significance))
     shift = abs(true) / target_u
     return max(0.0, float(normal_upper(-room + shift) - normal_upper(room + shift)))
-

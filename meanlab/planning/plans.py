@@ -8,15 +8,8 @@ from meanlab.core.complaints import PlanComplaint
 from meanlab.core.results import Plan
 from meanlab.planning import given
 from meanlab.planning.agreement import agreement_power, highest_agreement
-from meanlab.planning.detection import (
-    MOST_READINGS,
-    Design,
-    detection_power,
-    direction,
-    first_enough,
-    out_of_reach,
-    readings_needed,
-)
+from meanlab.planning.detection import Design, detection_power
+from meanlab.planning.searches import MOST_READINGS, first_enough, lower_guess, out_of_reach, readings_needed
 from meanlab.procedures.distributions import normal_critical, t_critical
 from meanlab.procedures.mean_tests import Further
 from meanlab.wording.numbers import level_text, significant
@@ -95,9 +88,11 @@ def plan_detection(
             "type the smallest true difference that must not be missed.",
             "difference",
         )
-    if alternative != "two-sided" and size * direction(alternative) < 0:
+    if alternative != "two-sided" and size * design.side < 0:
         asked = "above" if alternative == "greater" else "below"
-        return _none(f"The question asks whether the mean lies {asked} the target; this difference lies on the other side.")
+        return _none(
+            f"The question asks whether the mean lies {asked} the target; this difference lies on the other side."
+        )
     needed = readings_needed(size, wanted, design)
     course = lambda n: detection_power(n, size, design)  # noqa: E731
     if needed is None:
@@ -124,14 +119,17 @@ def plan_agreement(
     u = given.not_negative(target_uncertainty, "standard uncertainty of the target", "target_uncertainty")
     if abs(true) >= E:
         return _none("The true difference is as large as the limit E or larger: there is no agreement to be shown.")
-    course = lambda n: agreement_power(n, E, scatter, true, alpha, u)  # noqa: E731
+
+    def course(n: int) -> float:
+        return agreement_power(n, E, scatter, true, alpha, u)
+
     if highest_agreement(E, true, alpha, u) <= wanted:
         return _none(
             f"Out of reach for every number of readings: the limit E is only {significant(E / u, 3)} times "
             "the standard uncertainty of the target.",
             _curve(course, MOST_READINGS),
         )
-    needed = first_enough(lambda n: course(n) >= wanted, _guess(E, scatter, true, alpha, wanted), MOST_READINGS)
+    needed = first_enough(lambda n: course(n) >= wanted, _guess(E, scatter, true, alpha, wanted))
     if needed is None:
         return _none(_beyond(), _curve(course, MOST_READINGS))
     return Plan(needed, course(needed), _curve(course, needed), "Two one-sided t tests, integrated over s.")
@@ -146,10 +144,12 @@ def plan_interval(half_width: Any, s: Any, confidence: Any = 0.95) -> Plan:
     scatter = given.positive(s, "standard deviation s", "s")
     level = given.between(confidence, "confidence level", "confidence", 0, 1, "95 % is 0.95")
     each = (1 - level) / 2
-    course = lambda n: float(t_critical(each, n - 1)) * scatter / sqrt(n)  # noqa: E731
-    ratio = float(normal_critical(each)) * scatter / wanted
-    guess = int(min(MOST_READINGS, max(2.0, ratio * ratio)))
-    needed = first_enough(lambda n: course(n) <= wanted, guess, MOST_READINGS)
+
+    def course(n: int) -> float:
+        return float(t_critical(each, n - 1)) * scatter / sqrt(n)
+
+    guess = lower_guess(float(normal_critical(each)) * (scatter / wanted))
+    needed = first_enough(lambda n: course(n) <= wanted, guess)
     if needed is None:
         return _none(_beyond(), _curve(course, MOST_READINGS))
     return Plan(needed, course(needed), _curve(course, needed), "For readings that scatter with this s.")
@@ -167,10 +167,9 @@ def _design(s: Any, alternative: Any, significance: Any, sigma_known: bool, targ
 
 
 def _guess(limit: float, s: float, true: float, alpha: float, power: float) -> int:
-    room = (limit - abs(true)) / s
+    """Return about how many readings agreement takes, by the normal distribution."""
     missed = (1 - power) / 2 if true == 0 else 1 - power
-    needed = (float(normal_critical(alpha) + normal_critical(missed)) / room) ** 2 if room > 1e-6 else 1e12
-    return int(min(MOST_READINGS, max(2.0, needed)))
+    return lower_guess(float(normal_critical(alpha) + normal_critical(missed)) * (s / (limit - abs(true))))
 
 
 def _curve(course: Callable[[int], float], needed: int) -> tuple[tuple[float, float], ...]:

@@ -15,6 +15,8 @@ REACH = 12.0
 AROUND = np.array([-40.0, -12.0, -5.0, -2.0, 0.0, 2.0, 5.0, 12.0, 40.0])
 SERIES_GOOD_ABOVE = 1e-9
 SERIES_GOOD_BELOW = 60.0
+SMALLEST_T = 1e-12
+LARGEST_SHIFT = 1e8
 
 
 def ratio_panels(
@@ -55,6 +57,10 @@ def shifted_t_upper(t: float, df: float, shift: float, precise: bool = True) -> 
     """
     if not isfinite(df):
         return float(normal_upper(t - shift))
+    if t < SMALLEST_T:
+        return float(normal_upper(-shift))
+    if abs(shift) > LARGEST_SHIFT * max(1.0, t):
+        return float(shift > 0)
     if abs(shift) < SERIES_GOOD_BELOW:
         tail = float(special.nctdtr(df, -shift, -t))
         if tail > SERIES_GOOD_ABOVE or not precise:
