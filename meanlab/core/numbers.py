@@ -7,6 +7,7 @@ import re
 from collections.abc import Iterable, Sequence
 from decimal import Context, Decimal
 from math import isqrt
+from sys import float_info
 from typing import Any
 
 from meanlab.core.complaints import Complaint, QuestionComplaint, ReadingsComplaint
@@ -121,17 +122,16 @@ def power_of_ten_ratio(numerator: int, denominator: int, exponent: int) -> tuple
 
 
 def quotient(numerator: int, denominator: int, exponent: int = 0) -> float:
-    """Return numerator · 10**exponent / denominator as the nearest double.
+    """Return numerator · 10**exponent / denominator as the nearest double; too large for one, the largest double.
 
     >>> quotient(1, 3), quotient(5, 1, -1)
     (0.3333333333333333, 0.5)
     """
-    top, bottom = power_of_ten_ratio(numerator, denominator, exponent)
-    return top / bottom
+    return _nearest(*power_of_ten_ratio(numerator, denominator, exponent))
 
 
 def root(numerator: int, denominator: int, exponent: int = 0) -> float:
-    """Return √(numerator · 10**exponent / denominator) as the nearest double.
+    """Return √(numerator · 10**exponent / denominator) as the nearest double; too large for one, the largest double.
 
     The root is taken in whole numbers with at least 70 bits and a sticky last bit, so that the one rounding is right.
 
@@ -145,4 +145,11 @@ def root(numerator: int, denominator: int, exponent: int = 0) -> float:
     whole, rest = divmod(top << (2 * shift), bottom)
     floor = isqrt(whole)
     inexact = rest != 0 or floor * floor != whole
-    return (2 * floor + inexact) / (1 << (shift + 1))
+    return _nearest(2 * floor + inexact, 1 << (shift + 1))
+
+
+def _nearest(top: int, bottom: int) -> float:
+    try:
+        return top / bottom
+    except OverflowError:  # a ratio of the widest to the finest reading allowed has up to 640 digits
+        return float_info.max if (top > 0) == (bottom > 0) else -float_info.max
