@@ -5,10 +5,11 @@ from math import isfinite
 from scipy import special
 
 from meanlab.checks.facts import Facts
-from meanlab.core.results import Check
+from meanlab.core.results import Check, Outcome
 from meanlab.wording.numbers import df_text
 
 CAUTION_LEVEL = 0.01
+LARGEST = 1e300
 
 
 def known_sigma_check(facts: Facts) -> Check | None:
@@ -21,29 +22,36 @@ def known_sigma_check(facts: Facts) -> Check | None:
     if sigma is None or facts.s is None or facts.n < 2:
         return None
     df, sigma_df = facts.n - 1, float(facts.question.sigma_df)
-    ratio = (facts.s / sigma) ** 2
+    ratio = min((facts.s / sigma) * (facts.s / sigma), LARGEST)
     upper, lower = scatter_tails(ratio, df, sigma_df)
-    known = isfinite(sigma_df)
-    statistic = ratio if known else df * ratio
-    sign = facts.decimal_sign
-    name = f"F({df}, {df_text(sigma_df, sign)})" if known else f"χ²({df})"
-    seen = f"s = {facts.with_unit(facts.s)} against the known σ = {facts.with_unit(sigma)}, {name} = {facts.text(statistic)}"
-    figures = {"p_lower": lower}
+    statistic = ratio if isfinite(sigma_df) else df * ratio
+    outcome, verdict = _judged(upper, lower, facts, noticed_ratio(df, sigma_df))
+    return Check("sigma", outcome, statistic, upper, f"{_seen(statistic, facts)}, {verdict}.", {"p_lower": lower})
+
+
+def _seen(statistic: float, facts: Facts) -> str:
+    sigma, sigma_df = facts.question.number("sigma"), float(facts.question.sigma_df)
+    degrees = f"{facts.n - 1}, {df_text(sigma_df, facts.decimal_sign)}" if isfinite(sigma_df) else f"{facts.n - 1}"
+    name = f"F({degrees})" if isfinite(sigma_df) else f"χ²({degrees})"
+    values = f"s = {facts.with_unit(facts.s or 0.0)} against the known σ = {facts.with_unit(sigma or 0.0)}"
+    return f"{values}: {name} = {facts.text(statistic)}"
+
+
+def _judged(upper: float, lower: float, facts: Facts, noticed: float) -> tuple[Outcome, str]:
     if upper < CAUTION_LEVEL:
-        said = (
-            f"{seen}, {facts.p(upper, CAUTION_LEVEL)}: these readings scatter more than the known σ explains, and z is "
+        return "caution", (
+            f"{facts.p(upper, CAUTION_LEVEL)}; these readings scatter more than the known σ explains, and z is then "
+            "too sure; Student's t stands beside it"
         )
-        said += "then too sure; Student's t stands beside it."
-        return Check("sigma", "caution", statistic, upper, said, figures)
     if lower < CAUTION_LEVEL:
-        said = f"{seen}, lower tail {facts.p(lower, CAUTION_LEVEL)}: far less scatter than the known σ; are these "
-        said += "replicates of the same kind as those σ comes from?"
-        return Check("sigma", "note", statistic, upper, said, figures)
-    said = (
-        f"{seen}, {facts.p(upper, CAUTION_LEVEL)}: no evidence against the known σ, and with {facts.n} readings only a "
+        return "note", (
+            f"lower tail {facts.p(lower, CAUTION_LEVEL)}; they scatter far less than the known σ, so they may not be "
+            "replicates of the same kind as those σ comes from"
+        )
+    return "clear", (
+        f"{facts.p(upper, CAUTION_LEVEL)}; no evidence against the known σ, and with {facts.readings} only a scatter of "
+        f"{facts.text(noticed)} times σ would be noticed in four sets of five"
     )
-    said += f"scatter of more than {facts.text(noticed_ratio(df, sigma_df))} times σ would mostly be noticed."
-    return Check("sigma", "clear", statistic, upper, said, figures)
 
 
 def scatter_tails(ratio: float, df: float, sigma_df: float) -> tuple[float, float]:

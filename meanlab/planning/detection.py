@@ -139,7 +139,8 @@ def combined_power(scatter: float, df: float, design: Design) -> Callable[[float
 def critical_distance(r: Any, scatter: float, df: float, further: Further, each_tail: float) -> Any:
     """Return t(ν)·√((r·scatter)² + u²), the distance from the target that rejects, for every ratio r = s/σ."""
     largest = max(scatter, further.u)
-    seen, target, own = ((part / largest) ** 2 for part in (r * scatter, further.target_u, further.own_u))
+    target, own = ((part / largest) ** 2 for part in (further.target_u, further.own_u))
+    seen = (np.asarray(r) * scatter / largest) ** 2
     total = seen + target + own
     spread = seen**2 / df + target**2 / further.target_df
     with np.errstate(divide="ignore", over="ignore"):

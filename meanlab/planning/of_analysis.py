@@ -110,7 +110,8 @@ def _out_of_reach(needed: int | None, design: Design, question: Question, sign: 
         source = "uncertainty of the target" if design.further.own_u == 0 else "uncertainties beside the scatter"
         said.append(
             f"Differences up to {unit_text(significant(least, 3, sign), question.unit)} "
-            f"({significant(least / design.u, 3, sign)} standard uncertainties) are out of reach for every number of readings because of the {source}."
+            f"({significant(least / design.u, 3, sign)} standard uncertainties) are out of reach for every "
+            f"number of readings because of the {source}."
         )
     if given is not None and needed is None and given > least:
         said.append(f"More than {MOST_READINGS:,} readings would be needed to find the difference that matters.")
