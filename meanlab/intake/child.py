@@ -90,7 +90,7 @@ def _too_much(memory: int, seconds: float) -> IntakeComplaint:
 
 
 def packed(sheets: tuple[Sheet, ...]) -> list[dict[str, object]]:
-    """Sheets as plain lists for JSON: each different cell once, then the length of each row, then the cells in order."""
+    """Sheets as plain lists for JSON: each different cell once, the length of each row, the cells in order."""
     result: list[dict[str, object]] = []
     for sheet in sheets:
         places: dict[int, int] = {}

@@ -8,9 +8,11 @@ from typing import Literal
 
 from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.compound import Compound
+from meanlab.intake.page_tables import is_page
 from meanlab.intake.parts import DAMAGED, LOCKED, Parts
+from meanlab.intake.xml_workbooks import is_xml_workbook
 
-Workbook = Literal["xlsx", "xlsb", "ods", "xls"]
+Workbook = Literal["xlsx", "xlsb", "ods", "xls", "xml", "page"]
 
 _ZIP = b"PK\x03\x04"
 _EMPTY_ZIP = b"PK\x05\x06"
@@ -43,9 +45,15 @@ _TEXT_LIKE_STARTS = (b"BM", b"MZ", b"GIF8", b"RIFF", b"BZh", b"PAR1", b"Rar!")
 _SAVE_AS = "Save the readings as .xlsx or .csv and choose that file."
 
 
-def is_binary(data: bytes) -> bool:
-    """True for a file that is no text: a workbook, or something that sheets_of tells by name."""
-    return data.startswith((_ZIP, _EMPTY_ZIP, _COMPOUND)) or bool(_bare_sheet(data) or other_kind(data))
+def is_plain_text(data: bytes) -> bool:
+    """False for a workbook, for a web page or XML text that holds one, and for what sheets_of tells by its name.
+
+    >>> is_plain_text(b"5.02"), is_plain_text(b"%PDF-1.7 ..."), is_plain_text(b"<html><table>")
+    (True, False, False)
+    """
+    if data.startswith((_ZIP, _EMPTY_ZIP, _COMPOUND)) or _bare_sheet(data) or other_kind(data):
+        return False
+    return not (is_page(data) or is_xml_workbook(data))
 
 
 def other_kind(data: bytes) -> str:
@@ -70,6 +78,10 @@ def workbook_kind(data: bytes, filename: str = "") -> tuple[Workbook, Parts | No
         return _zipped_kind(parts), parts
     if data.startswith(_COMPOUND):
         return _compound_kind(data), None
+    if is_xml_workbook(data):
+        return "xml", None
+    if is_page(data):
+        return "page", None
     if _bare_sheet(data):
         raise IntakeComplaint(f"The file is a workbook of a very old kind that cannot be read. {_SAVE_AS}")
     kind = other_kind(data) or "a text"

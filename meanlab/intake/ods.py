@@ -30,6 +30,13 @@ def read_ods(parts: Parts) -> tuple[Sheet, ...]:
     return tuple(content.sheets)
 
 
+def read_flat_ods(data: bytes) -> tuple[Sheet, ...]:
+    """All sheets of an OpenDocument workbook that is one XML text."""
+    content = _Content()
+    walk([data], content)
+    return tuple(content.sheets)
+
+
 class _Locks(Walker):
     def start(self, name: str, attributes: Attributes) -> None:
         if name == "encryption-data":

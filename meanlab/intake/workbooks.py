@@ -6,9 +6,11 @@ from meanlab.intake.compound import Compound
 from meanlab.intake.containers import Workbook, workbook_kind
 from meanlab.intake.grid import Sheet
 from meanlab.intake.ods import read_ods
+from meanlab.intake.page_tables import read_page
 from meanlab.intake.parts import Parts
 from meanlab.intake.xls import is_readable, read_xls
 from meanlab.intake.xlsx import read_xlsx
+from meanlab.intake.xml_workbooks import read_xml_workbook
 
 SMALL = 2 * 2**20
 
@@ -21,7 +23,7 @@ def sheets_of(data: bytes, filename: str = "") -> tuple[Sheet, ...]:
     """
     kind, parts = workbook_kind(data, filename)
     size = parts.unpacked if parts else len(data)
-    if size > SMALL or kind == "xlsb" or (kind == "xls" and not _is_readable_xls(data)):
+    if size > SMALL or kind in ("xlsb", "page") or (kind == "xls" and not _is_readable_xls(data)):
         sheets = sheets_from_child(data, kind)
     else:
         sheets = read_kind(data, kind)
@@ -36,6 +38,10 @@ def read_kind(data: bytes, kind: Workbook) -> tuple[Sheet, ...]:
         return read_xlsx(Parts(data))
     if kind == "ods":
         return read_ods(Parts(data))
+    if kind == "xml":
+        return read_xml_workbook(data)
+    if kind == "page":
+        return read_page(data)
     if kind == "xls" and _is_readable_xls(data):
         return read_xls(Compound(data).stream("Workbook"))
     from meanlab.intake.old_workbooks import read_old_workbook
