@@ -1,9 +1,34 @@
-"""The opener of the sample sets."""
+"""The opener of the sample sets: one button a set, with its scenario in one line."""
+
+import html
+from functools import lru_cache
 
 import streamlit as st
+
+from meanlab.page import state
+from meanlab.samples import SampleSet, sample_sets
 
 
 def draw() -> None:
     """Draw the opener."""
     with st.popover("Sample sets", key="sample_sets"):
-        pass
+        sets = _sets()
+        if not sets:
+            st.html('<p class="ml-status">The folder sample_sets is not here; copy it beside the folder meanlab.</p>')
+        with st.container(key="sample_list"):
+            for place, one in enumerate(sets):
+                st.button(one.title, key=f"sample_{place}", on_click=_open, args=(one,), type="tertiary")
+                st.html(f'<p class="ml-status ml-scenario">{html.escape(one.scenario)}</p>')
+
+
+def _open(chosen: SampleSet) -> None:
+    content = chosen.content
+    if isinstance(content, str):
+        state.open_set(chosen.title, {**chosen.fields, "readings_text": content})
+    else:
+        state.open_set(chosen.title, chosen.fields, (chosen.path.name, content))
+
+
+@lru_cache(maxsize=1)
+def _sets() -> tuple[SampleSet, ...]:
+    return sample_sets()
