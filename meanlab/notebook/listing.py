@@ -19,9 +19,10 @@ SEARCHED = 4_000  # characters of a single text that a search looks through
 class EntryList(Sequence[Listed]):
     """The entries in order, the oldest first; what is asked for is read, and no more."""
 
-    def __init__(self, ask: Callable[[Select[Any]], list[RowMapping]], length: int) -> None:
+    def __init__(self, ask: Callable[[Select[Any]], list[RowMapping]], length: int, last: int) -> None:
         self._ask = ask
         self._length = length
+        self._without_gaps = last == length
 
     def __len__(self) -> int:
         return self._length
@@ -47,7 +48,9 @@ class EntryList(Sequence[Listed]):
     def _piece(self, start: int, count: int) -> list[Listed]:
         if count < 1:
             return []
-        return [listed(row) for row in self._ask(lines().offset(start).limit(count))]
+        query = lines().limit(count)
+        query = query.where(ENTRY.c.number > start) if self._without_gaps else query.offset(start)
+        return [listed(row) for row in self._ask(query)]
 
 
 def lines() -> Select[Any]:
@@ -118,6 +121,8 @@ def matching(text: str) -> Select[Any]:
     return query
 
 
-def count_of(connection: Connection) -> int:
-    """Return how many entries there are."""
-    return connection.execute(select(func.count()).select_from(ENTRY)).scalar_one()
+def extent_of(connection: Connection) -> tuple[int, int]:
+    """Return how many entries there are, and the number of the last (0 where there is none)."""
+    count = connection.execute(select(func.count()).select_from(ENTRY)).scalar_one()
+    last = connection.execute(select(func.max(ENTRY.c.number))).scalar()
+    return count, last or 0

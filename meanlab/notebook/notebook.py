@@ -17,7 +17,7 @@ from meanlab.notebook.defaults import bench_defaults, remember
 from meanlab.notebook.entry import Entry, Listed, entry_from
 from meanlab.notebook.files import copy, entries_of_file, file_of, fill, save
 from meanlab.notebook.integrity import problems
-from meanlab.notebook.listing import EntryList, count_of, line_values, listed, matching
+from meanlab.notebook.listing import EntryList, extent_of, line_values, listed, matching
 from meanlab.notebook.schema import ENTRY, ENTRY_CONTENT, LAST_ENTRY
 from meanlab.notebook.source import Source, entries_of
 
@@ -90,8 +90,8 @@ class Notebook(Database):
     def entries(self) -> EntryList:
         """Return the list of entries, the oldest first; its lines are read when they are asked for."""
         with self._reading() as connection:
-            length = count_of(connection)
-        return EntryList(self._ask, length)
+            length, last = extent_of(connection)
+        return EntryList(self._ask, length, last)
 
     def search(self, text: str) -> list[Listed]:
         """Return the entries in whose title, names, note, material, sentence, … every word of a text is found."""
