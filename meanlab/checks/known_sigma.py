@@ -49,8 +49,8 @@ def _judged(upper: float, lower: float, facts: Facts, noticed: float) -> tuple[O
             "replicates of the same kind as those σ comes from"
         )
     return "clear", (
-        f"{facts.p(upper, CAUTION_LEVEL)}; no evidence against the known σ, and with {facts.readings} only a scatter of "
-        f"{facts.text(noticed)} times σ would be noticed in four sets of five"
+        f"{facts.p(upper, CAUTION_LEVEL)}; no evidence against the known σ, and with {facts.readings} only a "
+        f"scatter of {facts.text(noticed)} times σ would be noticed in four sets of five"
     )
 
 

@@ -139,10 +139,11 @@ def anderson_darling(x: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
     odd = 2 * np.arange(1, n + 1) - 1
     plain = -n - ((special.log_ndtr(z) + special.log_ndtr(-z[:, ::-1])) @ odd) / n
     adjusted = plain * (1 + 0.75 / n + 2.25 / n**2)
-    return adjusted, _anderson_darling_p(adjusted)
+    return adjusted, anderson_darling_p(adjusted)
 
 
-def _anderson_darling_p(a: np.ndarray) -> np.ndarray:
+def anderson_darling_p(a: np.ndarray) -> np.ndarray:
+    """Return p of A*², any shape, by Stephens's formula in four ranges (D'Agostino & Stephens 1986, table 4.9)."""
     capped = np.minimum(a, 150.0)
     return np.select(
         [a >= 0.6, a >= 0.34, a >= 0.2],
