@@ -6,6 +6,7 @@ used by the child process (``child.py``).
 
 import datetime
 import io
+from dataclasses import replace
 
 import python_calamine
 
@@ -14,6 +15,11 @@ from meanlab.intake.building import Room, SheetBuilder, shown_text
 from meanlab.intake.grid import Cell, Sheet
 from meanlab.intake.number_formats import GENERAL, NumberFormat
 from meanlab.intake.parts import DAMAGED, LOCKED
+
+_UNSEEN = (
+    "In this kind of workbook (.xlsb, or .xls of before 1997) percent formats, hidden rows and cells in error cannot be "
+    "seen: compare the readings with the sheet, or save it as .xlsx."
+)
 
 
 def read_old_workbook(data: bytes) -> tuple[Sheet, ...]:
@@ -43,7 +49,7 @@ def _sheet(book: python_calamine.CalamineWorkbook, about: python_calamine.SheetM
     for row, values in enumerate(sheet.to_python(skip_empty_area=True), first_row):
         for column, value in enumerate(values, first_column):
             builder.put(row, column, _cell(value, plain))
-    return builder.sheet()
+    return replace(builder.sheet(), remarks=(_UNSEEN,))
 
 
 def _cell(value: object, plain: NumberFormat) -> Cell:

@@ -1,32 +1,234 @@
 """The door of the intake: a pasted text or the bytes of a file in, an Intake out."""
 
-import re
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping, Sequence
 from typing import Any
 
 from meanlab.core.complaints import IntakeComplaint
-from meanlab.intake.found import Column, Intake, Special
+from meanlab.intake.choosing import Picked, pick
+from meanlab.intake.column import Given, Read, read_column
+from meanlab.intake.doubts import doubts_about
+from meanlab.intake.found import Column, Intake
+from meanlab.intake.layout import ChoiceNeeded
+from meanlab.intake.numerals import Sign, decimal_sign
+from meanlab.intake.roles import listed, roles_of, sample_of
+from meanlab.intake.sources import tables_of
+from meanlab.intake.table import Block, Table, blocks_of, parsed
 
-_NUMBER = re.compile(r"[+-]?(?:\d+[.,]?\d*|[.,]\d+)(?:[eE][+-]?\d{1,3})?", re.ASCII)
+_KEYS = frozenset(
+    ("sheet", "column", "column_index", "columns", "where", "qualifier_column", "decimal", "preparation")
+)
 
 
 def read(source: str | bytes, filename: str | None = None, selection: Mapping[str, Any] | None = None) -> Intake:
-    """Return what was read from a pasted text or the bytes of a file."""
-    if not isinstance(source, (str, bytes)):
-        raise IntakeComplaint("Readings come as a pasted text or as the bytes of a file.")
-    text = source if isinstance(source, str) else source.decode("utf-8", "replace")
-    lines = [(number, line.strip()) for number, line in enumerate(text.splitlines(), 1) if line.strip()]
-    texts = [line for _, line in lines]
-    special = {i: Special("unread", role="could not be read") for i, t in enumerate(texts) if not _NUMBER.fullmatch(t)}
-    comma = any("," in t for i, t in enumerate(texts) if i not in special)
-    numbers = [t.replace(",", ".") for i, t in enumerate(texts) if i not in special]
-    if not numbers:
-        return Intake(refused=True, reason="No reading could be read: paste the readings, one a line.")
-    return Intake(
-        texts, special, numbers, decimal_sign="," if comma else ".", place_of=lambda i: f"line {lines[i][0]}"
-    )
+    """Return what was read from a pasted text or the bytes of a file.
+
+    ``selection`` may hold sheet, column (heading), column_index (from 0), columns (replicates across the row), where
+    {column: value}, qualifier_column, decimal ("." or ","), preparation (heading of the labels). Content that cannot be
+    used comes back as an Intake that is refused with a reason, never as an exception.
+    Raises IntakeComplaint for arguments of a wrong type.
+
+    >>> read("Nitrate (mg/L)\\n5.02\\n<0.05\\n4.98").counts_line()
+    '2 read · 1 below a limit · 0 refused · decimal point · 2 places'
+    """
+    chosen = _checked(source, filename, selection)
+    try:
+        return _read(source, filename, chosen)
+    except ChoiceNeeded as open_question:
+        return Intake(needs_choice=True, reason=open_question.question, choices=open_question.choices)
+    except IntakeComplaint as complaint:
+        return Intake(refused=True, reason=str(complaint))
 
 
 def columns(source: str | bytes, filename: str | None = None) -> list[Column]:
-    """Return what could be chosen in a text or file."""
-    return []
+    """Return the columns that could be chosen in a text or a file, those with readings first.
+
+    Raises IntakeComplaint where the file cannot be opened or holds no table.
+    """
+    _checked(source, filename, None)
+    found: list[Column] = []
+    try:
+        for table in tables_of(source, filename, None):
+            for block in blocks_of(table):
+                found.extend(listed(block, roles_of(block)))
+    except ChoiceNeeded:
+        return []
+    return sorted(found, key=lambda column: column.role != "readings")
+
+
+def _checked(source: Any, filename: Any, selection: Any) -> dict[str, Any]:
+    if not isinstance(source, (str, bytes)):
+        raise IntakeComplaint(f"Readings come as a text or as the bytes of a file, not as {type(source).__name__}.")
+    if filename is not None and not isinstance(filename, str):
+        raise IntakeComplaint(f"A file name is a text, not {type(filename).__name__}.")
+    if selection is not None and not isinstance(selection, Mapping):
+        raise IntakeComplaint(f"A selection is a mapping of names to choices, not {type(selection).__name__}.")
+    chosen = {key: value for key, value in (selection or {}).items() if value is not None}
+    unknown = [str(key) for key in chosen if key not in _KEYS]
+    if unknown:
+        raise IntakeComplaint(f"A selection has no {unknown[0]!r}; it can hold {', '.join(sorted(_KEYS))}.")
+    if chosen.get("decimal", ".") not in (".", ","):
+        raise IntakeComplaint('The decimal sign is "." or ",".')
+    if not isinstance(chosen.get("where", {}), Mapping):
+        raise IntakeComplaint("The rows are chosen by a mapping of a heading to a value.")
+    return chosen
+
+
+def _read(source: str | bytes, filename: str | None, selection: dict[str, Any]) -> Intake:
+    tables = tables_of(source, filename, selection.get("decimal"))
+    if selection.get("sheet") is not None:
+        tables = [table for table in tables if table.name.strip() == str(selection["sheet"]).strip()]
+        if not tables:
+            names = ", ".join(f'"{table.name}"' for table in tables_of(source, filename, None))
+            raise IntakeComplaint(f'There is no sheet "{selection["sheet"]}"; there are {names}.')
+    with_blocks = [(table, blocks) for table in tables if (blocks := blocks_of(table))]
+    if not with_blocks:
+        return _nothing(tables)
+    if len(with_blocks) == 1:
+        return _column(pick(with_blocks[0][1], selection), selection)
+    return _one_sheet(with_blocks, selection)
+
+
+def _one_sheet(with_blocks: Sequence[tuple[Table, list[Block]]], selection: dict[str, Any]) -> Intake:
+    """The only visible sheet with something to read, or a question."""
+    visible = [pair for pair in with_blocks if not (pair[0].sheet and pair[0].sheet.hidden)] or list(with_blocks)
+    found: list[Picked] = []
+    choices: list[Mapping[str, Any]] = []
+    for _, blocks in visible:
+        try:
+            picked = pick(blocks, selection)
+            found.append(picked)
+            choices.extend(
+                column.to_dict()
+                for column in listed(picked.block, roles_of(picked.block))
+                if column.column_index in picked.columns
+            )
+        except ChoiceNeeded as open_question:
+            choices.extend(open_question.choices)
+        except IntakeComplaint:
+            continue
+    if len(found) == 1 and len({choice.get("sheet") for choice in choices}) == 1:
+        return _column(found[0], selection)
+    if not choices:
+        raise IntakeComplaint("No sheet holds such a column of readings: choose the sheet and the column.")
+    raise ChoiceNeeded("Several sheets hold numbers: choose the sheet and the column with the readings.", choices)
+
+
+def _nothing(tables: Sequence[Table]) -> Intake:
+    """Say why nothing at all could be read: the first entries and what is wrong with them."""
+    for table in tables:
+        places = [(row, column) for row, cells in enumerate(table.rows[:200]) for column, text in enumerate(cells) if text]
+        if places:
+            found = _entries(table, places[:50], Given)
+            read_back = read_column(found)
+            first = next(iter(read_back.warnings), "")
+            return Intake(refused=True, reason=f"No reading was found. {first}".strip())
+    return Intake(refused=True, reason="There is nothing to read: paste the readings, one a line, or open a file.")
+
+
+def _entries(table: Table, places: Sequence[tuple[int, int]], kind: Callable[..., Given], **more: Any) -> Given:
+    return kind(
+        [table.text(row, column) for row, column in places],
+        lambda i: table.place(*places[i]),
+        None if table.sheet is None else [table.kind(row, column) for row, column in places],
+        **more,
+    )
+
+
+def _column(picked: Picked, selection: dict[str, Any]) -> Intake:
+    """Read the cells that were picked."""
+    given = _given(picked, selection.get("decimal"))
+    found = read_column(given)
+    if found.sign.open:
+        hint = _hint(picked)
+        if hint is None:
+            raise _ask_for_sign(picked, given, found)
+        from dataclasses import replace
+
+        given = replace(given, hint=hint)
+        found = read_column(given)
+    return _intake(picked, given, found)
+
+
+def _given(picked: Picked, decimal: Sign | None) -> Given:
+    table, block = picked.block.table, picked.block
+    if len(picked.columns) == 1 and table.sheet is None:
+        column, rows = picked.columns[0], picked.rows
+        texts = [cells[column] if column < len(cells) else "" for cells in map(table.rows.__getitem__, rows)]
+        place_of: Callable[[int], str] = lambda i: table.place(rows[i], column)  # noqa: E731
+        kinds, computed = None, frozenset[int]()
+        places: Sequence[tuple[int, int]] = ()
+    else:
+        places = [(row, column) for row in picked.rows for column in picked.columns]
+        texts = [table.text(row, column) for row, column in places]
+        across = len(picked.columns) > 1 and table.lines is not None
+        place_of = lambda i: table.place(*places[i]) + (f", field {places[i][1] + 1}" if across else "")  # noqa: E731
+        kinds = None if table.sheet is None else [table.kind(row, column) for row, column in places]
+        computed = _computed(table, places)
+    qualifiers = None
+    if picked.qualifier is not None:
+        qualifiers = [table.text(row, picked.qualifier) for row in picked.rows for _ in picked.columns]
+    del block
+    return Given(texts, place_of, kinds, computed, qualifiers, decimal, None, picked.unit)
+
+
+def _computed(table: Table, places: Sequence[tuple[int, int]]) -> frozenset[int]:
+    if table.sheet is None:
+        return frozenset()
+    rows = table.sheet.rows
+    return frozenset(i for i, (row, column) in enumerate(places) if column < len(rows[row]) and rows[row][column].computed)
+
+
+def _hint(picked: Picked) -> Sign | None:
+    """The decimal sign that the other columns of the table show beyond doubt, None where they do not."""
+    block = picked.block
+    numerals = []
+    for column in range(min(block.width, 200)):
+        if column not in picked.columns:
+            for row in sample_of(block.data, block.width):
+                one = parsed(block.table.text(row, column)[:60])
+                if one.numeral and block.table.kind(row, column) == "text":
+                    numerals.append((one.numeral, one.power))
+    found = decimal_sign(numerals)
+    return found.sign if found.grounds and not found.open and not found.mixed and "cannot" in found.grounds else None
+
+
+def _ask_for_sign(picked: Picked, given: Given, found: Read) -> ChoiceNeeded:
+    heading = picked.block.heading_text(picked.columns[0])
+    sample = [text for text in given.texts if "," in text or "." in text][:3]
+    base = {"sheet": picked.block.table.name, "column": heading, "column_index": picked.columns[0], "first": sample}
+    return ChoiceNeeded(
+        f"The decimal sign cannot be told: {found.sign.grounds}. Choose the decimal comma or the decimal point "
+        "(then the comma is a thousands separator).",
+        [{**base, "decimal": ","}, {**base, "decimal": "."}],
+    )
+
+
+def _intake(picked: Picked, given: Given, found: Read) -> Intake:
+    warnings, notes = doubts_about(picked, given, found)
+    if found.refusal:
+        return Intake(refused=True, reason=found.refusal)
+    censored = any(one.kind in ("below", "above") for one in found.special.values())
+    if not found.numbers and not censored:
+        first = next(iter(found.warnings), "Every entry is marked as missing.")
+        return Intake(refused=True, reason=f"No reading was found. {first}")
+    return Intake(
+        texts=given.texts,
+        special=found.special,
+        numbers=found.numbers,
+        unit=found.unit,
+        name=picked.name,
+        decimal_sign=found.sign.sign,
+        evidence=found.sign.grounds,
+        warnings=tuple(warnings),
+        notes=tuple(notes),
+        computed=found.computed,
+        preparations=_preparations(picked),
+        place_of=given.place_of,
+    )
+
+
+def _preparations(picked: Picked) -> tuple[str, ...] | None:
+    if picked.preparation is None:
+        return None
+    table = picked.block.table
+    return tuple(table.text(row, picked.preparation) for row in picked.rows for _ in picked.columns)

@@ -13,6 +13,8 @@ def read_number(text: str, decimal_sign: str | None = None) -> str:
     """Return the number of one field as typed, with its zeros and its decimal sign."""
     plain = text.strip().translate(_SIGNS)
     if not _PLAIN.fullmatch(plain):
-        raise QuestionComplaint(f'"{text.strip()[:60]}" is not a number. Type one number with one decimal point or comma.')
+        raise QuestionComplaint(
+            f'"{text.strip()[:60]}" is not a number. Type one number with one decimal point or comma.'
+        )
     exact(plain, "This field", QuestionComplaint)
     return plain

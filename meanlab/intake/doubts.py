@@ -1,0 +1,120 @@
+"""What must be seen about a column as a whole: rows left out, odd lengths, a first or last number unlike the others."""
+
+from collections.abc import Sequence
+
+from meanlab.intake.characters import shown
+from meanlab.intake.choosing import Picked
+from meanlab.intake.column import Given, Read
+from meanlab.intake.table import Block
+
+MOST_ROWS = 20_000
+
+
+def doubts_about(picked: Picked, given: Given, found: Read) -> tuple[list[str], list[str]]:
+    """Return the warnings and the notes about a column, in the order in which they are read."""
+    block = picked.block
+    warnings = [*block.table.remarks, *picked.warnings, *found.warnings]
+    warnings.extend(_left_out_rows(block))
+    warnings.extend(_odd_lengths(picked))
+    warnings.extend(_hidden(picked))
+    if len(found.numbers) <= MOST_ROWS:
+        warnings.extend(_first_unlike(picked, given, found))
+        warnings.extend(_last_is_mean(picked, given, found))
+    notes = [*block.table.notes, *picked.notes, *found.notes]
+    first = block.heading if block.heading is not None else block.data[0]
+    above = sum(any(cells) for cells in block.table.rows[: min(first, 2000)])
+    if above:
+        notes.append(f"{above} {'line' if above == 1 else 'lines'} above the heading {'was' if above == 1 else 'were'} not read.")
+    return list(dict.fromkeys(warnings)), list(dict.fromkeys(notes))
+
+
+def _left_out_rows(block: Block) -> list[str]:
+    found = []
+    table = block.table
+    if block.summaries:
+        named = ", ".join(
+            f'{table.place(row, 0)} "{shown(" ".join(filter(None, table.rows[row])))}"' for row in block.summaries[:5]
+        )
+        found.append(f"Rows of computed figures (mean, SD and the like) were not read as readings: {named}.")
+    if block.again:
+        where = ", ".join(table.place(row, 0) for row in block.again[:5])
+        found.append(f"The heading comes again at {where}; the rows below it were read on as one column.")
+    return found
+
+
+def _odd_lengths(picked: Picked) -> list[str]:
+    """Rows with a filled field too many, or too short to reach the column."""
+    table, block = picked.block.table, picked.block
+    if block.heading is None or table.sheet is not None or not table.separator or len(picked.rows) > MOST_ROWS:
+        return []
+    width, last = len(table.rows[block.heading]), max(picked.columns)
+    odd = [row for row in picked.rows if len(table.rows[row]) > max(width, last + 1) or len(table.rows[row]) <= last]
+    odd = [row for row in odd if len(table.rows[row]) > width or len(table.rows[row]) < width - 1 or last == width - 1]
+    surplus = [row for row in odd if len(table.rows[row]) > width]
+    if not surplus and len(odd) * 2 > len(picked.rows):
+        return []
+    if not odd:
+        return []
+    where = ", ".join(f"{table.place(row, 0)} has {len(table.rows[row])}" for row in odd[:5])
+    return [f"Rows with another number of fields than the {width} of the heading: {where}. Check them in the file."]
+
+
+def _hidden(picked: Picked) -> list[str]:
+    sheet = picked.block.table.sheet
+    if sheet is None:
+        return []
+    found = list(sheet.remarks)
+    hidden = [row for row in picked.rows if row in sheet.hidden_rows]
+    if hidden:
+        where = ", ".join(picked.block.table.place(row, picked.columns[0]) for row in hidden[:5])
+        found.append(f"{len(hidden)} hidden rows (filtered or hidden by hand) were read too: {where}.")
+    if any(column in sheet.hidden_columns for column in picked.columns):
+        found.append("The column that was read is hidden in the sheet.")
+    return found
+
+
+def _first_unlike(picked: Picked, given: Given, found: Read) -> list[str]:
+    """A number without a heading that has no decimals, while all others do, and lies far off: perhaps a heading."""
+    numbers = found.numbers
+    if picked.block.heading is not None or len(numbers) < 4 or "." in numbers[0] or 0 in found.special:
+        return []
+    rest = sorted(abs(float(number)) for number in numbers[1:])
+    if not all("." in number for number in numbers[1:]) or abs(float(numbers[0])) < 5 * max(rest[-1], 1e-300):
+        return []
+    return [
+        f'The first number "{given.texts[0]}" is far from the others and has no decimals: if it is a heading, such as '
+        "a year, take it away."
+    ]
+
+
+def _last_is_mean(picked: Picked, given: Given, found: Read) -> list[str]:
+    numbers = found.numbers
+    if len(numbers) < 4:
+        return []
+    values = [float(number) for number in numbers]
+    places = _places(numbers[-1])
+    rest = values[:-1]
+    mean, total = sum(rest) / len(rest), sum(rest)
+    finer = places > max(map(_places, numbers[:-1]))
+    is_mean = finer and abs(values[-1] - mean) <= 0.51 * 10.0**-places
+    is_sum = abs(values[-1] - total) <= 1e-9 * abs(total) and abs(total) > 2 * max(map(abs, rest))
+    if not is_mean and not is_sum:
+        return []
+    figure = "mean" if is_mean else "sum"
+    return [
+        f'The last reading "{given.texts[-1].strip()}" equals the {figure} of the readings above it: if it is computed '
+        "and no reading, take it away or leave it out with this cause."
+    ]
+
+
+def _places(number: str) -> int:
+    return len(number.partition(".")[2]) if "E" not in number else 0
+
+
+def empty_label(block: Block, rows: Sequence[int], column: int) -> bool:
+    """Tell whether the last row alone has nothing in the columns before the readings."""
+    if len(rows) < 4 or column == 0:
+        return False
+    table = block.table
+    before = [any(table.text(row, left) for left in range(column)) for row in (*rows[:20], rows[-1])]
+    return all(before[:-1]) and not before[-1]

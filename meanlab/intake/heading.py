@@ -1,0 +1,104 @@
+"""Headings: the name of a quantity and its unit, as people write them over a column."""
+
+import re
+from dataclasses import dataclass
+
+from meanlab.intake.characters import one_spelling
+from meanlab.intake.units import is_qualified_unit, is_unit
+
+_BRACKETED = re.compile(r"[(\[]([^()\[\]]*(?:\([^()]*\)[^()\[\]]*)?)[)\]]")
+_BEHIND_A_MARK = re.compile(r"^(.*\S)\s*(?:,|;|:|\s/|/(?=\()|\s-|\s–|_|\bin)\s*(\S.*)$")
+_LETTER = re.compile(r"[^\W\d_]")
+_NO_UNIT = frozenset({"-", "–", "1", "—", "dimensionless", "no unit", "ohne einheit"})
+_OPEN_WORDS = re.compile(r"[a-zA-ZµμΩ%°]{1,8}(?:/[a-zA-Z0-9 µμ%°.]{1,10})?")
+
+
+@dataclass(frozen=True)
+class Heading:
+    """A heading as written (blanks and line breaks made one blank), with the name and unit it gives."""
+
+    text: str = ""
+    name: str | None = None
+    unit: str | None = None
+
+
+def heading_of(text: str) -> Heading:
+    """Return name and unit of a heading.
+
+    >>> heading_of("Nitrate (as N) [mg/L]").name, heading_of("Nitrate, mg/L").unit, heading_of("c / (mg/L)").unit
+    ('Nitrate (as N)', 'mg/L', 'mg/L')
+    """
+    flat = " ".join(one_spelling(text).replace("\xa0", " ").split()).strip("\"'").strip()
+    if not _has_words(flat):
+        return Heading(flat)
+    bare = flat.rstrip(":=* ").strip()
+    for read in (_in_brackets, _behind_a_mark, _whole, _last_words):
+        found = read(bare)
+        if found:
+            name, unit = found
+            return Heading(flat, name.strip(" ,;:/=") or None, unit or None)
+    return Heading(flat, bare or None, None)
+
+
+def _has_words(text: str) -> bool:
+    return bool(_LETTER.search(text)) or is_unit(text)
+
+
+def _in_brackets(text: str) -> tuple[str, str] | None:
+    for found in reversed(list(_BRACKETED.finditer(text))):
+        inside = found[1].strip()
+        unit = _unit_in(inside, square=found[0][0] == "[")
+        if unit is not None:
+            around = f"{text[: found.start()].rstrip()} {text[found.end() :].lstrip()}"
+            return around.strip().removesuffix(" in").removesuffix(" /"), unit
+    return None
+
+
+def _unit_in(inside: str, square: bool) -> str | None:
+    if inside.casefold() in _NO_UNIT and square:
+        return ""
+    inside = inside.removeprefix("in ").strip()
+    if is_qualified_unit(inside) and not (len(inside) == 1 and inside in "abcefijknopqrwxyz"):
+        return inside
+    last = inside.rpartition(",")[2].strip()
+    if last != inside and is_unit(last) and ("/" in last or "%" in last):
+        return last
+    return inside if square and _OPEN_WORDS.fullmatch(inside) and len(inside) > 1 else None
+
+
+def _behind_a_mark(text: str) -> tuple[str, str] | None:
+    found = _BEHIND_A_MARK.match(text)
+    if not found:
+        return None
+    unit = found[2].strip()
+    if unit.startswith("(") and unit.endswith(")"):
+        unit = unit[1:-1].strip()
+    return (found[1], unit) if is_qualified_unit(unit) and found[1].strip() else None
+
+
+def _whole(text: str) -> tuple[str, str] | None:
+    if is_unit(text) and (len(text) > 1 or text in "%°‰") and _unmistakable(text):
+        return "", text
+    return None
+
+
+def _last_words(text: str) -> tuple[str, str] | None:
+    """A unit at the end without any mark: "Nitrate mg/L"; single letters and words are no units there."""
+    words = text.split(" ")
+    for first in range(max(1, len(words) - 3), len(words)):
+        unit = " ".join(words[first:])
+        if is_unit(unit) and _unmistakable(unit):
+            return " ".join(words[:first]), unit
+    if words[0] == "%" and len(words) > 1:
+        return " ".join(words[1:]), "%"
+    return None
+
+
+def _unmistakable(unit: str) -> bool:
+    """Tell whether a unit is more than a letter or a word that could be part of a name."""
+    return bool(re.search(r"[/%‰°µμΩ^⁻]", unit)) or (
+        len(unit) > 1 and unit not in _WORDS and not (unit.isalpha() and unit.islower() and len(unit) > 3)
+    )
+
+
+_WORDS = frozenset("pH pX Abs abs day min max log in at mol count counts cells units copies events Count RU Ct LU S Da".split())

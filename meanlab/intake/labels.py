@@ -1,0 +1,86 @@
+"""What stands before a reading on its line: a list number, a time stamp, a sample code, the name of the quantity."""
+
+import re
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from meanlab.intake.entry import STAMP, Parsed, parse
+from meanlab.intake.words import is_summary
+
+_LIST_NUMBER = re.compile(
+    r"(?:\(\d{1,6}\)|\[\d{1,6}\]|#\s?\d{1,6}[.):]?|(?:no|nr)\.?\s?\d{1,6}[.):]?|\d{1,6}\s?[.):](?=\s)|\d{1,6}\)|[A-Za-z][.)])\s*",
+    re.IGNORECASE | re.ASCII,
+)
+_BULLET = re.compile(r"[•·‣▪◦*]\s+")
+_STAMP = re.compile(rf"[\[(]?(?:{STAMP})[\])]?(?:\s*[,;|=]\s*|\s+|:\s+)(?=\S)", re.IGNORECASE | re.ASCII)
+_LABEL = re.compile(
+    r"(?P<label>(?:[^\W\d_]|\d{1,8}[-/]\d|\d+[A-Za-z])[^\s:=±,;|<>]*(?:\s[^\s:=±,;|<>]+){0,3}?)"
+    r"(?P<mark>\s*[:=]\s*|\s+)(?P<entry>[-+<>≤≥]?.*)"
+)
+_DECIMALS = re.compile(r"\d[.,]\d")
+MOST_LABEL = 32
+
+
+@dataclass(frozen=True, slots=True)
+class Labelled:
+    """A line taken apart: what stands before the entry, which sort of thing that is, and the entry itself."""
+
+    sort: str
+    label: str
+    entry: str
+    parsed: Parsed
+
+
+def is_clean(parsed: Parsed) -> bool:
+    """Tell whether an entry is a number, a limit or a mark for no value, with no doubt about it."""
+    return parsed.kind != "unread" and not (parsed.kind == "reading" and parsed.sort in ("flag", "trailing minus"))
+
+
+def take_apart(line: str) -> list[Labelled]:
+    """Return every way to see a line as something before an entry; empty where there is none.
+
+    >>> [(found.sort, found.label, found.entry) for found in take_apart("QC-1 5.02")]
+    [('label', 'QC-1', '5.02')]
+    """
+    found = []
+    for sort, pattern in (("number", _LIST_NUMBER), ("bullet", _BULLET), ("stamp", _STAMP)):
+        start = pattern.match(line)
+        rest = line[start.end() :] if start else ""
+        if start and rest and (parsed := parse(rest)).kind != "unread":
+            found.append(Labelled(sort, start[0].strip(), rest, parsed))
+    if not found:
+        found.extend(_by_label(line))
+    return found
+
+
+def _by_label(line: str) -> list[Labelled]:
+    """The longest label that leaves a clean entry."""
+    words = line.replace(":", ": ").replace("=", "= ").split()
+    if len(words) < 2 or len(line) > 80:
+        return []
+    for count in range(min(len(words) - 1, 5), 0, -1):
+        label, rest = " ".join(words[:count]), " ".join(words[count:])
+        bare = label.rstrip(" :=")
+        if not _is_label(bare) or len(bare) > MOST_LABEL:
+            continue
+        parsed = parse(rest)
+        if parsed.numeral and (is_clean(parsed) or parsed.sort == "flag") or parsed.kind == "missing":
+            return [Labelled("summary" if is_summary(bare) else "label", bare, rest, parsed)]
+    return []
+
+
+def _is_label(text: str) -> bool:
+    if not text or _DECIMALS.search(text) or any(mark in text for mark in "±<>≤≥"):
+        return False
+    return text[0].isalpha() or bool(re.match(r"\d+[-/A-Za-z]", text)) and not parse(text).numeral
+
+
+def common_style(lines: Sequence[list[Labelled]], plain: int) -> str:
+    """Return the sort of beginning that most lines share ("" for none): ``plain`` lines are entries as they stand."""
+    counts: dict[str, int] = {}
+    for ways in lines:
+        for way in ways:
+            if way.sort != "summary":
+                counts[way.sort] = counts.get(way.sort, 0) + 1
+    best = max(counts, key=lambda sort: counts[sort], default="")
+    return best if best and counts[best] >= max(plain, 1) and (counts[best] > 1 or not plain) else ""

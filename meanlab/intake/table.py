@@ -1,0 +1,274 @@
+"""A table of cells with the places they stand at, and the blocks of data in it with their headings."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+from functools import lru_cache
+
+from meanlab.intake.characters import one_spelling
+from meanlab.intake.entry import Parsed, parse
+from meanlab.intake.grid import Sheet
+from meanlab.intake.heading import Heading, heading_of
+from meanlab.intake.units import is_unit
+from meanlab.intake.words import is_summary
+
+FIRST_ROWS = 400
+
+
+@dataclass(frozen=True)
+class Table:
+    """The rows of a text or a sheet.
+
+    rows       texts of the cells, stripped; a blank row is empty
+    lines      number of the line each row stands on, None for a sheet, whose places are cell addresses
+    sheet      the sheet the rows come from, None for a text
+    separator  what parts the cells of a text: "\\t", ";", ",", "|", " " or "" for one entry a line
+    remarks    what must be seen about the whole table; ``notes`` what is neutral
+    labels     what stood before each entry of a text with one entry a line, by row
+    """
+
+    rows: Sequence[Sequence[str]]
+    lines: Sequence[int] | None = None
+    sheet: Sheet | None = None
+    separator: str = ""
+    remarks: tuple[str, ...] = ()
+    notes: tuple[str, ...] = ()
+    labels: dict[int, str] = field(default_factory=dict)
+
+    @property
+    def name(self) -> str:
+        """The name of the sheet, "" for a text."""
+        return self.sheet.name if self.sheet else ""
+
+    def text(self, row: int, column: int) -> str:
+        """Return the text of a cell, "" beyond the end of its row."""
+        cells = self.rows[row]
+        return cells[column] if column < len(cells) else ""
+
+    def kind(self, row: int, column: int) -> str:
+        """Return the kind of a cell as the workbook has it; "text" in a text."""
+        if self.sheet is None or column >= len(self.sheet.rows[row]):
+            return "text"
+        return self.sheet.rows[row][column].kind
+
+    def place(self, row: int, column: int) -> str:
+        """Return where a cell stands, in words: "line 3" or "B7"."""
+        if self.lines is not None:
+            return f"line {self.lines[row]}"
+        return f"{column_letters(column)}{row + 1}"
+
+
+def column_letters(column: int) -> str:
+    """Return the letters of a sheet's column.
+
+    >>> column_letters(0), column_letters(27)
+    ('A', 'AB')
+    """
+    letters = ""
+    column += 1
+    while column:
+        column, rest = divmod(column - 1, 26)
+        letters = chr(65 + rest) + letters
+    return letters
+
+
+@dataclass(frozen=True)
+class Block:
+    """A run of data rows under one heading.
+
+    heading     row of the headings, None where there is none; ``units`` and ``group`` rows beside it likewise
+    data        the rows with data, in order, without headings that come again and rows of computed figures
+    summaries   rows of computed figures ("Mean", "SD"); ``again`` rows where the heading comes again
+    """
+
+    table: Table
+    heading: int | None
+    units: int | None
+    group: int | None
+    data: Sequence[int]
+    summaries: tuple[int, ...] = ()
+    again: tuple[int, ...] = ()
+
+    @property
+    def width(self) -> int:
+        """How many columns the block has."""
+        rows = self.table.rows
+        sample = self.data if len(self.data) <= 2 * FIRST_ROWS else self.data[:FIRST_ROWS]
+        widest = max((len(rows[row]) for row in sample), default=0)
+        return max(widest, len(rows[self.heading]) if self.heading is not None else 0)
+
+    def heading_text(self, column: int) -> str:
+        """Return the heading of a column as written, "" where there is none."""
+        return "" if self.heading is None else self.table.text(self.heading, column)
+
+    def heading_at(self, column: int) -> Heading:
+        """Return the heading of a column with name and unit, the unit also from the row of units or of groups."""
+        found = heading_of(self.heading_text(column))
+        if found.unit is not None:
+            return found
+        if self.units is not None:
+            unit = self.table.text(self.units, column).strip("()[] ")
+            return Heading(found.text, found.name, unit if is_unit(unit) else None)
+        if self.group is not None and self.heading is not None:
+            return Heading(found.text, found.name, self._group_unit(column))
+        return found
+
+    def _group_unit(self, column: int) -> str | None:
+        assert self.group is not None
+        for left in range(column, -1, -1):
+            text = self.table.text(self.group, left)
+            if text:
+                return heading_of(text).unit
+        return None
+
+
+@lru_cache(maxsize=4096)
+def parsed(text: str) -> Parsed:
+    """Return what a cell's text is."""
+    return parse(one_spelling(text).strip(" \t\xa0"))
+
+
+def sort_of(table: Table, row: int, column: int) -> str:
+    """Return what a cell holds: "number", "limit", "missing", "stamp", "text" or "" for an empty cell."""
+    text, kind = table.text(row, column), table.kind(row, column)
+    if kind == "date":
+        return "stamp"
+    if kind in ("error", "formula"):
+        return "missing"
+    return sort_of_text(text)
+
+
+def sort_of_text(text: str) -> str:
+    """Return what a text is taken for: "number", "limit", "missing", "stamp", "text", "" where it is empty."""
+    if not text:
+        return ""
+    found = parsed(text) if len(text) <= 60 else parse(text)
+    if found.kind == "reading":
+        return "number"
+    if found.kind in ("below", "above"):
+        return "limit" if found.numeral else "word"
+    if found.kind == "missing":
+        return "missing"
+    return "stamp" if found.sort in ("date", "time") else "text"
+
+
+def is_blank(cells: Sequence[str]) -> bool:
+    """Tell whether a row holds nothing."""
+    return not any(cells)
+
+
+def blocks_of(table: Table) -> list[Block]:
+    """Return the blocks of data in a table, in order; the rows before, between and behind them are no data."""
+    rows = table.rows
+    starts = _starts(table)
+    found = []
+    for first, (heading_rows, start) in enumerate(starts):
+        end = starts[first + 1][0][0] if first + 1 < len(starts) and starts[first + 1][0] else None
+        if end is None:
+            end = starts[first + 1][1] if first + 1 < len(starts) else len(rows)
+        found.append(_block(table, heading_rows, start, end))
+    return [block for block in found if block.data]
+
+
+def _starts(table: Table) -> list[tuple[list[int], int]]:
+    """Rows where data begin, each with the heading rows directly above."""
+    starts: list[tuple[list[int], int]] = []
+    words: list[int] = []  # text rows directly above the row looked at
+    numeric: set[int] = set()  # columns with numbers in the block so far
+    blank_before = False
+    for row, cells in enumerate(table.rows[: FIRST_ROWS * 5]):
+        if is_blank(cells):
+            blank_before = blank_before or bool(starts)
+            words = [] if not words or len(table.rows[words[-1]]) > 1 else words
+            continue
+        sorts = [sort_of(table, row, column) for column in range(min(len(cells), 300))]
+        if _is_words(sorts) or (not starts and _is_counted(table, row, sorts)):
+            if words and words[-1] != row - 1 and table.separator:
+                words = []
+            words.append(row)
+            continue
+        columns = {column for column, sort in enumerate(sorts) if sort in ("number", "limit")}
+        if _begins(table, starts, words, numeric, columns, sorts, blank_before):
+            starts.append((words[-3:], row))
+            numeric = set()
+        numeric |= columns
+        words, blank_before = [], False
+    return starts
+
+
+def _begins(
+    table: Table,
+    starts: list[tuple[list[int], int]],
+    words: list[int],
+    numeric: set[int],
+    columns: set[int],
+    sorts: list[str],
+    blank_before: bool,
+) -> bool:
+    """Tell whether a row with data begins a block: the first, or one whose heading says that something new comes."""
+    if not starts:
+        return True
+    if not words or not columns:
+        return False
+    heading = table.rows[words[-1]]
+    first_heading = table.rows[starts[0][0][-1]] if starts[0][0] else ()
+    if list(heading) == list(first_heading):
+        return False
+    headed = {column for column, text in enumerate(heading) if text}
+    if not columns & headed:
+        return False
+    if numeric and not numeric & columns:
+        return True
+    if len(headed) > 1:
+        return blank_before or bool((columns & headed) - numeric)
+    return blank_before and heading_of(heading[min(headed)]).unit is not None and not table.separator
+
+
+def _is_words(sorts: list[str]) -> bool:
+    filled = [sort for sort in sorts if sort]
+    return "text" in filled and all(sort in ("text", "word", "missing") for sort in filled)
+
+
+def _is_counted(table: Table, row: int, sorts: list[str]) -> bool:
+    """Tell whether a row is a heading whose columns are numbered: "Sample, 1, 2, 3"."""
+    numbers = [table.text(row, column) for column, sort in enumerate(sorts) if sort == "number"]
+    if len(numbers) < 2 or numbers != [str(i) for i in range(1, len(numbers) + 1)] or sorts[0] not in ("", "text"):
+        return False
+    following = next((cells for cells in table.rows[row + 1 :] if not is_blank(cells)), None)
+    return following is not None and sum("." in text or "," in text for text in following) >= 2
+
+
+def _block(table: Table, above: list[int], start: int, end: int) -> Block:
+    heading, units, group = _heading_rows(table, above)
+    again, summaries, data = [], [], []
+    heading_cells = list(table.rows[heading]) if heading is not None else None
+    rows = table.rows
+    for row in range(start, end):
+        cells = rows[row]
+        if not any(cells):
+            continue
+        if cells == heading_cells:
+            again.append(row)
+        elif _is_summary_row(cells):
+            summaries.append(row)
+        else:
+            data.append(row)
+    if units is not None and again:
+        data = [row for row in data if list(rows[row]) != list(rows[units])]
+    return Block(table, heading, units, group, data, tuple(summaries), tuple(again))
+
+
+def _heading_rows(table: Table, above: list[int]) -> tuple[int | None, int | None, int | None]:
+    if not above:
+        return None, None, None
+    cells = [text for text in table.rows[above[-1]] if text]
+    bare = [text.strip("()[] ") for text in cells]
+    if len(above) > 1 and all(is_unit(text) or text in ("", "-") for text in bare):
+        return above[-2], above[-1], None
+    group = above[-2] if len(above) > 1 and len(table.rows[above[-2]]) > 1 else None
+    return above[-1], None, group
+
+
+def _is_summary_row(cells: Sequence[str]) -> bool:
+    """Tell whether a row holds computed figures: its first filled cell is a word such as "Mean"."""
+    first = next(filter(None, cells), "")
+    return first[0].isalpha() and len(first) <= 40 and is_summary(first) if first and len(cells) > 1 else False
