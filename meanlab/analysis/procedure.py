@@ -54,8 +54,7 @@ def one_sided_p(procedure: str, spans: Spans, sample: Sample | None, question: Q
     """Return the one-sided p-value of a procedure without computing its interval; ``side`` "greater" or "less"."""
     pick = 0 if side == "greater" else 1
     if procedure == "sign":
-        counts = count_sides(spans)
-        return max(sign_tails(*trial)[pick] for trial in counts.trials())
+        return sign_tails(*count_sides(spans).worst(side))[pick]
     if procedure == "signed_rank":
         assert sample is not None
         return Null().tails(sample.differences)[pick]

@@ -4,7 +4,6 @@ Every function takes arrays and returns doubles; tails are upper tails, with ful
 Checked against mpmath at 50 digits in tests/procedures/test_distributions.py.
 """
 
-from math import comb
 from typing import Any
 
 import numpy as np
@@ -99,7 +98,11 @@ def fair_lower(count: int, n: int) -> float:
         return 1.0
     if n > EXACT_COUNT:
         return float(special.bdtr(count, n, 0.5))
-    return sum(comb(n, k) for k in range(count + 1)) / 2**n
+    total = ways = 1
+    for k in range(count):
+        ways = ways * (n - k) // (k + 1)
+        total += ways
+    return total / 2**n
 
 
 def fair_critical(tail: float, n: int) -> int:

@@ -21,10 +21,22 @@ class Counts:
     tied: int
     undecided: int
 
-    def trials(self) -> list[tuple[int, int]]:
-        """Return (below, above) for 0…m undecided units above and the rest below, and for all of them left out."""
-        placed = [(self.below + self.undecided - j, self.above + j) for j in range(self.undecided + 1)]
-        return [*placed, (self.below, self.above)] if self.undecided else placed
+    def worst(self, alternative: str, with_ties: bool = False) -> tuple[int, int]:
+        """Return (below, above) with the largest p over all places of the undecided units (and of those tied).
+
+        One-sided: all of them on the side that speaks against the alternative; two-sided: as even as they can be made.
+        To leave one out never gives the largest p, nor the smallest.
+        """
+        free = self.undecided + (self.tied if with_ties else 0)
+        even = min(max((self.below + free - self.above) // 2, 0), free)
+        moved = {"greater": 0, "less": free}.get(alternative, even)
+        return self.below + free - moved, self.above + moved
+
+    def best(self, alternative: str) -> tuple[int, int]:
+        """Return (below, above) with the smallest p over all places of the undecided units."""
+        up = alternative == "greater" or (alternative == "two-sided" and self.above >= self.below)
+        moved = self.undecided if up else 0
+        return self.below + self.undecided - moved, self.above + moved
 
 
 def count_sides(units: Spans) -> Counts:
@@ -53,17 +65,16 @@ def tails(below: int, above: int) -> tuple[float, float]:
 def sign_test(units: Spans, alternative: str, alpha: float) -> Test:
     """Return the sign test of the median, exact binomial, units equal to the target left out.
 
-    Undecided units are tried as 0…m of them above and the rest below, and left out: rejected only if the largest p < α
-    with all on one side; not rejected only if the smallest p ≥ α; else ``decided`` is False. p is the largest.
+    Undecided units are tried on every side: rejected only if the largest p < α; not rejected only if the smallest
+    p ≥ α; else ``decided`` is False. p is the largest. A rejection that some way of counting the units equal to the
+    target would undo is not ``decided`` either.
     Source: Dixon & Mood 1946; the interval is [x(c), x(n+1−c)], Conover 1999, over all units.
     """
     counts = count_sides(units)
-    p_by_trial = {trial: float(p_value(alternative, *tails(*trial))) for trial in counts.trials()}
-    smallest, largest = min(p_by_trial.values()), max(p_by_trial.values())
-    chosen = max(p_by_trial, key=lambda trial: p_by_trial[trial])
-    one_side = len({above > below for below, above in p_by_trial}) == 1
-    reject = largest < alpha and (one_side or alternative != "two-sided")
-    against = _with_ties_against(counts, alternative) if counts.tied else None
+    chosen = counts.worst(alternative)
+    smallest, largest = _p(alternative, *counts.best(alternative)), _p(alternative, *chosen)
+    reject = largest < alpha
+    against = _p(alternative, *counts.worst(alternative, with_ties=True)) if counts.tied else None
     rests_on_ties = reject and against is not None and against >= alpha
     n_used = sum(chosen)
     extreme = (n_used, 0) if alternative == "less" else (0, n_used)
@@ -92,7 +103,7 @@ def sign_test(units: Spans, alternative: str, alpha: float) -> Test:
             units.value(low, origin=units.target),
             units.value(high, origin=units.target),
         ),
-        smallest_p=float(p_value(alternative, *tails(*extreme))),
+        smallest_p=_p(alternative, *extreme),
         p_range=(smallest, largest) if counts.undecided else None,
         p_ties_against=against,
         decided=(reject or smallest >= alpha) and not rests_on_ties,
@@ -109,11 +120,7 @@ def _remark(tied: int, rests_on_ties: bool) -> tuple[str, ...]:
     return (f"{equal} equal to the target left out of the count.",)
 
 
-def _with_ties_against(counts: Counts, alternative: str) -> float:
-    """Return p with the units equal to the target counted against rejection."""
-    towards_above = alternative == "greater" or (alternative == "two-sided" and counts.above > counts.below)
-    below = counts.below + (counts.tied if towards_above else 0)
-    above = counts.above + (0 if towards_above else counts.tied)
+def _p(alternative: str, below: int, above: int) -> float:
     return float(p_value(alternative, *tails(below, above)))
 
 
