@@ -16,6 +16,10 @@ from meanlab.intake.units import same_unit
 MOST_CHOICES = 200
 
 
+class NothingToRead(IntakeComplaint):
+    """No column of the table holds a reading."""
+
+
 @dataclass
 class Picked:
     """The cells to be read, in reading order, and what goes with them."""
@@ -277,7 +281,7 @@ def _ask(
     block: Block, rows: Sequence[int], roles: list[Role], readings: list[int], across: list[int]
 ) -> Exception:
     if not readings:
-        return IntakeComplaint("No column holds readings: paste the readings, one a line, or choose another file.")
+        return NothingToRead("No column holds readings: paste the readings, one a line, or choose another file.")
     choices = [column.to_dict() for column in listed(block, roles, rows) if column.column_index in readings]
     if across:
         label = next((i for i, role in enumerate(roles) if role.role in ("label", "text", "analyte")), None)

@@ -145,7 +145,7 @@ def _sample(lines: Sequence[str]) -> list[str]:
 
 def _is_entry(line: str) -> bool:
     """Tell whether a line is one entry as it stands."""
-    return parsed(line).kind != "unread" or sort_of_text(line) == "stamp"
+    return sort_of_text(line) in ("number", "limit", "missing", "word", "stamp")
 
 
 def _holds_numbers(line: str) -> bool:
@@ -155,7 +155,8 @@ def _holds_numbers(line: str) -> bool:
 
 
 def _blank_table(filled: list[str], many: list[str], labelled: list[str], entries: list[str]) -> bool:
-    if len(labelled) >= len(many) and not _more_than_one_number(many):
+    numbered = [line for line in labelled if take_apart(one_spelling(line))[0].sort in ("number", "stamp", "bullet")]
+    if len(numbered) >= len(many) or (len(labelled) >= len(many) and not _more_than_one_number(many)):
         return False
     widths = Counter(len(line.split()) for line in many)
     gaps = Counter(len(_GAPS.split(line)) for line in many)

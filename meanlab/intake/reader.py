@@ -4,7 +4,7 @@ from collections.abc import Callable, Mapping, Sequence
 from typing import Any
 
 from meanlab.core.complaints import IntakeComplaint
-from meanlab.intake.choosing import Picked, pick
+from meanlab.intake.choosing import NothingToRead, Picked, pick
 from meanlab.intake.column import Given, Read, read_column
 from meanlab.intake.doubts import doubts_about
 from meanlab.intake.found import Column, Intake
@@ -84,7 +84,10 @@ def _read(source: str | bytes, filename: str | None, selection: dict[str, Any]) 
     if not with_blocks:
         return _nothing(tables)
     if len(with_blocks) == 1:
-        return _column(pick(with_blocks[0][1], selection), selection)
+        try:
+            return _column(pick(with_blocks[0][1], selection), selection)
+        except NothingToRead:
+            return _nothing(tables)
     return _one_sheet(with_blocks, selection)
 
 

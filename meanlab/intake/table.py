@@ -8,10 +8,12 @@ from meanlab.intake.characters import one_spelling
 from meanlab.intake.entry import Parsed, parse
 from meanlab.intake.grid import Sheet
 from meanlab.intake.heading import Heading, heading_of
+from meanlab.intake.numerals import leaning
 from meanlab.intake.units import is_unit
 from meanlab.intake.words import is_summary
 
 FIRST_ROWS = 400
+_ODD = ("formula", "width", "infinite", "two numbers", "malformed")
 
 
 @dataclass(frozen=True)
@@ -128,7 +130,7 @@ def parsed(text: str) -> Parsed:
 
 
 def sort_of(table: Table, row: int, column: int) -> str:
-    """Return what a cell holds: "number", "limit", "missing", "stamp", "text" or "" for an empty cell."""
+    """Return what a cell holds: "number", "limit", "missing", "stamp", "odd", "text" or "" where it is empty."""
     text, kind = table.text(row, column), table.kind(row, column)
     if kind == "date":
         return "stamp"
@@ -138,17 +140,19 @@ def sort_of(table: Table, row: int, column: int) -> str:
 
 
 def sort_of_text(text: str) -> str:
-    """Return what a text is taken for: "number", "limit", "missing", "stamp", "text", "" where it is empty."""
+    """Return what a text is taken for: "number", "limit", "missing", "stamp", "odd", "text", "" where it is empty."""
     if not text:
         return ""
     found = parsed(text) if len(text) <= 60 else parse(text)
     if found.kind == "reading":
-        return "number"
+        return "number" if leaning(found.numeral) != "malformed" else "odd"
     if found.kind in ("below", "above"):
         return "limit" if found.numeral else "word"
     if found.kind == "missing":
         return "missing"
-    return "stamp" if found.sort in ("date", "time") else "text"
+    if found.sort in ("date", "time"):
+        return "stamp"
+    return "odd" if found.meant or found.sort in _ODD else "text"
 
 
 def is_blank(cells: Sequence[str]) -> bool:
