@@ -5,9 +5,8 @@ from contextlib import AbstractContextManager, contextmanager, nullcontext
 from threading import RLock
 
 from sqlalchemy import Connection, StaticPool
-from sqlalchemy.exc import SQLAlchemyError
 
-from meanlab.notebook.place import cannot_keep, database_url, open_engine, place_in_words, writing
+from meanlab.notebook.place import FAILURES, cannot_keep, database_url, open_engine, place_in_words, writing
 from meanlab.notebook.schema import prepare
 
 
@@ -52,5 +51,5 @@ class Database:
     def _said_plainly(self) -> Iterator[None]:
         try:
             yield
-        except (SQLAlchemyError, OSError) as problem:
+        except FAILURES as problem:
             raise cannot_keep(self.url, problem) from problem

@@ -4,10 +4,10 @@ from collections.abc import Iterator
 from typing import Any
 
 from sqlalchemy import Connection, Select, func, select, text
-from sqlalchemy.exc import SQLAlchemyError
 
 from meanlab.notebook.entry import digest_of, values_of
 from meanlab.notebook.listing import line_values
+from meanlab.notebook.place import FAILURES
 from meanlab.notebook.schema import ENTRY, ENTRY_CONTENT, LAST_ENTRY
 
 PIECE = 100
@@ -18,20 +18,30 @@ _SEALED_ROW = select(*ENTRY.c, ENTRY_CONTENT.c.content).join(
 
 def problems(connection: Connection) -> list[str]:
     """Return a sentence for each thing that is not as it was saved, with its place; empty where all is whole."""
-    found = [*_of_the_file(connection)]
+    found: list[str] = []
+    try:
+        found += _of_the_file(connection)
+        found += _of_the_chain(connection)
+        found += _contents_alone(connection)
+    except FAILURES:
+        found.append("The database is damaged: not every entry can be read. Go back to a copy of it.")
+    return found
+
+
+def _of_the_chain(connection: Connection) -> Iterator[str]:
     number = 0
     digest: str | None = ""
     for row in _rows(connection):
         if isinstance(row, int):
-            found.append(f"Entry {row}: its line in the list cannot be read any more.")
+            yield f"Entry {row}: its line in the list cannot be read any more."
             number, digest = row, None
             continue
-        found += _missing(number, row["number"])
+        yield from _missing(number, row["number"])
         if row["number"] != number + 1:
             digest = None
-        found += _of_an_entry(row, digest)
+        yield from _of_an_entry(row, digest)
         number, digest = row["number"], row["digest"]
-    return found + _of_the_end(connection, number, digest) + _contents_alone(connection)
+    yield from _of_the_end(connection, number, digest)
 
 
 def _of_the_file(connection: Connection) -> Iterator[str]:
@@ -59,7 +69,7 @@ def _rows(connection: Connection) -> Iterator[Any]:
 def _piece(connection: Connection, query: Select[Any], known: list[int]) -> Iterator[Any]:
     try:
         rows = list(connection.execute(query).mappings())
-    except SQLAlchemyError:  # a text that is no text any more: find which
+    except FAILURES:  # a text that is no text any more: find which
         if len(known) == 1:
             yield known[0]
             return

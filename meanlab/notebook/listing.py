@@ -13,6 +13,7 @@ from meanlab.notebook.schema import ENTRY
 PIECE = 200
 _FINGERPRINT = re.compile("[0-9a-f]{12,64}")
 _NUMBER = re.compile("[0-9]{1,9}")
+NO_SIGN = "\x00"  # some databases keep no text with it
 SEARCHED = 4_000  # characters of a single text that a search looks through
 
 
@@ -71,16 +72,19 @@ def listed(row: RowMapping) -> Listed:
 def line_values(values: Mapping[str, Any], digest: str) -> dict[str, Any]:
     """Return what stands in the list of an entry, by column: all of it follows from the entry's exact values."""
     analysis = values["analysis"]
-    return {
-        "number": values["number"],
-        "key": values["key"],
-        "time": values["time"],
+    texts = {
         "title": values["title"],
         "material": analysis["question"]["material"],
         "verdict": analysis["verdict"],
         "sentence": analysis["conclusion"],
-        "amends": values["amends"],
         "words": words_of(values),
+    }
+    return {
+        **{name: text.replace(NO_SIGN, "") for name, text in texts.items()},
+        "number": values["number"],
+        "key": values["key"],
+        "time": values["time"],
+        "amends": values["amends"],
         "fingerprint": analysis["provenance"]["fingerprint"],
         "digest": digest,
     }

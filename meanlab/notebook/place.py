@@ -13,6 +13,8 @@ from sqlalchemy.exc import ArgumentError, NoSuchModuleError, SQLAlchemyError
 from meanlab.core.complaints import NotebookComplaint
 
 VARIABLE = "MEANLAB_DATABASE_URL"
+# A damaged SQLite file can make the very text of the error undecodable.
+FAILURES = (SQLAlchemyError, OSError, UnicodeDecodeError)
 FILE_NAME = "meanlab.db"
 WAIT_FOR_ANOTHER_WRITER = 5_000  # milliseconds
 
@@ -75,6 +77,8 @@ def cannot_keep(url: str, problem: Exception) -> NotebookComplaint:
     """Return the sentence for a notebook that cannot be read or written (disk full, folder read-only, …)."""
     cause = getattr(problem, "orig", None) if isinstance(problem, SQLAlchemyError) else None
     reason = str(cause or getattr(problem, "strerror", None) or problem).splitlines()[0]
+    if isinstance(problem, UnicodeDecodeError):
+        reason = "the file is damaged"
     return NotebookComplaint(
         f"The notebook at {place_in_words(url)} cannot be used ({reason}). "
         f"The page works on, but a refresh would lose what is typed: free the place, or name another in {VARIABLE}."
