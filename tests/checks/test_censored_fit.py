@@ -82,7 +82,7 @@ def test_entries_on_both_sides_at_fifty_digits():
 
 
 def test_interval_and_p_are_those_of_the_profile_at_fifty_digits():
-    """At both ends of the 95 % interval twice the fall of the profile is χ²(0.95; 1), and p is its tail at the target."""
+    """At both ends of the interval twice the fall of the profile is χ²(0.95; 1), and p is its tail at the target."""
     known, limits, sides = BOTH_SIDES
     censored = tuple(
         {"index": place, "kind": "below" if side > 0 else "above", "limit": limit}
