@@ -13,6 +13,7 @@ LAST_COLUMN = 16_384
 _ROW_GAP = 10_000
 _COLUMN_GAP = 1_000
 _LONGEST_TEXT = 1_000
+_MOST_MERGED = 1_000_000
 _NAMED = 3
 _LINE_BREAKS = re.compile(r"[\r\n\t\v\f\u2028\u2029]+")
 
@@ -54,7 +55,7 @@ class SheetBuilder:
         self.struck: list[str] = []
         self.comments: list[tuple[str, str]] = []
         self.twice: list[str] = []
-        self.merged: list[tuple[int, int, int]] = []
+        self.merged: set[tuple[int, int, int]] = set()
         self._room = room
         self._rows: dict[int, dict[int, Cell]] = {}
 
@@ -74,9 +75,13 @@ class SheetBuilder:
 
     def _fill_merged(self) -> None:
         """Repeat the text of a cell merged over several rows in each of them; a number stays one reading."""
-        for first_row, last_row, column in self.merged:
+        left = _MOST_MERGED
+        for first_row, last_row, column in sorted(self.merged):
             cell = self.at(first_row, column)
-            if cell.kind == "text" and cell.text and last_row - first_row <= _ROW_GAP:
+            left -= last_row - first_row
+            if left < 0:
+                return
+            if cell.kind == "text" and cell.text:
                 for row in range(first_row + 1, last_row + 1):
                     if row in self._rows and column not in self._rows[row]:
                         self.put(row, column, cell)

@@ -150,7 +150,7 @@ class _Content(Walker):
                 self._builder.struck.append(place_name(self._row, self._column))
             spanned = _repeated(attributes, "number-rows-spanned", LAST_ROW)
             if spanned > 1:
-                self._builder.merged.append((self._row, self._row + spanned - 1, self._column))
+                self._builder.merged.add((self._row, self._row + spanned - 1, self._column))
         self._column += count
 
 

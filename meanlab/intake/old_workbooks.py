@@ -17,8 +17,8 @@ from meanlab.intake.number_formats import GENERAL, NumberFormat
 from meanlab.intake.parts import DAMAGED, LOCKED
 
 _UNSEEN = (
-    "In this kind of workbook (.xlsb, or .xls of before 1997) percent formats, hidden rows and cells in error cannot be "
-    "seen: compare the readings with the sheet, or save it as .xlsx."
+    "In this kind of workbook (.xlsb, or .xls of before 1997) percent formats, hidden rows and cells in error cannot "
+    "be seen: compare the readings with the sheet, or save it as .xlsx."
 )
 
 
@@ -45,8 +45,9 @@ def _sheet(book: python_calamine.CalamineWorkbook, about: python_calamine.SheetM
     builder = SheetBuilder(about.name, room, hidden)
     sheet = book.get_sheet_by_name(about.name)
     plain = NumberFormat(GENERAL)
-    first_row, first_column = sheet.start or (0, 0)
-    for row, values in enumerate(sheet.to_python(skip_empty_area=True), first_row):
+    _, first_column = sheet.start or (0, 0)
+    # the library hands over the empty rows before the first cell, but not the empty columns
+    for row, values in enumerate(sheet.iter_rows()):
         for column, value in enumerate(values, first_column):
             builder.put(row, column, _cell(value, plain))
     return replace(builder.sheet(), remarks=(_UNSEEN,))

@@ -70,7 +70,7 @@ class _Table:
         if rows > 1:
             self._taken.update(dict.fromkeys(range(self.column, self.column + columns), self.row + rows))
             if not text[:1].isdigit():
-                self.builder.merged.append((self.row, self.row + rows - 1, self.column))
+                self.builder.merged.add((self.row, self.row + rows - 1, self.column))
         self.column += columns
         self.pieces = None
 

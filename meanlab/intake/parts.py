@@ -41,6 +41,7 @@ class Parts:
         entries = self._archive.infolist()
         self.unpacked = sum(entry.file_size for entry in entries)
         _check_sizes(len(entries), self.unpacked)
+        self._given: set[str] = set()
         self._entries = {_plain(entry.filename): entry for entry in entries}
 
     def __contains__(self, name: str) -> bool:
@@ -51,10 +52,14 @@ class Parts:
         return [entry.filename.lstrip("/\\") for entry in self._entries.values()]
 
     def chunks(self, name: str) -> Iterator[bytes]:
-        """The bytes of one part, piece by piece; raises IntakeComplaint when it is absent or damaged."""
+        """The bytes of one part, piece by piece; raises IntakeComplaint when it is absent or damaged.
+
+        Each part is given once: a thousand sheets that point to one part would take a thousand times its size.
+        """
         entry = self._entries.get(_plain(name))
-        if entry is None:
+        if entry is None or entry.filename in self._given:
             raise IntakeComplaint(DAMAGED)
+        self._given.add(entry.filename)
         if entry.flag_bits & 0x1:
             raise IntakeComplaint(LOCKED)
         if entry.compress_type not in (zipfile.ZIP_STORED, zipfile.ZIP_DEFLATED):

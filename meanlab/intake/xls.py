@@ -154,7 +154,7 @@ class _SheetRecords:
             for at in range(2, min(len(content), 2 + 8 * struct.unpack_from("<H", content)[0]) - 7, 8):
                 first_row, last_row, first_column, _ = struct.unpack_from("<4H", content, at)
                 if last_row > first_row:
-                    self._builder.merged.append((first_row, last_row, first_column))
+                    self._builder.merged.add((first_row, last_row, first_column))
 
     def _take_comment(self, kind: int, content: bytes, pieces: list[bytes]) -> None:
         """A comment is a drawn object with a text, and a note that names the object and the cell."""

@@ -10,6 +10,7 @@ Source: ECMA-376-1 §18 (SpreadsheetML), ECMA-376-2 (packages and their relation
 import posixpath
 from urllib.parse import unquote
 
+from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.building import Room, SheetBuilder, shown_text
 from meanlab.intake.grid import Sheet
 from meanlab.intake.markup import Attributes, Walker, walk
@@ -38,7 +39,12 @@ def read_xlsx(parts: Parts) -> tuple[Sheet, ...]:
     styles.since_1904 = book.since_1904
     room = Room()
     sheets = []
-    for name, identity, hidden in book.sheets[:_MOST_SHEETS]:
+    if len(book.sheets) > _MOST_SHEETS:
+        raise IntakeComplaint(
+            f"The workbook holds {len(book.sheets):,} sheets; {_MOST_SHEETS:,} is the limit. "
+            "Save only the sheet with the readings, as .xlsx or .csv."
+        )
+    for name, identity, hidden in book.sheets:
         kind, target = relations.get(identity, ("", ""))
         if kind != "worksheet":
             continue

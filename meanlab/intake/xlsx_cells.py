@@ -88,7 +88,7 @@ class SheetCells(Walker):
         first, _, last = reference.partition(":")
         begin, end = place_of(first), place_of(last)
         if begin and end and end[0] > begin[0]:
-            self._builder.merged.append((begin[0], end[0], begin[1]))
+            self._builder.merged.add((begin[0], end[0], begin[1]))
 
     def _cell(self) -> Cell:
         kind = self._attributes.get("t", "n")

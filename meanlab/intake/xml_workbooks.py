@@ -117,7 +117,7 @@ class _Book(Walker):
             builder.comments.append((place_name(self._row, self._column), comment))
         down = _count(self._attributes, "MergeDown")
         if down:
-            builder.merged.append((self._row, self._row + down, self._column))
+            builder.merged.add((self._row, self._row + down, self._column))
         self._column += _count(self._attributes, "MergeAcross")
 
     def _cell(self) -> Cell:
