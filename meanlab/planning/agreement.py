@@ -12,6 +12,8 @@ from meanlab.procedures.mean_tests import Further
 
 HIGHEST_RATIO = 50.0
 STEEPEST = 40.0
+NO_SCATTER = 1e-9
+FARTHEST = 1e12
 
 
 def agreement_power(n: int, limit: float, s: float, true: float, significance: float, target_u: float = 0.0) -> float:
@@ -24,40 +26,44 @@ def agreement_power(n: int, limit: float, s: float, true: float, significance: f
     """
     if n < 2:
         return 0.0
-    scatter, df, further = s / sqrt(n), n - 1.0, Further(target_u)
-    total = hypot(scatter, target_u)
-    steepest = float(t_critical(significance, df)) * scatter / total
-    edge = (limit - abs(true)) / (steepest * total)
-    last = _last_ratio(limit, scatter, df, further, significance)
-    r, weights = ratio_panels(df, edge, 1 / steepest, steps=min(steepest, STEEPEST), upto=last)
-    room = limit - critical_distance(r, scatter, df, further, significance)
-    return float(weights @ _between(-(room + true) / total, (room - true) / total, room > 0))
+    total = hypot(s / sqrt(n), target_u)  # everything below is in this unit
+    scatter, further, df = s / sqrt(n) / total, Further(target_u / total), n - 1.0
+    near, far, edge = (
+        max(-FARTHEST, min(FARTHEST, distance / total)) for distance in (limit - abs(true), limit + abs(true), limit)
+    )
+    r, weights = np.ones(1), np.ones(1)
+    if scatter > NO_SCATTER:
+        steepest = float(t_critical(significance, df)) * scatter
+        last = _last_ratio(edge, scatter, df, further, significance)
+        r, weights = ratio_panels(df, near / steepest, 1 / steepest, steps=min(steepest, STEEPEST), upto=last)
+    taken = critical_distance(r, scatter, df, further, significance)
+    return min(1.0, float(weights @ np.where(taken < edge, _between(taken - far, near - taken), 0.0)))
 
 
-def _last_ratio(limit: float, scatter: float, df: float, further: Further, significance: float) -> float:
+def _last_ratio(edge: float, scatter: float, df: float, further: Further, significance: float) -> float:
     """Return the ratio s/σ from which on nothing can agree, because the interval is wider than the limits."""
-    if further.u == 0:
-        return limit / (float(t_critical(significance, df)) * scatter)
+    if further.u < NO_SCATTER:
+        return edge / (float(t_critical(significance, df)) * scatter)
 
     def beyond(r: float) -> float:
-        return float(critical_distance(r, scatter, df, further, significance)) - limit
+        return float(critical_distance(r, scatter, df, further, significance)) - edge
 
     if beyond(0.0) >= 0:
         return 0.0
     return float(brentq(beyond, 0.0, HIGHEST_RATIO, xtol=1e-14)) if beyond(HIGHEST_RATIO) > 0 else inf
 
 
-def _between(low: np.ndarray, high: np.ndarray, there: np.ndarray) -> np.ndarray:
-    """Return P(low < Z < high), 0 where there is no room."""
-    right = low + high > 0  # both ends are taken in the tail where they are small, so that nothing cancels
+def _between(low: np.ndarray, high: np.ndarray) -> np.ndarray:
+    """Return P(low < Z < high), both tails taken on the side where they are small, so that nothing cancels."""
+    right = low + high > 0
     lower, upper = np.where(right, low, -high), np.where(right, high, -low)
-    return np.where(there, np.clip(normal_upper(lower) - normal_upper(upper), 0.0, None), 0.0)
+    return np.clip(normal_upper(lower) - normal_upper(upper), 0.0, None)
 
 
 def highest_agreement(limit: float, true: float, significance: float, target_u: float) -> float:
-    """Return the power that no number of readings exceeds: 1 without uncertainty of the target."""
+    """Return the power that no number of readings exceeds: 1 for |true| < limit without uncertainty of the target."""
     if target_u == 0:
-        return 1.0 if abs(true) < limit else 0.0
+        return float(abs(true) < limit)
     room = limit / target_u - float(normal_critical(significance))
     shift = abs(true) / target_u
-    return max(0.0, float(normal_upper(-room + shift) - normal_upper(room + shift)))
+    return max(0.0, float(normal_upper(shift - room) - normal_upper(shift + room))) if room > 0 else 0.0

@@ -138,12 +138,14 @@ def combined_power(scatter: float, df: float, design: Design) -> Callable[[float
 
 def critical_distance(r: Any, scatter: float, df: float, further: Further, each_tail: float) -> Any:
     """Return t(ν)·√((r·scatter)² + u²), the distance from the target that rejects, for every ratio r = s/σ."""
+    if further.u == 0:
+        return t_critical(each_tail, df) * np.asarray(r) * scatter
     largest = max(scatter, further.u)
     target, own = ((part / largest) ** 2 for part in (further.target_u, further.own_u))
     seen = (np.asarray(r) * scatter / largest) ** 2
     total = seen + target + own
     spread = seen**2 / df + target**2 / further.target_df
-    with np.errstate(divide="ignore", over="ignore"):
+    with np.errstate(divide="ignore", over="ignore", invalid="ignore"):
         effective = np.where(spread > 0, total**2 / spread, inf)
     return t_critical(each_tail, effective) * np.sqrt(total) * largest
 

@@ -1,5 +1,6 @@
 """Powers at many digits or by other libraries, written independently of the package."""
 
+from itertools import pairwise
 from math import comb, inf, sqrt
 
 import numpy as np
@@ -51,8 +52,10 @@ def critical_distance(r, scatter, df, u, tail):
 def over_scatter(probability, df, edges):
     """Return ∫ density · probability over r = s/σ by scipy's adaptive quadrature between the edges."""
     parts = [
-        integrate.quad(lambda r: ratio_density(r, df) * probability(r), low, high, epsabs=1e-14, epsrel=1e-12, limit=200)
-        for low, high in zip(edges, edges[1:], strict=False)
+        integrate.quad(
+            lambda r: ratio_density(r, df) * probability(r), low, high, epsabs=1e-14, epsrel=1e-12, limit=200
+        )
+        for low, high in pairwise(edges)
     ]
     return sum(part[0] for part in parts)
 

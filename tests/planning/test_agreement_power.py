@@ -71,7 +71,9 @@ def test_it_does_not_depend_on_the_unit(n, limit, true, unit, u):
     scaled = meanlab.power_agreement(n, limit * unit, unit, true * unit, target_uncertainty=u * unit)
     assert 0 <= found <= 1
     assert scaled == pytest.approx(found, rel=1e-8, abs=1e-14)
-    assert meanlab.power_agreement(n, limit, 1, -true, target_uncertainty=u) == pytest.approx(found, rel=1e-9, abs=1e-14)
+    assert meanlab.power_agreement(n, limit, 1, -true, target_uncertainty=u) == pytest.approx(
+        found, rel=1e-9, abs=1e-14
+    )
     assert meanlab.power_agreement(n, limit + 0.1, 1, true, target_uncertainty=u) >= found - 1e-12
 
 
