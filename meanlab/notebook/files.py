@@ -6,7 +6,7 @@ from pathlib import Path
 from typing import Any
 
 from sqlalchemy import Connection, insert, select, update
-from sqlalchemy.exc import IntegrityError
+from sqlalchemy.exc import SQLAlchemyError
 
 from meanlab.core.complaints import NotebookComplaint
 from meanlab.core.exact_values import canonical
@@ -17,6 +17,7 @@ from meanlab.notebook.place import open_engine, writing
 from meanlab.notebook.schema import BENCH_DEFAULT, ENTRY, ENTRY_CONTENT, LAST_ENTRY, prepare
 
 PIECE = 100
+LARGEST_NUMBER = 2**31
 
 
 def file_of(connection: Connection) -> bytes:
@@ -72,14 +73,15 @@ def fill(connection: Connection, entries: Sequence[Mapping[str, Any]], last: Map
     for place, entry in enumerate(entries, 1):
         try:
             values, digest = entry["content"], str(entry["digest"])
-            number = values["number"] if values["number"] > number else number + 1
+            number = values["number"] if number < _whole(values["number"]) < LARGEST_NUMBER else number + 1
             connection.execute(insert(ENTRY).values(line_values(values, digest) | {"number": number}))
             connection.execute(insert(ENTRY_CONTENT).values(number=number, content=canonical(values)))
-        except (KeyError, TypeError, AttributeError, IntegrityError) as problem:
+        except (KeyError, TypeError, AttributeError, SQLAlchemyError) as problem:
             raise NotebookComplaint(
                 f"Entry {place} of this record file cannot be read, or stands there twice. Go back to an earlier copy."
             ) from problem
-    connection.execute(update(LAST_ENTRY).values(number=last.get("number", 0), digest=last.get("digest", "")))
+    end = {"number": _whole(last.get("number")), "digest": str(last.get("digest"))}
+    connection.execute(update(LAST_ENTRY).values(end))
 
 
 def copy(connection: Connection, path: Path) -> Path:
@@ -119,6 +121,10 @@ def _rows(connection: Connection) -> Iterator[Any]:
         if len(rows) < PIECE:
             return
         after = rows[-1]["number"]
+
+
+def _whole(number: Any) -> int:
+    return number if type(number) is int and abs(number) < LARGEST_NUMBER else 0
 
 
 def _digests(content: bytes) -> list[Any] | None:

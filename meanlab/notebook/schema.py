@@ -141,5 +141,9 @@ def _keep_copy(engine: Engine, version: int) -> None:
     while copy.exists():
         count += 1
         copy = path.with_name(f"{path.stem}.layout-{version}.{count}{path.suffix}")
-    with closing(sqlite3.connect(path)) as source, closing(sqlite3.connect(copy)) as target:
-        source.backup(target)
+    try:
+        with closing(sqlite3.connect(path)) as source, closing(sqlite3.connect(copy)) as target:
+            source.backup(target)
+    except sqlite3.Error as problem:
+        copy.unlink(missing_ok=True)
+        raise OSError(0, f"its older layout cannot be copied: {problem}") from problem
