@@ -55,6 +55,7 @@ class SheetBuilder:
         self.struck: list[str] = []
         self.comments: list[tuple[str, str]] = []
         self.twice: list[str] = []
+        self.summaries: set[tuple[int, int]] = set()
         self.merged: set[tuple[int, int, int]] = set()
         self._room = room
         self._rows: dict[int, dict[int, Cell]] = {}
@@ -89,6 +90,7 @@ class SheetBuilder:
     def sheet(self) -> Sheet:
         """The finished sheet; a cell far from all others is left out, which a remark tells."""
         self._fill_merged()
+        summaries = self._without_summaries()
         strays: list[str] = []
         last_row = _before_gap(self._rows, _ROW_GAP)
         last_column = _before_gap({column for cells in self._rows.values() for column in cells}, _COLUMN_GAP)
@@ -111,8 +113,20 @@ class SheetBuilder:
             hidden_columns=frozenset(
                 column for first, last in self.hidden_columns for column in range(first, min(last, last_column) + 1)
             ),
-            remarks=tuple(self._remarks(strays)),
+            remarks=tuple(self._remarks(strays, summaries)),
         )
+
+    def _without_summaries(self) -> list[str]:
+        """Take away the figures calculated from the cells above them, unless a word in their row names them."""
+        taken = []
+        for row, column in sorted(self.summaries):
+            cells = self._rows.get(row, {})
+            if column in cells and all(cell.kind != "text" for cell in cells.values()):
+                del cells[column]
+                taken.append(place_name(row, column))
+            if not cells:
+                self._rows.pop(row, None)
+        return taken
 
     def _hidden_rows(self, last_row: int) -> frozenset[int]:
         spans = sorted(self.hidden_row_ranges)
@@ -125,7 +139,20 @@ class SheetBuilder:
                 hidden.append(row)
         return frozenset(hidden)
 
-    def _remarks(self, strays: list[str]) -> Iterable[str]:
+    def _remarks(self, strays: list[str], summaries: list[str]) -> Iterable[str]:
+        waiting = [
+            place_name(row, column)
+            for row, cells in sorted(self._rows.items())
+            for column, cell in cells.items()
+            if cell.kind == "formula"
+        ]
+        if waiting:
+            yield (
+                f"{_cells(waiting)} without a result: the formula was never calculated. Open the workbook in a "
+                "spreadsheet, let it calculate, and save it."
+            )
+        if summaries:
+            yield f"{_cells(summaries)} calculated from the cells above (mean, scatter or the like) and not read."
         if strays:
             yield f"{_cells(strays)} far from the other cells and left out."
         if self.twice:

@@ -13,6 +13,7 @@ from meanlab.intake.grid import Cell, Sheet
 from meanlab.intake.markup import Attributes, Walker, walk
 from meanlab.intake.number_formats import Section, number_cell
 from meanlab.intake.parts import LOCKED, Parts
+from meanlab.intake.xlsx_cells import sums_up
 
 _HIDDEN = ("collapse", "filter")
 _LONGEST_FORMULA = 60
@@ -146,6 +147,9 @@ class _Content(Walker):
             for row in range(self._row, self._row + self._rows_repeated):
                 for column in range(self._column, self._column + count):
                     self._builder.put(row, column, cell)
+            formula = attributes.get("formula", "").replace("[.", "").replace(":.", ":").replace("]", "")
+            if formula and cell.kind == "number" and sums_up(formula.partition("=")[2], self._row, self._column):
+                self._builder.summaries.add((self._row, self._column))
             if attributes.get("style-name") in self._striking:
                 self._builder.struck.append(place_name(self._row, self._column))
             spanned = _repeated(attributes, "number-rows-spanned", LAST_ROW)

@@ -9,6 +9,7 @@ from meanlab.intake.column import Given, Read, read_column
 from meanlab.intake.doubts import doubts_about
 from meanlab.intake.found import Column, Intake
 from meanlab.intake.layout import ChoiceNeeded
+from meanlab.intake.long_column import OneColumn
 from meanlab.intake.numerals import Sign, decimal_sign
 from meanlab.intake.roles import listed, roles_of, sample_of
 from meanlab.intake.sources import tables_of
@@ -123,7 +124,7 @@ def _nothing(tables: Sequence[Table]) -> Intake:
         if places:
             found = _entries(table, places[:50], Given)
             read_back = read_column(found)
-            first = next(iter(read_back.warnings), "")
+            first = next(iter([*(table.sheet.remarks if table.sheet else ()), *read_back.warnings]), "")
             return Intake(refused=True, reason=f"No reading was found. {first}".strip())
     return Intake(refused=True, reason="There is nothing to read: paste the readings, one a line, or open a file.")
 
@@ -156,7 +157,7 @@ def _given(picked: Picked, decimal: Sign | None) -> Given:
     table, block = picked.block.table, picked.block
     if len(picked.columns) == 1 and table.sheet is None:
         column, rows = picked.columns[0], picked.rows
-        texts = [cells[column] if column < len(cells) else "" for cells in map(table.rows.__getitem__, rows)]
+        texts = _texts(table, rows, column)
         place_of: Callable[[int], str] = lambda i: table.place(rows[i], column)  # noqa: E731
         kinds, computed = None, frozenset[int]()
         places: Sequence[tuple[int, int]] = ()
@@ -172,6 +173,12 @@ def _given(picked: Picked, decimal: Sign | None) -> Given:
         qualifiers = [table.text(row, picked.qualifier) for row in picked.rows for _ in picked.columns]
     del block
     return Given(texts, place_of, kinds, computed, qualifiers, decimal, None, picked.unit)
+
+
+def _texts(table: Table, rows: Sequence[int], column: int) -> list[str]:
+    if isinstance(table.rows, OneColumn) and isinstance(rows, range):
+        return table.rows.texts[rows.start : rows.stop]
+    return [cells[column] if column < len(cells) else "" for cells in map(table.rows.__getitem__, rows)]
 
 
 def _computed(table: Table, places: Sequence[tuple[int, int]]) -> frozenset[int]:

@@ -19,6 +19,8 @@ _NUMBER, _SHORT_NUMBER, _SHORT_NUMBERS, _TEXT_NUMBER = 0x203, 0x27E, 0xBD, 0xFD
 _TEXT, _RICH_TEXT, _TRUTH_OR_ERROR, _FORMULA, _FORMULA_TEXT = 0x204, 0xD6, 0x205, 0x06, 0x207
 _ERRORS = {0: "#NULL!", 7: "#DIV/0!", 15: "#VALUE!", 23: "#REF!", 29: "#NAME?", 36: "#NUM!", 42: "#N/A"}
 _VERSION = 0x0600
+# length and kind of the token after the range: a function of several values, or the sum
+_FUNCTIONS = ((4, 0x02), (4, 0x19))
 _NO_RESULT = "= (a formula without a stored result)"
 
 Record = tuple[int, list[bytes]]
@@ -199,6 +201,8 @@ class _SheetRecords:
         result = content[6:14]
         if result[6:8] != b"\xff\xff":
             self._formulas_with_result = True
+            if _sums_up(content):
+                self._builder.summaries.add(struct.unpack_from("<HH", content))
             return self._put_number(content, struct.unpack("<d", result)[0])
         row, column, style = struct.unpack_from("<3H", content)
         if result[0] == 3:
@@ -209,6 +213,17 @@ class _SheetRecords:
             self._waiting = (row, column, style)
             return None
         return self._put_truth_or_error(content, result[2], result[0] == 2)
+
+
+def _sums_up(content: bytes) -> bool:
+    """True for a formula that is one function of one range above it in its own column ([MS-XLS] §2.5.198)."""
+    row, column = struct.unpack_from("<HH", content)
+    length = struct.unpack_from("<H", content, 20)[0] if len(content) > 33 else 0
+    tokens = content[22 : 22 + length]
+    if len(tokens) < 10 or tokens[0] & 0x1F != 0x05 or (len(tokens) - 9, tokens[9] & 0x1F) not in _FUNCTIONS:
+        return False
+    _, last_row, first_column, last_column = struct.unpack_from("<4H", tokens, 1)
+    return first_column & 0x3FFF == last_column & 0x3FFF == column and last_row < row
 
 
 def _short_number(content: bytes, place: int) -> float:

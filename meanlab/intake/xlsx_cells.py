@@ -15,6 +15,10 @@ from meanlab.intake.styles import Styles
 TRUE = ("1", "true", "on")
 _ESCAPE = re.compile(r"_x([0-9A-Fa-f]{4})_")
 _LONGEST_FORMULA = 60
+_LONGEST_SUMMARY = 200
+_CELL = r"(\$?[A-Z]{1,3}\$?\d{1,7})"
+_AGGREGATE = re.compile(rf"(?:AVERAGE|MEDIAN|SUM|COUNTA?|MINA?|MAXA?|STDEV[.A-Z]*|VAR[.A-Z]*)\({_CELL}:{_CELL}\)")
+_CELL_NAME = re.compile(r"[A-Z]\$?\d")
 
 
 class SheetCells(Walker):
@@ -69,6 +73,8 @@ class SheetCells(Walker):
             self._pronunciation = False
 
     def _put(self, cell: Cell) -> None:
+        if self._formula and cell.kind == "number" and sums_up(self._formula, self._row, self._column):
+            self._builder.summaries.add((self._row, self._column))
         self._builder.put(self._row, self._column, cell)
         if self._styles.struck_fonts and cell.text and self._styles.struck(whole(self._attributes.get("s"))):
             self._builder.struck.append(place_name(self._row, self._column))
@@ -118,6 +124,19 @@ class SheetCells(Walker):
         if number - number != 0:
             return Cell(shown_text(value), "error")
         return self._styles.cell(number, whole(self._attributes.get("s")))
+
+
+def sums_up(formula: str, row: int, column: int) -> bool:
+    """True for a formula that makes one figure (mean, scatter, sum …) of cells above it in its own column and no more.
+
+    >>> sums_up("STDEV.S(B2:B7)/AVERAGE(B2:B7)*100", 8, 1), sums_up("AVERAGE(B2:D2)", 1, 4), sums_up("B2*40", 2, 1)
+    (True, False, False)
+    """
+    ranges = _AGGREGATE.findall(formula[:_LONGEST_SUMMARY])
+    if not ranges or _CELL_NAME.search(_AGGREGATE.sub("", formula)):
+        return False
+    places = [(place_of(first), place_of(last)) for first, last in ranges]
+    return all(first and last and first[1] == last[1] == column and last[0] < row for first, last in places)
 
 
 def plain_text(text: str) -> str:
