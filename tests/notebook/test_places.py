@@ -4,6 +4,7 @@ import os
 import sqlite3
 import subprocess
 import sys
+import tempfile
 from contextlib import closing
 from pathlib import Path
 from threading import Thread
@@ -125,33 +126,34 @@ def test_a_place_that_is_no_folder_gets_a_sentence(tmp_path):
 
 
 @pytest.mark.skipif(os.name != "posix", reason="permissions of a folder are POSIX")
-def test_a_read_only_folder_gets_a_sentence(book, url):
+def test_a_read_only_folder_gets_a_sentence(analysis):
     """In a folder that cannot be written, opening or saving is a complaint, never another error.
 
     Root may write everywhere: the test then acts as another user in a child process.
     """
-    folder = Path(url.removeprefix("sqlite:///")).parent
-    book.close()
     code = (
         "import os, sys; import meanlab; from meanlab.notebook import Notebook\n"
         "found = meanlab.analyse(['5.02', '5.04', '4.98'], meanlab.Question('5'))\n"
         "if os.getuid() == 0: os.setgid(65534); os.setuid(65534)\n"
+        "print(len(open(f'{sys.argv[1]}/notebook.db', 'rb').read(15)))\n"
         "for name in ('notebook.db', 'new.db'):\n"
         "    try: Notebook(f'sqlite:///{sys.argv[1]}/{name}').add(found); print('written')\n"
         "    except meanlab.Complaint as complaint: print(complaint)\n"
     )
-    for parent in (folder, *folder.parents[:4]):
-        if os.stat(parent).st_uid == os.getuid() and parent != Path("/tmp"):
-            parent.chmod(0o555 if parent == folder else 0o755)
-    try:
+    with tempfile.TemporaryDirectory() as name:
+        folder = Path(name)
+        book = Notebook(f"sqlite:///{folder / 'notebook.db'}")
+        book.add(analysis)
+        book.close()
+        folder.chmod(0o555)
         done = subprocess.run(
-            [sys.executable, "-c", code, str(folder)], cwd=ROOT, capture_output=True, text=True, timeout=60, check=False
+            [sys.executable, "-c", code, name], cwd=ROOT, capture_output=True, text=True, timeout=60, check=False
         )
-    finally:
         folder.chmod(0o755)
     lines = done.stdout.splitlines()
-    assert len(lines) == 2, done.stderr
-    assert all("cannot be used" in line for line in lines)
+    assert lines[:1] == ["15"], done.stderr
+    assert len(lines) == 3, done.stderr
+    assert all("cannot be used" in line for line in lines[1:])
 
 
 def test_an_older_layout_is_migrated_with_a_copy_kept(older, analysis):
