@@ -2,7 +2,7 @@
 
 import re
 from collections import Counter
-from collections.abc import Callable, Hashable, Sequence
+from collections.abc import Callable, Hashable, Iterable, Sequence
 from dataclasses import dataclass, field, replace
 from itertools import compress
 from typing import Any
@@ -13,15 +13,13 @@ from meanlab.intake import sayings
 from meanlab.intake.characters import one_spelling
 from meanlab.intake.entry import Parsed, parse
 from meanlab.intake.found import Special
+from meanlab.intake.long_column import ODD_BY_COMMA, ODD_BY_POINT
 from meanlab.intake.numerals import FARTHEST, DecimalSign, Sign, decimal_sign, leaning, under
 from meanlab.intake.units import is_unit, same_unit
 from meanlab.intake.words import FLAGS
 
-_ODD_BY_POINT = re.compile(r"^(?![+-]?\d{1,20}(?:\.\d{0,19})?$)", re.ASCII | re.MULTILINE)
-_ODD_BY_COMMA = re.compile(r"^(?![+-]?\d{1,20}(?:,\d{0,19})?$)", re.ASCII | re.MULTILINE)
-_SURE_COMMA = re.compile(r",(?:\d{1,2}|\d{4,})?(?:\n|\Z)|(?<!\d)[+-]?0,", re.ASCII)
-_THREE_PLACES = re.compile(r"(?<!\d)[+-]?[1-9]\d{0,2}\.\d{3}(?:\n|\Z)", re.ASCII)
-_NOT_THREE_PLACES = re.compile(r"\.(?:\d{1,2}|\d{4,})?(?:\n|\Z)|(?<!\d)[+-]?0\.|\d{4}\.", re.ASCII)
+_SURE_COMMA = re.compile(r",(?!\d{3}$)|^[+-]?(?:0|\d{4,}),", re.ASCII | re.MULTILINE)
+_SURE_POINT = re.compile(r"\.(?!\d{3}$)|^[+-]?(?:0|\d{4,})\.", re.ASCII | re.MULTILINE)
 _OPEN_UNIT = re.compile(r"[^\W\d_][^\s()\d]{0,11}")
 _LOOKALIKE = {"O": "0", "o": "0", "l": "1", "I": "1", "S": "5", "B": "8"}
 _CODES = frozenset({"-9", "-99", "-999", "-9999", "-99999", "-999.9", "-999.99", "9999", "99999", "-999.0", "-9999.0"})
@@ -76,33 +74,24 @@ def _read_plain(given: Given) -> Read | None:
     if not text.isascii() or text.count("\n") != len(given.texts) - 1:
         return None
     sign: Sign
-    if not _ODD_BY_POINT.search(text):
+    if not ODD_BY_POINT.search(text):
         if given.hint == "," and "." in text:
             return None
-        if "." in text and not _NOT_THREE_PLACES.search(text) and _has_whole(given.texts):
-            return None
+        if 0 < text.count(".") < len(given.texts) and not _SURE_POINT.search(text):
+            return None  # 1.234 beside 987: perhaps thousands marks
         sign, numbers = ("." if "." in text or given.hint is None else given.hint), list(given.texts)
-    elif _SURE_COMMA.search(text) and not _ODD_BY_COMMA.search(text):
+    elif _SURE_COMMA.search(text) and not ODD_BY_COMMA.search(text):
         sign, numbers = ",", text.replace(",", ".").split("\n")
     else:
         return None
-    found = Read(numbers, sign=_plain_sign(text, sign), unit=given.heading_unit)
+    found = Read(numbers, sign=_plain_sign(given.texts, sign), unit=given.heading_unit)
     found.warnings.extend(_codes_among(given, Counter(numbers) if "9" in text else {}))
     return found
 
 
-def _plain_sign(text: str, sign: Sign) -> DecimalSign:
-    sure = _SURE_COMMA if sign == "," else _NOT_THREE_PLACES
-    found = sure.search(text)
-    if not found:
-        return DecimalSign(sign)
-    start, end = text.rfind("\n", 0, found.end() - 1) + 1, text.find("\n", found.start())
-    sample = text[start : end if end > start else None].strip()
-    return DecimalSign(sign, f'decimal {"comma" if sign == "," else "point"}: "{sample}" cannot be read otherwise')
-
-
-def _has_whole(texts: Sequence[str]) -> bool:
-    return any("." not in text for text in texts)
+def _plain_sign(texts: Sequence[str], sign: Sign) -> DecimalSign:
+    sure = next((text for text in texts[:1000] if leaning(text.lstrip("+-")) == sign), "")
+    return DecimalSign(sign, f'decimal {"comma" if sign == "," else "point"}: "{sure}" cannot be read otherwise' if sure else "")
 
 
 def _read_any(given: Given) -> Read:
@@ -121,7 +110,7 @@ def _read_any(given: Given) -> Read:
     each = _qualified([known[key] for key in keys], given)
     _collect(found, each, [numbers[key] for key in keys], given)
     found.refusal = _units(found, each, given) or _bullets(each)
-    _remark(found, each, given)
+    _remark(found, each, given, known.values())
     return found
 
 
@@ -239,9 +228,7 @@ def _collect(found: Read, each: list[Parsed], numbers: list[str | None], given: 
         one, number = each[i], numbers[i] or ""
         limit = sayings.as_written(number, found.sign.sign)
         found.special[i] = Special(one.kind, number, sayings.role(one, limit))
-    found.computed = bool(given.computed) or any(
-        len(number) > 12 and looks_computed(exact(number)) for number in found.numbers
-    )
+    found.computed = bool(given.computed) or any(looks_computed(exact(number)) for number in found.numbers if len(number) > 12)
 
 
 def _units(found: Read, each: list[Parsed], given: Given) -> str:
@@ -259,8 +246,8 @@ def _units(found: Read, each: list[Parsed], given: Given) -> str:
     if odd:
         return sayings.unit_clash(given, first[units[0]], units[0], first[odd], odd)
     found.unit = units[0] if units else None
-    without = [i for i, one in enumerate(each) if one.numeral and not one.unit and one.kind == "reading"]
-    if units and without:
+    without = [i for i, one in enumerate(each) if one.kind == "reading" and not one.unit] if units else []
+    if without:
         found.warnings.append(sayings.some_without_unit(given, without, units[0]))
     return ""
 
@@ -275,7 +262,7 @@ def _bullets(each: list[Parsed]) -> str:
     return ""
 
 
-def _remark(found: Read, each: list[Parsed], given: Given) -> None:
+def _remark(found: Read, each: list[Parsed], given: Given, known: Iterable[Parsed]) -> None:
     """Say everything the technician must see about single entries."""
     groups: dict[str, list[int]] = {}
     for i in found.special:
@@ -289,7 +276,8 @@ def _remark(found: Read, each: list[Parsed], given: Given) -> None:
         found.warnings.append(sayings.mixed_signs(given, each, found.sign.sign))
     if found.sign.thousands:
         found.warnings.append(sayings.thousands(given, each, found.sign.sign))
-    found.warnings.extend(sayings.blank_groups(given, each))
+    if any(" " in one.numeral for one in known):
+        found.warnings.extend(sayings.blank_groups(given, each))
     found.warnings.extend(_codes_among(given, Counter(found.numbers)))
 
 

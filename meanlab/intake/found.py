@@ -7,7 +7,7 @@ from functools import cached_property
 from typing import Any, Literal, overload
 
 from meanlab.core.complaints import IntakeComplaint
-from meanlab.core.numbers import exact, finest_places, looks_computed
+from meanlab.core.numbers import exact, looks_computed, places
 from meanlab.core.readings import Censored, ReadingSet
 
 Kind = Literal["reading", "below", "above", "missing", "unread"]
@@ -143,8 +143,10 @@ class Intake:
     @cached_property
     def decimals(self) -> int | None:
         """The finest resolution as written; None without readings or with computed numbers alone."""
-        written = [value for value in self.exact_values if not (self.computed and looks_computed(value))]
-        return finest_places(written) if written else None
+        distinct = set(self.numbers)
+        if self.computed:
+            distinct = {number for number in distinct if not (len(number) > 12 and looks_computed(Decimal(number)))}
+        return max(0, *map(_places, distinct)) if distinct else None
 
     def count(self, kind: Kind) -> int:
         """Return how many entries that are no plain number are of one kind."""
@@ -213,6 +215,10 @@ class Intake:
             "needs_choice": self.needs_choice,
             "choices": [dict(choice) for choice in self.choices],
         }
+
+
+def _places(number: str) -> int:
+    return places(Decimal(number)) if "E" in number else len(number.partition(".")[2])
 
 
 @dataclass(frozen=True)

@@ -11,11 +11,12 @@ from typing import Any
 from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.characters import one_spelling
 from meanlab.intake.labels import Labelled, common_style, take_apart
+from meanlab.intake.long_column import long_column
 from meanlab.intake.table import Table, parsed, sort_of_text
 from meanlab.intake.units import is_qualified_unit
 from meanlab.intake.words import ERROR_CELLS, is_summary, plain_word
 
-_LINE_END = re.compile(r"\r\n|[\n\r\x0b\x0c\x1c-\x1e\x85\u2028\u2029]")
+_LINE_END = re.compile(r"[\n\r\x0b\x0c\x1c-\x1e\x85\u2028\u2029]")
 _COMMENT = re.compile(r"(?:#(?!\d)|//|;\s|!\s|%\s|--\s[A-Za-z])")
 _LIST_HASH = re.compile(r"#\s?\d{1,6}[.):]?\s+\S")
 _RULER = re.compile(r"[\s|:+=_-]{5,}|(?:[-=_]{2,}[\s|+]+)+[-=_]{2,}|[|+][-=_:|+\s]+[|+]")
@@ -48,6 +49,9 @@ def table_of(text: str, decimal: str | None = None) -> Table:
 
     Raises IntakeComplaint for a text that is no table of entries, ChoiceNeeded where its commas have two meanings.
     """
+    column = long_column(text)
+    if column is not None:
+        return Table(column, range(1, len(column) + 1))
     if '"' in text:
         quoted = _quoted(text)
         if quoted is not None:
@@ -79,6 +83,7 @@ def _stripped(cells: list[str]) -> list[str]:
 
 def split_lines(text: str) -> list[str]:
     """Return the lines of a text, whatever ends them."""
+    text = text.replace("\r\n", "\n")
     if "\r" not in text and text.isascii() and "\x0b" not in text and "\x0c" not in text and "\x1c" not in text:
         return text.split("\n")
     return _LINE_END.split(text)

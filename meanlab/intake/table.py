@@ -8,6 +8,7 @@ from meanlab.intake.characters import one_spelling
 from meanlab.intake.entry import Parsed, parse
 from meanlab.intake.grid import Sheet
 from meanlab.intake.heading import Heading, heading_of
+from meanlab.intake.long_column import OneColumn
 from meanlab.intake.numerals import leaning
 from meanlab.intake.units import is_unit
 from meanlab.intake.words import is_summary
@@ -243,16 +244,18 @@ def _is_counted(table: Table, row: int, sorts: list[str]) -> bool:
 
 def _block(table: Table, above: list[int], start: int, end: int) -> Block:
     heading, units, group = _heading_rows(table, above)
-    again, summaries, data = [], [], []
-    heading_cells = list(table.rows[heading]) if heading is not None else None
     rows = table.rows
+    if isinstance(rows, OneColumn) and rows.plain_from <= start and end == len(rows):
+        return Block(table, heading, units, group, range(start, end))
+    again, summaries, data = [], [], []
+    heading_cells = list(rows[heading]) if heading is not None else None
     for row in range(start, end):
         cells = rows[row]
-        if not any(cells):
+        if not cells or not any(cells):
             continue
         if cells == heading_cells:
             again.append(row)
-        elif _is_summary_row(cells):
+        elif len(cells) > 1 and _is_summary_row(cells):
             summaries.append(row)
         else:
             data.append(row)
@@ -274,5 +277,5 @@ def _heading_rows(table: Table, above: list[int]) -> tuple[int | None, int | Non
 
 def _is_summary_row(cells: Sequence[str]) -> bool:
     """Tell whether a row holds computed figures: its first filled cell is a word such as "Mean"."""
-    first = next(filter(None, cells), "")
-    return first[0].isalpha() and len(first) <= 40 and is_summary(first) if first and len(cells) > 1 else False
+    first = cells[0] or next(filter(None, cells))
+    return not first[0].isdigit() and len(first) <= 40 and is_summary(first)

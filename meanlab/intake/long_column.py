@@ -1,0 +1,61 @@
+"""A long text with nothing but one number a line: it is kept as it is, without a cell object for each number."""
+
+import re
+from collections.abc import Sequence
+from typing import overload
+
+SHORTEST = 20_000  # characters
+MOST_HEADING_LINES = 20
+
+# Neither takes steps back, so that a text of any length is searched once.
+ODD_BY_POINT = re.compile(r"^(?![+-]?\d{1,20}(?:\.\d{0,19})?$)", re.ASCII | re.MULTILINE)
+ODD_BY_COMMA = re.compile(r"^(?![+-]?\d{1,20}(?:,\d{0,19})?$)", re.ASCII | re.MULTILINE)
+
+
+class OneColumn(Sequence[Sequence[str]]):
+    """Rows of one cell each, from the row ``plain_from`` on all plain numbers; a row is made when it is looked at."""
+
+    def __init__(self, texts: list[str], plain_from: int) -> None:
+        self.texts, self.plain_from = texts, plain_from
+
+    def __len__(self) -> int:
+        return len(self.texts)
+
+    @overload
+    def __getitem__(self, where: int) -> Sequence[str]: ...
+    @overload
+    def __getitem__(self, where: slice) -> Sequence[Sequence[str]]: ...
+    def __getitem__(self, where: int | slice) -> Sequence[str] | Sequence[Sequence[str]]:
+        if isinstance(where, slice):
+            return [[text] if text else [] for text in self.texts[where]]
+        return [self.texts[where]] if self.texts[where] else []
+
+
+def long_column(text: str) -> OneColumn | None:
+    """Return a long text of plain numbers, perhaps under a few lines of heading, as one column; None for any other.
+
+    >>> long_column("5.02\\n5.04") is None, len(long_column("Nitrate\\n" + "5.02\\n" * 9000))
+    (True, 9001)
+    """
+    if len(text) < SHORTEST:
+        return None
+    text = text.replace("\r\n", "\n").rstrip("\n")
+    start, line = 0, 0
+    while line < MOST_HEADING_LINES and _is_odd(text, start):
+        end = text.find("\n", start)
+        if end < 0:
+            return None
+        start, line = end + 1, line + 1
+    for odd in (ODD_BY_POINT, ODD_BY_COMMA):
+        if not odd.search(text, start):
+            head = [heading.strip() for heading in text[:start].split("\n")[:-1]] if start else []
+            if any(mark in heading for heading in head for mark in ('"', "\t", ";", ",", "#", "//")):
+                return None
+            return OneColumn([*head, *text[start:].split("\n")], line)
+    return None
+
+
+def _is_odd(text: str, start: int) -> bool:
+    end = text.find("\n", start)
+    line = text[start : end if end >= 0 else None]
+    return bool(ODD_BY_POINT.match(line) and ODD_BY_COMMA.match(line))
