@@ -6,6 +6,7 @@ from typing import Any
 
 import streamlit as st
 
+from meanlab.core.complaints import Complaint
 from meanlab.intake import Column
 from meanlab.page import cache, state
 
@@ -33,15 +34,26 @@ def draw() -> None:
         return
     if now.file is not None:
         st.html(f'<p class="ml-counts">From <b>{html.escape(now.file["name"])}</b></p>')
-    columns = [column for column in cache.columns(found.content, found.filename) if column.role not in NO_CHOICE]
+    columns = _columns(found)
     if columns:
         _pickers(columns)
+
+
+def _columns(found: cache.Source) -> list[Column]:
+    """Return what can be chosen; a source that cannot be opened has said so beside the readings."""
+    try:
+        return [column for column in cache.columns(found.content, found.filename) if column.role not in NO_CHOICE]
+    except Complaint:
+        return []
 
 
 def _pickers(columns: Sequence[Column]) -> None:
     sheets = list(dict.fromkeys(column.sheet for column in columns))
     _forget_unless("sheet", sheets)
     if len(sheets) > 1:
+        with_readings = {column.sheet for column in columns if column.role == "readings"}
+        if state.value("sheet") is None and len(with_readings) == 1:
+            state.put("sheet", with_readings.pop())
         st.selectbox("Sheet", sheets, index=None, key="sheet", placeholder=f"{len(sheets)} sheets: choose one")
     sheet = state.widget("sheet") if len(sheets) > 1 else None
     here = {column.column_index: column for column in columns if sheet is None or column.sheet == sheet}

@@ -19,7 +19,7 @@ from statistics import median
 ROOT = Path(__file__).resolve().parents[2]
 sys.path[:0] = [str(ROOT), str(ROOT / "tests" / "page")]
 
-from conftest import QUIET, Server, _browser_path, _free_port, paste  # noqa: E402
+from driving import QUIET, Server, browser_path, free_port, paste  # noqa: E402
 from playwright.sync_api import Page, sync_playwright  # noqa: E402
 
 EDITS = 15
@@ -40,7 +40,7 @@ def main() -> int:
     """Measure, print, and return 1 where a goal is missed."""
     rng = random.Random(20261201)
     with tempfile.TemporaryDirectory() as name, sync_playwright() as playwright:
-        browser = playwright.chromium.launch(executable_path=_browser_path(), args=QUIET)
+        browser = playwright.chromium.launch(executable_path=browser_path(), args=QUIET)
         folder = Path(name)
         bare, ours = _bare(folder), Server(folder)
         ours.start()
@@ -87,7 +87,7 @@ def _with_readings(browser, url: str, rng: random.Random, count: int) -> Page:
 
 
 def _bare(folder: Path) -> tuple[subprocess.Popen[bytes], str]:
-    script, port = folder / "bare.py", _free_port()
+    script, port = folder / "bare.py", free_port()
     script.write_text(BARE, encoding="utf-8")
     command = [sys.executable, "-m", "streamlit", "run", str(script), "--server.port", str(port)]
     quiet = ["--server.headless=true", "--server.address=localhost", "--browser.gatherUsageStats=false"]

@@ -79,11 +79,10 @@ def test_what_cannot_be_tested_gets_a_sentence(readings, target, expected):
 
 
 def test_the_side_follows_a_limit():
-    """An upper limit is asked for its excess, a lower one for what falls below, and it is said."""
+    """An upper limit is asked for its excess, a lower one for what falls below, anything else either way."""
     page = typed(opened(), "5.02\n5.03\n5.04", "5.00")
     page.selectbox(key="target_kind").set_value("upper limit").run()
     assert page.selectbox(key="alternative").value == "greater"
-    assert "upper limit" in page.selectbox(key="alternative").label
     page.selectbox(key="target_kind").set_value("lower limit").run()
     assert page.selectbox(key="alternative").value == "less"
     page.selectbox(key="target_kind").set_value("nominal value").run()
