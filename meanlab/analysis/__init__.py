@@ -178,4 +178,4 @@ def _other_readings(
         return None
     other = decide(kept, question)
     draft = Without(label, entries, other.test, other.verdict, "")
-    return replace(draft, sentence=with_without_sentence(draft))
+    return replace(draft, sentence=with_without_sentence(draft, question, given.decimal_sign))

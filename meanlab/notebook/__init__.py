@@ -3,7 +3,7 @@
 from meanlab.notebook.entry import Entry, Listed
 from meanlab.notebook.notebook import Notebook
 from meanlab.notebook.recomputing import Changed, recompute
-from meanlab.notebook.source import Source, SourceEntry, source_of
+from meanlab.core.source import Source, SourceEntry, source_of
 from meanlab.notebook.working_state import Kept, WorkingStates
 
 __all__ = [

@@ -1,7 +1,7 @@
 """An entry of the notebook as frozen facts, the one text its digest is taken of, and the way back from it."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field, replace
+from dataclasses import dataclass, field, fields, replace
 from hashlib import sha256
 from typing import Any
 
@@ -10,7 +10,8 @@ from meanlab.core.exact_values import canonical, exact_values, rebuilt
 from meanlab.core.plain import Facts
 from meanlab.core.record_file import strict_json
 from meanlab.core.results import Analysis
-from meanlab.notebook.source import Source
+from meanlab.core.source import Source
+from meanlab.core.written import Written
 
 FORMAT = 1
 
@@ -23,7 +24,7 @@ class Entry(Facts):
     key         the name by which it is opened; nobody can guess it
     time, zone  when it was saved: UTC (ISO 8601), and the time zone of the bench
     title, by, note, instrument, method   what the technician wrote about it
-    amends      key of the entry that it amends, "" for none; ``reason`` says why
+    amends, amends_number   key and number of the entry that it amends, "" and None for none; ``reason`` says why
     source      where the readings came from, as typed
     set_times   {part of the question: when it was set, UTC (ISO 8601)}
     analysis    everything that was found, with readings, question, versions and fingerprint
@@ -46,7 +47,13 @@ class Entry(Facts):
     analysis: Analysis
     previous: str
     set_times: Mapping[str, str] = field(default_factory=dict)
+    amends_number: int | None = None
     digest: str = ""
+
+    @property
+    def written(self) -> Written:
+        """What stands on a record of this entry beside the result."""
+        return Written(**{one.name: getattr(self, one.name) for one in fields(Written)})
 
     @property
     def content(self) -> bytes:

@@ -19,7 +19,7 @@ from meanlab.notebook.files import copy, entries_of_file, file_of, fill, save
 from meanlab.notebook.integrity import problems
 from meanlab.notebook.listing import EntryList, extent_of, line_values, listed, matching
 from meanlab.notebook.schema import ENTRY, ENTRY_CONTENT, LAST_ENTRY
-from meanlab.notebook.source import Source, entries_of
+from meanlab.core.source import Source, entries_of
 
 KEY_BYTES = 24
 
@@ -76,13 +76,14 @@ class Notebook(Database):
         if not reason.strip():
             raise NotebookComplaint("An amendment needs its reason: write why the entry is amended.", "reason")
         before = self.entry(key)
-        written = {
+        written: dict[str, Any] = {
             "title": before.title if title is None else title,
             "by": by,
             "note": note,
             "instrument": before.instrument if instrument is None else instrument,
             "method": before.method if method is None else method,
             "amends": before.key,
+            "amends_number": before.number,
             "reason": reason.strip(),
         }
         return self._append(analysis, written, source, set_times, zone)
@@ -176,7 +177,7 @@ class Notebook(Database):
     def _append(
         self,
         analysis: Analysis,
-        written: Mapping[str, str],
+        written: Mapping[str, Any],
         source: Source | None,
         set_times: Mapping[str, str] | None,
         zone: str,

@@ -1,0 +1,181 @@
+"""The written record of a result as DOCX: text and tables to edit, the pictures, everything that was looked at.
+
+The same result gives the same bytes: the moment of writing is nowhere in the file.
+"""
+
+import re
+import zipfile
+from datetime import UTC, datetime
+from io import BytesIO
+from typing import Any
+
+import docx
+from docx.document import Document
+from docx.enum.table import WD_TABLE_ALIGNMENT
+from docx.oxml import OxmlElement
+from docx.oxml.ns import qn
+from docx.shared import Mm, Pt, RGBColor
+from docx.text.paragraph import Paragraph
+
+from meanlab.core.results import Analysis
+from meanlab.core.source import Source, entries_of
+from meanlab.core.written import Written
+from meanlab.pictures import Drawing, readings_picture, sampling_distribution
+from meanlab.pictures.for_paper import png
+from meanlab.records.account import Part, account
+from meanlab.wording import panel_texts
+from meanlab.wording.names import short_noun
+
+FONT = "Arial"
+TEXT, SMALL, HEADING, TITLE = Pt(10), Pt(9), Pt(12), Pt(16)
+PAGE, MARGIN = (Mm(210), Mm(297)), Mm(20)
+WIDTH = Mm(170)
+PICTURE = (660.0, 200.0, 150.0)  # pixels: width, height of the distribution and of the readings
+NO_MOMENT = (1980, 1, 1, 0, 0, 0)
+NO_SIGN = "□"
+# What XML 1.0 cannot hold, and signs that turn the direction of the text around them.
+_NOT_PRINTED = re.compile("[^\t\n\u0020-\u2029\u202f-\u2065\u206a-\ud7ff\ue000-\ufffd\U00010000-\U0010ffff]")
+
+
+def document(analysis: Analysis, source: Source | None = None, written: Written | None = None) -> bytes:
+    """Return the written record of a result as DOCX.
+
+    ``source`` says where the readings came from (by default the readings as typed), ``written`` what the technician
+    wrote and under which number it is kept.
+    """
+    source = source or Source(entries=entries_of(analysis.readings))
+    written = written or Written()
+    texts = panel_texts(analysis)
+    page = _empty_page()
+    _write(page, texts.title, TITLE, bold=True)
+    _write(page, texts.verdict_word, HEADING, bold=True)
+    _write(page, texts.sentence)
+    for drawing in pictures(analysis):
+        _draw(page, drawing)
+    for part in account(analysis, texts, source, written):
+        _part(page, part)
+    _foot(page, texts.origin)
+    _describe(page, analysis, texts.title, written)
+    content = BytesIO()
+    page.save(content)
+    return _without_moment(content.getvalue())
+
+
+def pictures(analysis: Analysis) -> tuple[Drawing, ...]:
+    """Return the pictures of the record: the distribution with the statistic, and the readings with their interval."""
+    width, upper, lower = PICTURE
+    below = readings_picture(analysis, width, lower)
+    if analysis.test is None:
+        return (below,)
+    noun = short_noun(analysis.question.target_kind)
+    return sampling_distribution(analysis.test, analysis.readings.decimal_sign, noun, width, upper), below
+
+
+def printed(text: str) -> str:
+    """Return a text that any reader of DOCX can show: a box stands for a sign without a form of its own.
+
+    >>> printed("pH\\x07 7")
+    'pH□ 7'
+    """
+    return _NOT_PRINTED.sub(NO_SIGN, text.replace("\r\n", "\n").replace("\r", "\n"))
+
+
+def _empty_page() -> Document:
+    page = docx.Document()
+    section = page.sections[0]
+    section.page_width, section.page_height = PAGE
+    section.left_margin = section.right_margin = section.top_margin = section.bottom_margin = MARGIN
+    for name, size in (("Normal", TEXT), ("Heading 1", HEADING), ("List Bullet", TEXT)):
+        style = page.styles[name]
+        style.font.name, style.font.size, style.font.color.rgb = FONT, size, RGBColor(0, 0, 0)
+        fonts = style.element.get_or_add_rPr().get_or_add_rFonts()
+        for kind in list(fonts.attrib):
+            del fonts.attrib[kind]
+        for kind in ("ascii", "hAnsi", "cs", "eastAsia"):
+            fonts.set(qn(f"w:{kind}"), FONT)
+    page.styles["Normal"].paragraph_format.space_after = Pt(4)
+    page.styles["Heading 1"].paragraph_format.space_before = Pt(12)
+    return page
+
+
+def _write(page: Document, text: str, size: Any = TEXT, bold: bool = False, style: str | None = None) -> Paragraph:
+    paragraph = page.add_paragraph(style=style)
+    run = paragraph.add_run(printed(text))
+    run.font.size, run.bold = size, bold
+    return paragraph
+
+
+def _part(page: Document, part: Part) -> None:
+    page.add_heading(printed(part.heading), level=1)
+    if part.rows:
+        _table(page, part)
+    for sentence in part.sentences:
+        if sentence:
+            _write(page, sentence, style="List Bullet" if part.listed and len(part.sentences) > 1 else None)
+
+
+def _table(page: Document, part: Part) -> None:
+    rows = [part.columns, *part.rows] if part.columns else list(part.rows)
+    table = page.add_table(rows=len(rows), cols=len(rows[0]))
+    table.alignment = WD_TABLE_ALIGNMENT.LEFT
+    _lines_between(table)
+    for place, (row, texts) in enumerate(zip(table.rows, rows, strict=True)):
+        properties = row._tr.get_or_add_trPr()
+        properties.append(OxmlElement("w:cantSplit"))
+        head = bool(part.columns) and place == 0
+        if head:
+            properties.append(OxmlElement("w:tblHeader"))
+        for column, (cell, text) in enumerate(zip(row.cells, texts, strict=True)):
+            paragraph = cell.paragraphs[0]
+            paragraph.paragraph_format.space_after = Pt(1)
+            run = paragraph.add_run(printed(text))
+            run.font.size, run.bold = SMALL, head or (not part.columns and column == 0)
+    page.add_paragraph().paragraph_format.space_after = Pt(0)
+
+
+def _lines_between(table: Any) -> None:
+    """Rules between rows only; columns as wide as their text asks for."""
+    table.autofit = True
+    borders = OxmlElement("w:tblBorders")
+    for side in ("top", "bottom", "insideH"):
+        line = OxmlElement(f"w:{side}")
+        for name, value in (("val", "single"), ("sz", "4"), ("space", "0"), ("color", "BBBBBB")):
+            line.set(qn(f"w:{name}"), value)
+        borders.append(line)
+    table._tbl.tblPr.append(borders)
+
+
+def _draw(page: Document, drawing: Drawing) -> None:
+    shape = page.add_picture(BytesIO(png(drawing)), width=WIDTH)
+    shape._inline.docPr.set("descr", printed(drawing.alt))
+
+
+def _foot(page: Document, origin: str) -> None:
+    paragraph = page.sections[0].footer.paragraphs[0]
+    run = paragraph.add_run(printed(f"{origin} · page "))
+    run.font.size = SMALL
+    field = OxmlElement("w:fldSimple")
+    field.set(qn("w:instr"), "PAGE")
+    paragraph._p.append(field)
+
+
+def _describe(page: Document, analysis: Analysis, title: str, written: Written) -> None:
+    facts = page.core_properties
+    try:
+        moment = datetime.fromisoformat(written.time or analysis.provenance.time).astimezone(UTC).replace(tzinfo=None)
+    except ValueError:
+        moment = datetime(*NO_MOMENT)
+    facts.author, facts.title, facts.last_modified_by = printed(written.by)[:255], printed(title)[:255], ""
+    facts.created = facts.modified = moment.replace(microsecond=0)
+    facts.comments, facts.language = "", "en"
+
+
+def _without_moment(content: bytes) -> bytes:
+    """Pack the parts again without the moment at which they were packed."""
+    packed = BytesIO()
+    with zipfile.ZipFile(BytesIO(content)) as parts, zipfile.ZipFile(packed, "w", zipfile.ZIP_DEFLATED) as again:
+        for part in parts.infolist():
+            fixed = zipfile.ZipInfo(part.filename, NO_MOMENT)
+            fixed.compress_type, fixed.external_attr = zipfile.ZIP_DEFLATED, 0o600 << 16
+            again.writestr(fixed, parts.read(part))
+    return packed.getvalue()
