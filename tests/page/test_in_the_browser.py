@@ -131,7 +131,7 @@ def test_upload_choose_read_refresh(page, workbook, twelve):
 
 
 def choose(page: Page, key: str, text: re.Pattern[str]) -> None:
-    page.locator(f".st-key-{key} [data-baseweb=select]").click()
+    page.locator(f".st-key-{key} input").click()
     page.get_by_role("option").filter(has_text=text).first.click()
 
 
