@@ -90,16 +90,24 @@ def far_places(x: np.ndarray) -> list[int]:
     n = len(x)
     most = 1 if n < FEWEST_FOR_SEVERAL else min(MOST_FAR, n // SHARE_FAR)
     critical = esd_critical(n, most, CHECK_LEVEL / 2)
-    left, taken, found = np.arange(n), [], 0
+    order = np.argsort(x, kind="stable")
+    ordered, first, last = x[order], 0, n - 1  # the farthest is always the first or the last of those left
+    taken: list[int] = []
+    found = 0
     for bound in critical:
-        away = distances(x[left])
-        farthest = int(np.argmax(away))
-        taken.append(int(left[farthest]))
-        if away[farthest] > bound:
-            found = len(taken)
-        left = np.delete(left, farthest)
-        if np.ptp(x[left]) == 0:
+        if ordered[first] == ordered[last]:
             break
+        part = ordered[first : last + 1]
+        away = part - part.mean()
+        s = sqrt(float(away @ away) / (len(part) - 1))
+        if -away[0] > away[-1]:
+            taken.append(int(order[first]))
+            distance, first = -away[0], first + 1
+        else:
+            taken.append(int(order[last]))
+            distance, last = away[-1], last - 1
+        if distance > bound * s:
+            found = len(taken)
     return taken[:found]
 
 
@@ -137,10 +145,9 @@ def _says_far(far: Sequence[int], G: float, p: float, facts: Facts) -> str:
     )
     listed = _listed(far, facts)
     verb, it = ("lies", "it stays") if len(far) == 1 else ("lie", "they stay")
-    cause = "their causes are" if len(far) > 1 else "its cause is"
     return (
-        f"{listed} {verb} far from the others (G = {facts.text(G)}; {by}): {it} in unless {cause} found and written "
-        "down, and leaving out what looks far, without one, makes false alarms."
+        f"{listed} {verb} far from the others (G = {facts.text(G)}; {by}): {it} in unless a cause is found and "
+        "written down; leaving out what only looks far raises the risk of a false alarm."
     )
 
 

@@ -63,7 +63,7 @@ def _judged(p: float | None, second: float | None, facts: Facts) -> tuple[Outcom
     if p <= CHECK_LEVEL:
         return "caution", (
             "these readings do not look normal; the check does not tell a skewed shape, heavy tails and one far "
-            "reading apart, the plot beside it does so better"
+            "reading apart, the normal probability plot does so better"
         )
     if second is not None and second <= CHECK_LEVEL:
         return "note", f"the two opinions differ, so the shape is in doubt; {_worth(facts)}"

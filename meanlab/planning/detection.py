@@ -103,9 +103,9 @@ def _never(difference: float) -> float:
 def _by_side(alternative: str, upper: Callable[[float, bool], float]) -> Callable[[float], float]:
     """Return the power from that of the upper tail; ``upper(difference, True)`` is the tail that counts most."""
     if alternative == "greater":
-        return lambda difference: upper(difference, True)
+        return lambda difference: min(1.0, upper(difference, True))
     if alternative == "less":
-        return lambda difference: upper(-difference, True)
+        return lambda difference: min(1.0, upper(-difference, True))
     return lambda difference: min(1.0, upper(abs(difference), True) + upper(-abs(difference), False))
 
 

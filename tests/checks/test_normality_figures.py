@@ -172,3 +172,14 @@ def test_band_of_the_probability_plot_is_the_law_of_order_statistics():
     assert np.all(plot.readings == np.sort(x))
     assert np.all((plot.low < plot.line) & (plot.line < plot.high))
     assert plot.quantiles == pytest.approx(stats.norm.ppf((place - 0.375) / (len(x) + 0.25)), rel=1e-12)
+
+
+def test_band_of_very_many_readings_is_interpolated_closely():
+    """Above 2,000 readings the band is interpolated, to four decimals of a standard deviation everywhere."""
+    n = 5000
+    plot = probability_plot(np.random.default_rng(1).normal(size=n))
+    mean, s = np.mean(plot.readings), np.std(plot.readings, ddof=1)
+    place = np.concatenate([np.arange(1, 3), np.arange(400, n, 97)])
+    for tail, band in ((0.025, plot.low), (0.975, plot.high)):
+        expected = stats.norm.ppf(stats.beta.ppf(tail, place, n + 1 - place))
+        assert (band[place - 1] - mean) / s == pytest.approx(expected, abs=1e-4)
