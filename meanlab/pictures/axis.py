@@ -10,6 +10,8 @@ from meanlab.wording.numbers import decimal_text
 
 MOST_MARKS = 8
 GAP = 14.0
+EDGE = 1.0
+TITLE_ABOVE = 18.0
 TICK = 4.0
 _CONTEXT = Context(prec=60)
 
@@ -56,7 +58,7 @@ def round_marks(low: float, high: float, most: int, sign: str = ".") -> tuple[Ma
             break
         step = _next_step(step)
     exponent = step.normalize().as_tuple().exponent
-    places = max(0, -int(exponent))
+    places = -int(exponent)
     values = [(first + i) * step for i in range(count)]
     return tuple(Marked(float(value), decimal_text(value, places, sign)) for value in values)
 
@@ -85,7 +87,7 @@ def marks_that_fit(scale: Scale, sign: str, right: float, size: float = WORDS) -
 
 def _text_of(mark: Marked, scale: Scale, y: float, right: float, size: float) -> Words:
     """Return the text of a mark below its place, moved inwards where it would leave the area."""
-    half = width_of(mark.text, size) / 2
+    half = width_of(mark.text, size) / 2 + EDGE
     return Words(max(half, min(scale.px(mark.value), right - half)), y, mark.text, size=size)
 
 
@@ -106,7 +108,7 @@ def below(scale: Scale, y: float, title: str, sign: str, size: float = WORDS, wi
     return Drawing(right, y + TICK + 34, tuple(strokes), words=tuple(words))
 
 
-def upright(scale: Scale, x: float, title: str, sign: str, right: float, above: float = WORDS) -> Drawing:
+def upright(scale: Scale, x: float, title: str, sign: str, right: float, above: float = TITLE_ABOVE) -> Drawing:
     """Return an upright axis at pixel x with round values left of it, its title above it and faint guides to ``right``.
 
     The texts of the values need `widest` pixels left of x; the title stands ``above`` pixels over the upper end.

@@ -9,7 +9,7 @@ from meanlab.wording.names import counted, short_noun, unit_of
 
 WIDTH, HEIGHT = 560.0, 250.0
 TOP, SIDE, ROOM_BELOW = 46.0, 14.0, 40.0
-MATTERS = 28.0
+MATTERS = 36.0
 KINDS = {"approximate": " (approximate)", "upper bound": " (at least)"}
 
 

@@ -7,6 +7,7 @@ from meanlab.pictures.drawing import Words
 from meanlab.pictures.measure import Box, crossed
 
 APART = 3.0
+EDGE = 1.0
 
 
 @dataclass
@@ -46,6 +47,6 @@ def around(text: str, xs: Sequence[float], ys: Sequence[float]) -> Iterable[Word
 
 def kept_inside(words: Words, width: float) -> Words:
     """Return a centred label moved sideways so far that it lies between 0 and ``width``."""
-    half = (words.box.right - words.box.left) / 2
+    half = (words.box.right - words.box.left) / 2 + EDGE
     x = min(max(words.x, half), width - half) if 2 * half <= width else width / 2
     return Words(x, words.y, words.text, "middle", words.size, words.bold, words.grey)

@@ -240,7 +240,7 @@ def _left_out(entries: Entries, frame: Frame, obstacles: Obstacles, y: float) ->
     for mark in marks:
         obstacles.boxes.append(Box(mark.x - 5, y - 5, mark.x + 5, y + 5))
     xs = sorted(mark.x for mark in marks)
-    found = obstacles.place((Words(xs[0] - 8, y, "left out", "right"), Words(xs[-1] + 8, y, "left out", "left")))
+    found = obstacles.place((Words(xs[0] - 10, y, "left out", "right"), Words(xs[-1] + 10, y, "left out", "left")))
     return Drawing(frame.width, frame.base, marks=tuple(marks), words=(found,) if found else ())
 
 
@@ -254,7 +254,7 @@ def _at_limits(entries: Entries, frame: Frame, obstacles: Obstacles, y: float) -
         strokes += [line(x, y, tip, y), line(x, y - 5, x, y + 5)]
         marks.append(Mark(tip, y, "left" if below_it else "right", 8, group.words))
         obstacles.boxes.append(Box(min(x, tip) - 5, y - 6, max(x, tip) + 5, y + 6))
-        sides = (Words(max(x, tip) + 7, y, group.words, "left"), Words(min(x, tip) - 7, y, group.words, "right"))
+        sides = (Words(max(x, tip) + 10, y, group.words, "left"), Words(min(x, tip) - 10, y, group.words, "right"))
         found = obstacles.place(sides if below_it else sides[::-1])
         words += [found] if found else []
     return Drawing(frame.width, frame.base, tuple(strokes), marks=tuple(marks), words=tuple(words))
