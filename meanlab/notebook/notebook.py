@@ -12,6 +12,7 @@ from sqlalchemy.exc import SQLAlchemyError
 
 from meanlab.core.complaints import NotebookComplaint
 from meanlab.core.results import Analysis
+from meanlab.core.source import Source, entries_of
 from meanlab.notebook.database import Database
 from meanlab.notebook.defaults import bench_defaults, remember
 from meanlab.notebook.entry import Entry, Listed, entry_from
@@ -19,7 +20,6 @@ from meanlab.notebook.files import copy, entries_of_file, file_of, fill, save
 from meanlab.notebook.integrity import problems
 from meanlab.notebook.listing import EntryList, extent_of, line_values, listed, matching
 from meanlab.notebook.schema import ENTRY, ENTRY_CONTENT, LAST_ENTRY
-from meanlab.core.source import Source, entries_of
 
 KEY_BYTES = 24
 

@@ -1,4 +1,4 @@
-"""Drawings on paper: a matplotlib figure (never pyplot), as PNG or SVG; the same bytes each time."""
+"""Drawings on paper: a matplotlib figure (never pyplot), as PNG, SVG or PDF; the same bytes each time."""
 
 from io import BytesIO
 from threading import Lock
@@ -6,6 +6,7 @@ from typing import Any
 
 import matplotlib
 from matplotlib.backends.backend_agg import FigureCanvasAgg
+from matplotlib.backends.backend_pdf import FigureCanvasPdf
 from matplotlib.backends.backend_svg import FigureCanvasSVG
 from matplotlib.figure import Figure
 from matplotlib.font_manager import FontProperties, findfont, get_font
@@ -24,6 +25,7 @@ SHAPES = {"dot": "o", "circle": "o", "tick": "|", "cross": "x", "diamond": "D", 
 HOLLOW = ("circle",)
 NO_GLYPH = "□"
 _SAME_IDS: Any = {"svg.hashsalt": "meanlab", "svg.fonttype": "path"}
+_SELECTABLE: Any = {"pdf.fonttype": 42}
 _ONE_AT_A_TIME = Lock()
 
 
@@ -69,6 +71,17 @@ def svg(drawing: Drawing) -> str:
     with _ONE_AT_A_TIME, matplotlib.rc_context(_SAME_IDS):
         paper.savefig(content, format="svg", metadata={"Date": None, "Creator": None, "Description": drawing.alt})
     return content.getvalue().decode("utf-8")
+
+
+def pdf(drawing: Drawing) -> bytes:
+    """Return a drawing as PDF of its own size: lines and letters, the text selectable, its sentence as the title."""
+    paper = figure(drawing)
+    FigureCanvasPdf(paper)
+    content = BytesIO()
+    moment = dict.fromkeys(("CreationDate", "ModDate", "Creator", "Producer"))
+    with _ONE_AT_A_TIME, matplotlib.rc_context(_SELECTABLE):
+        paper.savefig(content, format="pdf", metadata={**moment, "Title": drawing.alt})
+    return content.getvalue()
 
 
 def with_glyphs(text: str) -> str:

@@ -69,7 +69,8 @@ def readings_part(analysis: Analysis, source: Source) -> Part:
     if analysis.readings.preparations is not None:
         labels = dict(zip(analysis.readings.positions, analysis.readings.preparations, strict=True))
         labels |= {one.index: one.preparation or "" for one in analysis.readings.censored}
-    entries, sentences = source.entries, ()
+    entries = source.entries
+    sentences: tuple[str, ...] = ()
     if len(entries) > MOST_ROWS:
         entries = tuple(one for one in entries if one.role != "reading" or one.left_out)[:MOST_ROWS]
         sentences = (f"All {len(source.entries)} as typed: " + "; ".join(one.text for one in source.entries),)

@@ -17,9 +17,8 @@ from meanlab.wording.names import subject_of, unit_of
 
 COMMANDS = ("=", "+", "-", "@", "−", "＝", "＋", "－", "＠", "\t", "\r", "\n")
 HEADINGS = ("part", "name", "value")
-PARTS = (
-    "question", "summary", "test", "difference", "equivalence", "power", "uncertainty", "others", "checks", "censored_fit", "withouts",
-)  # fmt: skip
+PARTS = ("question", "summary", "test", "difference", "equivalence", "power", "uncertainty", "others", "checks",
+         "censored_fit", "withouts")  # fmt: skip
 NOT_SHOWN = ("null_ranks", "name", "message", "notes", "entries", "sentence", "not_applicable", "preparations")
 MEMBERS: Mapping[str, tuple[str, ...]] = {
     "critical": ("low", "high"),

@@ -7,8 +7,8 @@ import pytest
 
 import meanlab
 from meanlab.core.complaints import NotebookComplaint
-from meanlab.notebook import Notebook, recompute, source_of
 from meanlab.core.source import entries_of
+from meanlab.notebook import Notebook, recompute, source_of
 
 
 def test_an_entry_comes_back_as_it_was_saved(book, many_kinds):
