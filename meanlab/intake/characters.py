@@ -12,10 +12,10 @@ _FIRST_DIGITS = (
     *(0x660, 0x6F0, 0x7C0, 0x966, 0x9E6, 0xA66, 0xAE6, 0xB66, 0xBE6, 0xC66, 0xCE6, 0xD66, 0xE50, 0xED0, 0xF20),
     *(0x1040, 0x17E0, 0x1810, 0x1D7CE, 0x1D7D8, 0x1D7E2, 0x1D7EC, 0x1D7F6),
 )
-_RAISED = {raised: plain for raised, plain in zip("⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻", "0123456789+-", strict=True)}
+_RAISED = dict(zip("⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻", "0123456789+-", strict=True))
 _POWER_OF_TEN = re.compile("10([⁺⁻]?[⁰¹²³⁴⁵⁶⁷⁸⁹]+)")
 _APOSTROPHE = re.compile("(?<=[0-9])[’ʼ′´`](?=[0-9]{3})")
-_ENTITY = {"&lt;": "<", "&gt;": ">", "&le;": "≤", "&ge;": "≥", "&plusmn;": "±", "&nbsp;": HARD_BLANK}
+_NAMED_SIGNS = {"&lt;": "<", "&gt;": ">", "&le;": "≤", "&ge;": "≥", "&plusmn;": "±", "&nbsp;": HARD_BLANK}
 
 _SPELLING: dict[int, str | None] = (
     dict.fromkeys(_INVISIBLE)
@@ -34,13 +34,21 @@ def one_spelling(text: str) -> str:
     >>> one_spelling("−５．０２"), one_spelling("1.2×10⁻³")
     ('-5.02', '1.2×10^-3')
     """
-    if "&" in text:
-        for name, character in _ENTITY.items():
-            text = text.replace(name, character)
     if text.isascii():
         return text
     text = _POWER_OF_TEN.sub(lambda found: "10^" + "".join(_RAISED[one] for one in found[1]), text)
     return _APOSTROPHE.sub("'", text.translate(_SPELLING))
+
+
+def signs_for_names(text: str) -> str:
+    """Return a text with the signs that web pages write by name: "&lt;" is "<".
+
+    >>> signs_for_names("&lt;0.05")
+    '<0.05'
+    """
+    for name, sign in _NAMED_SIGNS.items():
+        text = text.replace(name, sign)
+    return text
 
 
 def shown(text: str, most: int = 40) -> str:

@@ -214,10 +214,12 @@ def _last_resort(block: Block, roles: list[Role], filled: list[int]) -> list[int
 
 def _one_row(block: Block, rows: Sequence[int], readings: list[int], roles: list[Role]) -> Picked:
     """Readings beside each other on one row, perhaps behind the name of their quantity."""
-    picked = Picked(block, rows, [i for i, role in enumerate(roles) if i >= readings[0] and role.role != "empty"])
-    first = block.table.text(rows[0], 0)
-    if readings[0] > 0 and sort_of(block.table, rows[0], 0) == "text":
-        picked.name = first
+    table, row = block.table, rows[0]
+    sorts = [sort_of(table, row, column) for column in range(block.width)]
+    named = sorts[0] == "text" and all(sort != "text" for sort in sorts[1 : readings[0]])
+    picked = Picked(block, rows, [i for i, sort in enumerate(sorts) if sort and not (named and i == 0)])
+    if named:
+        picked.name = table.text(row, 0)
     return picked
 
 

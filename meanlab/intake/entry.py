@@ -24,6 +24,8 @@ POWER = (
     r"|\s?[x×X*·⋅]\s?10\s?(?:(?:\^|\*\*)\s?\(?(?P<e3>[+-]?\d{1,4})\)?|(?P<e4>[+-]\d{1,4}))(?!\d))"
 )
 _READING = re.compile(rf"(?P<sign>[+-](?P<gap>\s*))?(?P<numeral>{NUMERAL})(?:{POWER})?", re.ASCII)
+_LOST_POWER = re.compile(rf"[+-]?(?:{NUMERAL})\s?[x×*·⋅]\s?10\d{{1,2}}(?!\d)", re.ASCII)
+_ERROR_CODE = re.compile(r"err(?:or)?[ -]?\d{0,4}|e\d{2,3}", re.IGNORECASE | re.ASCII)
 _BARE_POWER = re.compile(r"(?P<sign>[+-])?10\^(?P<exponent>[+-]?\d{1,4})", re.ASCII)
 _LIMIT = re.compile(
     r"(?P<below><=|=<|<|≤|≪|(?:less|lower|smaller|fewer) than\b|below\b|under\b|unter\b|kleiner(?: als)?\b|up to\b)\s*"
@@ -103,7 +105,7 @@ def _word(text: str) -> Parsed | None:
     if text[0] == "#" and set(text) == {"#"}:
         return Parsed("unread", sort="width") if len(text) > 1 else Parsed("unread", sort="text")
     word = plain_word(text)
-    if word in ERROR_CELLS or (word.startswith("err") and word[3:].isdigit()):
+    if word in ERROR_CELLS or _ERROR_CODE.fullmatch(word):
         return Parsed("missing", sort="error")
     if word in INFINITE:
         return Parsed("unread", sort="infinite")
@@ -146,6 +148,8 @@ def _reading(text: str) -> Parsed | None:
     bare = text
     if text.startswith("(") and text.count("(") == 1 and "±" in text.replace("+/-", "±"):  # (5.02 ± 0.03) mg/L
         bare = text[1:].replace(")", " ", 1)
+    if _LOST_POWER.match(text):
+        return Parsed("unread", sort="lost power")
     power = _BARE_POWER.fullmatch(text)
     if power:
         return Parsed("reading", "1", power["sign"] == "-", int(power["exponent"]), True)

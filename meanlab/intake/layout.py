@@ -9,7 +9,7 @@ from itertools import chain
 from typing import Any
 
 from meanlab.core.complaints import IntakeComplaint
-from meanlab.intake.characters import one_spelling
+from meanlab.intake.characters import one_spelling, signs_for_names
 from meanlab.intake.labels import Labelled, common_style, take_apart
 from meanlab.intake.long_column import long_column
 from meanlab.intake.table import Table, parsed, sort_of_text
@@ -24,6 +24,8 @@ _GAPS = re.compile(r"\s{2,}|\t")
 _DIGIT = re.compile(r"\d")
 _DECIMAL_COMMA_LIST = re.compile(r"\d,\d.*,\s|,\s.*\d,\d")
 SAMPLE = 400
+_ENTRIES = frozenset({"number", "limit", "missing", "word", "stamp"})
+_SINGLE = frozenset({"lost power", "formula", "width", "infinite"})  # one entry, though it cannot be read
 
 
 class ChoiceNeeded(Exception):  # noqa: N818
@@ -49,6 +51,8 @@ def table_of(text: str, decimal: str | None = None) -> Table:
 
     Raises IntakeComplaint for a text that is no table of entries, ChoiceNeeded where its commas have two meanings.
     """
+    if "&" in text:
+        text = signs_for_names(text)
     column = long_column(text)
     if column is not None:
         return Table(column, range(1, len(column) + 1))
@@ -150,7 +154,7 @@ def _sample(lines: Sequence[str]) -> list[str]:
 
 def _is_entry(line: str) -> bool:
     """Tell whether a line is one entry as it stands."""
-    return sort_of_text(line) in ("number", "limit", "missing", "word", "stamp")
+    return sort_of_text(line) in _ENTRIES or parsed(line).sort in _SINGLE
 
 
 def _holds_numbers(line: str) -> bool:
@@ -235,6 +239,8 @@ def _heading_fields(filled: list[str]) -> list[str]:
 def _comma_in_a_row(line: str, decimal: str | None) -> str:
     """One line with commas: readings beside each other, decimal commas, or both."""
     if _is_entry(line) or take_apart(one_spelling(line)) and "," in line and line.count(",") == 1:
+        return ""
+    if all(_is_entry(part) for part in line.split()):
         return ""
     parts = [part.strip() for part in line.split(",")]
     if ", " in line and _DECIMAL_COMMA_LIST.search(line):

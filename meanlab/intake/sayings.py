@@ -22,6 +22,7 @@ _WHY = {
     "infinite": "not finite",
     "two numbers": "more than one number",
     "malformed": "not a number",
+    "lost power": "a power of ten without its exponent",
     "range": "out of range",
     "thousands": "a comma or point that could be either",
     "long": "a text",
@@ -81,6 +82,7 @@ def _unread(one: Parsed) -> str:
         "two numbers": "holds more than one number: write one reading a line.",
         "range": "is outside what is computed exactly: 1e-300 to 1e300, at most 40 significant digits.",
         "thousands": f"could be {one.meant} or have a thousands mark: type it without one.",
+        "lost power": "has lost the raised exponent of its power of ten: write it like 1.2e3.",
         "malformed": "is not a number: check its points and commas.",
         "long": "is a text, not a number.",
     }.get(one.sort, "is not a number." + meant)

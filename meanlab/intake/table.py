@@ -1,5 +1,6 @@
 """A table of cells with the places they stand at, and the blocks of data in it with their headings."""
 
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 from functools import lru_cache
@@ -14,7 +15,8 @@ from meanlab.intake.units import is_unit
 from meanlab.intake.words import is_summary
 
 FIRST_ROWS = 400
-_ODD = ("formula", "width", "infinite", "two numbers", "malformed")
+_LETTER = re.compile(r"[^\W\d_]|[%°‰]")
+_ODD = ("lost power", "formula", "width", "infinite", "two numbers", "malformed")
 
 
 @dataclass(frozen=True)
@@ -153,7 +155,7 @@ def sort_of_text(text: str) -> str:
         return "missing"
     if found.sort in ("date", "time"):
         return "stamp"
-    return "odd" if found.meant or found.sort in _ODD else "text"
+    return "odd" if found.meant or found.sort in _ODD or not _LETTER.search(text) else "text"
 
 
 def is_blank(cells: Sequence[str]) -> bool:
@@ -249,9 +251,14 @@ def _block(table: Table, above: list[int], start: int, end: int) -> Block:
         return Block(table, heading, units, group, range(start, end))
     again, summaries, data = [], [], []
     heading_cells = list(rows[heading]) if heading is not None else None
+    figure_follows = False
     for row in range(start, end):
         cells = rows[row]
         if not cells or not any(cells):
+            continue
+        if figure_follows or (len(cells) == 1 and data and cells[0][0].isalpha() and is_summary(cells[0])):
+            summaries.append(row)
+            figure_follows = not figure_follows
             continue
         if cells == heading_cells:
             again.append(row)
