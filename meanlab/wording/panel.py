@@ -141,7 +141,7 @@ def _rows(analysis: Analysis, numbers: Shown) -> Iterable[tuple[str, str]]:
 def _estimate(numbers: Shown) -> str:
     if not numbers.estimate:
         return UNDEFINED
-    return f"{numbers.estimate} ({numbers.as_target} as the limit)" if numbers.as_target else numbers.estimate
+    return f"{numbers.estimate} ({numbers.as_target} in the limit's places)" if numbers.as_target else numbers.estimate
 
 
 def _interval(numbers: Shown) -> str:

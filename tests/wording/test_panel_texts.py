@@ -115,4 +115,4 @@ def test_rounding_never_hides_a_rejection():
 def test_a_limit_gets_the_value_rounded_to_its_own_places():
     """Beside a specification with fewer places stands the mean rounded to them (common practice)."""
     limit = Question("5.0", unit="mg/L", alternative="greater", target_kind="upper limit")
-    assert rows_of(built(question=limit))["Mean"] == "5.022 mg/L (5.0 as the limit)"
+    assert rows_of(built(question=limit))["Mean"] == "5.022 mg/L (5.0 in the limit's places)"
