@@ -13,8 +13,8 @@ from meanlab.pictures.places import Obstacles
 
 TEXTS = (
     "2.5 % beyond −2.20", "t(11) = 4.08", "W⁺ = 16991.5", "The mean of 12 readings (taken as independent) of Nitrate",
-    "Schwermetallrückstandsbestimmung in Klärschlammasche", "±∞ ≤ ≥ × 10⁻⁷ µg/kg °C ″ ′ ₀₁ ν σ α", "WWW @@@ %%% mmm MMM",
-    "fill {of} [odd] signs <&> $x^2$ #~|\\/", "жизнь αβγδ ŁŃŻ ½¼‰",
+    "Schwermetallrückstandsbestimmung in Klärschlammasche", "±∞ ≤ ≥ × 10⁻⁷ µg/kg °C ″ ′ ₀₁ ν σ α", 
+    "WWW @@@ %%% mmm MMM", "fill {of} [odd] signs <&> $x^2$ #~|\\/", "жизнь αβγδ ŁŃŻ ½¼‰",
 )  # fmt: skip
 
 
@@ -84,7 +84,7 @@ def test_texts_of_an_axis_keep_apart_and_inside(low, high):
     """From the smallest to the largest readings the axis has at least one mark, and no two texts touch."""
     boxes = [words.box for words in below(Scale(low, high, 8, 592), 50, "mg/L", ",", width=600).words]
     assert len(boxes) >= 2
-    assert all(0 <= box.left and box.right <= 600 for box in boxes)
+    assert all(box.left >= 0 and box.right <= 600 for box in boxes)
     assert not any(a.meets(b) for i, a in enumerate(boxes) for b in boxes[:i])
 
 

@@ -10,7 +10,7 @@ from meanlab.pictures.entries import MOST_DRAWN, entries_of, thinned
 from meanlab.pictures.readings import readings_picture
 from meanlab.pictures.run_order import run_order_picture
 
-TWELVE = "5.012 5.043 5.028 5.009 5.051 5.017 5.026 5.033 4.998 4.987 5.021 5.034".split()
+TWELVE = ["5.012", "5.043", "5.028", "5.009", "5.051", "5.017", "5.026", "5.033", "4.998", "4.987", "5.021", "5.034"]
 CENSORED = [{"index": 2, "kind": "below", "limit": "0.05"}, {"index": 5, "kind": "below", "limit": "0.05"}]
 
 
@@ -82,7 +82,7 @@ def test_a_far_target_is_an_arrow_with_its_value():
 
 def test_preparations_are_rows_with_their_means():
     """A few preparations are a row each, many are two rows; each mean is a diamond."""
-    few = picture_of("10.1 10.2 10.4 10.3 9.9 10.0".split(), "10.0", preparations=tuple("AABBCC"))
+    few = picture_of(["10.1", "10.2", "10.4", "10.3", "9.9", "10.0"], "10.0", preparations=tuple("AABBCC"))
     assert len({mark.y for mark in few.marks if mark.shape == "diamond"}) == 3
     labels = tuple("ABCDEFGH") * 2
     many = picture_of([f"10.{i}" for i in range(16)], "10.0", preparations=labels)
@@ -128,7 +128,7 @@ SITUATIONS = {
         {"target": "1.0", "censored": [{"index": 0, "kind": "above"}, {"index": 1, "kind": "below", "limit": "1.0"}]},
     ),
     "preparations": (
-        "10.1 10.2 10.4 10.3 9.9 10.0".split(),
+        ["10.1", "10.2", "10.4", "10.3", "9.9", "10.0"],
         {"target": "10.1", "preparations": tuple("AABBCC"), "left_out": {5: "bubble"}},
     ),
     "huge": (["7e299", "8e299", "1e300"], {"target": "9.2e299"}),
