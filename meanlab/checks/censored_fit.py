@@ -7,7 +7,7 @@ In γ = μ/σ and θ = 1/σ the logarithm of the likelihood is concave (Olsen 19
 from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction
-from math import log, pi, sqrt
+from math import inf, log, pi, sqrt
 
 import numpy as np
 from scipy import special
@@ -21,6 +21,8 @@ from meanlab.core.results import CensoredFit, Interval
 FEWEST = 10
 MOST_STEPS = 200
 CLOSE = 1e-15
+QUADRATIC = 1e-5
+ROUNDING = 1e-13
 FARTHEST_TARGET = 1e100
 
 
@@ -73,23 +75,26 @@ def censored_fit_of(readings: ReadingSet, question: Question) -> CensoredFit | N
 
 def fit(entries: Entries) -> tuple[float, float, float]:
     """Return mean, s (divisor n) and the logarithm of the likelihood at its top."""
-    spread = float(entries.known.std())
-    gamma, theta = float(entries.known.mean()) / spread, 1 / spread
-    top = _log_likelihood(entries, gamma, theta)
+    everything = np.concatenate((entries.known, entries.limits))
+    theta = 1 / float(everything.std())
+    place = np.array([float(everything.mean()) * theta, theta])
+    height, size = _log_likelihood(entries, place), inf
     for _ in range(MOST_STEPS):
-        step = _newton_step(entries, gamma, theta)
-        while True:
-            tried = gamma + float(step[0]), theta + float(step[1])
-            height = _log_likelihood(entries, *tried) if tried[1] > 0 else -np.inf
-            if height >= top - CLOSE * abs(top) or float(np.max(np.abs(step))) < CLOSE * theta:
-                break
-            step = step / 2
-        small = abs(step[0]) <= CLOSE * (abs(gamma) + 1) and abs(step[1]) <= CLOSE * theta
-        if tried[1] > 0:
-            (gamma, theta), top = tried, max(top, height)
-        if small:
+        step = _newton_step(entries, *map(float, place))
+        before, size = size, _size(step, place)
+        if size < QUADRATIC and size > before / 2:  # what is left is rounding
             break
-    return gamma / theta, 1 / theta, top
+        slack = ROUNDING * max(1.0, abs(height))
+        while _log_likelihood(entries, place + step) < height - slack:
+            step = step / 2
+        place = place + step
+        height = _log_likelihood(entries, place)
+    return float(place[0] / place[1]), float(1 / place[1]), height
+
+
+def _size(step: np.ndarray, place: np.ndarray) -> float:
+    """Return how large a step in (γ, θ) is, relative to where it starts."""
+    return max(abs(float(step[0])) / (abs(float(place[0])) + 1), abs(float(step[1])) / float(place[1]))
 
 
 def _newton_step(entries: Entries, gamma: float, theta: float) -> np.ndarray:
@@ -111,7 +116,11 @@ def _mills(w: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
     return mills, mills * (w + mills)
 
 
-def _log_likelihood(entries: Entries, gamma: float, theta: float) -> float:
+def _log_likelihood(entries: Entries, place: np.ndarray) -> float:
+    """Return ℓ at (γ, θ), minus infinity where θ is not above 0."""
+    gamma, theta = map(float, place)
+    if theta <= 0:
+        return -inf
     z = theta * entries.known - gamma
     hidden = special.log_ndtr(entries.sides * (theta * entries.limits - gamma))
     return len(z) * log(theta) - float(z @ z) / 2 + float(hidden.sum())

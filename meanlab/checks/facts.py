@@ -2,6 +2,7 @@
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from functools import cached_property
 
 from meanlab.core.question import Question
 from meanlab.wording.names import counted
@@ -41,7 +42,7 @@ class Facts:
         """r/s, None where the step is unknown or the units do not scatter."""
         return self.resolution / self.s if self.resolution is not None and self.s else None
 
-    @property
+    @cached_property
     def nested(self) -> bool:
         """Whether any unit is a preparation of several readings."""
         return any(len(places) > 1 for places in self.places)

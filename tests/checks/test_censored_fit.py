@@ -5,9 +5,9 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 from mpmath import findroot, log, mp, mpf, ncdf, npdf
-from scipy import stats
+from scipy import special, stats
 
-from meanlab.checks.censored_fit import Entries, censored_fit_of, fit, likelihood_ratio_p, profile
+from meanlab.checks.censored_fit import Entries, censored_fit_of, fit, likelihood_ratio_p, profile, profile_interval
 from meanlab.core.question import Question
 from meanlab.core.readings import ReadingSet
 
@@ -168,3 +168,18 @@ def test_a_target_far_away_has_p_0():
         Question("1e300"),
     )
     assert found.p_value == pytest.approx(0.0, abs=1e-300)
+
+
+@pytest.mark.parametrize("far", [30.0, 1e3, 1e6])
+@pytest.mark.parametrize("side", [1.0, -1.0])
+def test_limits_far_from_the_readings(far, side):
+    """Limits many scatters away still end where both slopes of the likelihood are 0 to 12 digits."""
+    made = np.random.default_rng(2)
+    entries = Entries(made.normal(size=8) / far, np.array([-1.0, -0.6, 0.7]), side * np.array([1.0, 1.0, -1.0]))
+    mean, s, top = fit(entries)
+    z, w = (entries.known - mean) / s, entries.sides * (entries.limits - mean) / s
+    mills = np.exp(-w * w / 2 - special.log_ndtr(w)) / np.sqrt(2 * np.pi)
+    assert z.sum() == pytest.approx(entries.sides @ mills, abs=1e-12 * (np.abs(z).sum() + mills.sum()))
+    assert z @ z - len(z) == pytest.approx(w @ mills, abs=1e-12 * (z @ z + len(z) + np.abs(w) @ mills))
+    low, high = profile_interval(entries, mean, s, top, 0.05)
+    assert low < mean < high
