@@ -173,9 +173,8 @@ def _as_typed(fields: Mapping[str, Any], name: str, noun: str, sign: str) -> str
     return str(read_number(fields[name], sign))
 
 
-def _optional(fields: Mapping[str, Any], name: str, noun: str, sign: str) -> Decimal | None:
-    text = fields[name].strip()
-    return number(text, noun, name, sign) if text else None
+def _optional(fields: Mapping[str, Any], name: str, noun: str, sign: str) -> str | None:
+    return _as_typed(fields, name, noun, sign) if fields[name].strip() else None
 
 
 def _degrees(fields: Mapping[str, Any], name: str, sign: str) -> float:
