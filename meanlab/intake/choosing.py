@@ -8,7 +8,7 @@ from typing import Any
 
 from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.characters import one_spelling, shown
-from meanlab.intake.layout import ChoiceNeeded
+from meanlab.intake.separators import ChoiceNeeded
 from meanlab.intake.roles import Role, is_count, listed, replicates, roles_of, sample_of
 from meanlab.intake.table import Block, parsed, sort_of
 from meanlab.intake.units import same_unit

@@ -10,7 +10,7 @@ An entry is parsed without knowing the decimal sign, which is decided over the w
 
 import re
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Literal
 
 from meanlab.intake.numerals import NUMERAL
@@ -26,6 +26,9 @@ POWER = (
 _READING = re.compile(rf"(?P<sign>[+-](?P<gap>\s*))?(?P<numeral>{NUMERAL})(?:{POWER})?", re.ASCII)
 _LOST_POWER = re.compile(rf"[+-]?(?:{NUMERAL})\s?[x×*·⋅]\s?10\d{{1,2}}(?!\d)", re.ASCII)
 _ERROR_CODE = re.compile(r"err(?:or)?[ -]?\d{0,4}|e\d{2,3}", re.IGNORECASE | re.ASCII)
+_RANGE = re.compile(rf"[+-]?(?:{NUMERAL})\s*(?:-|\.\.+|…|\bto\b|\bbis\b)\s*(?:{NUMERAL})(?:\s?\D*)", re.ASCII)
+_ABOUT = re.compile(r"(?:~|≈|≅|∼|ca\.?(?=[\s\d])|circa\b|about\b|approx(?:\.|imately)?(?=\s)|around\b|etwa\b|roughly\b)\s*", re.IGNORECASE)
+_QUOTES = "'\"“”„‘’‚«»"
 _BARE_POWER = re.compile(r"(?P<sign>[+-])?10\^(?P<exponent>[+-]?\d{1,4})", re.ASCII)
 _LIMIT = re.compile(
     r"(?P<below><=|=<|<|≤|≪|(?:less|lower|smaller|fewer) than\b|below\b|under\b|unter\b|kleiner(?: als)?\b|up to\b)\s*"
@@ -70,7 +73,7 @@ class Parsed:
     unit      as written
     remark    what stands behind the number and unit
     sort      what kind of remark or why not read: "uncertainty", "flag", "trailing minus", "gap", "word", "unclear",
-              "error", "date", "time", "formula", "width", "infinite", "two numbers", "text"
+              "error", "span", "lost power", "date", "time", "formula", "width", "infinite", "two numbers", "text"
     meant     what was probably meant, for the complaint
     """
 
@@ -96,6 +99,8 @@ def parse(text: str) -> Parsed:
     """
     if len(text) > MOST_CHARACTERS:
         return Parsed("unread", sort="long")
+    if len(text) > 1 and text[0] in _QUOTES:
+        text = text[1:-1].strip() if text[-1] in _QUOTES and len(text) > 2 else text[1:] if text[0] == "'" else text
     return next((found for way in _WAYS if (found := way(text)) is not None), Parsed("unread", sort="text"))
 
 
@@ -142,6 +147,15 @@ def _stamp(text: str) -> Parsed | None:
     if _DATE.fullmatch(text):
         return Parsed("unread", sort="date", meant=_meant(text))
     return Parsed("unread", sort="time") if _TIME.fullmatch(text) else None
+
+
+def _about(text: str) -> Parsed | None:
+    """A number said to be approximate is kept and marked; a range of numbers is no reading."""
+    found = _ABOUT.match(text)
+    number = _reading(text[found.end() :]) if found else None
+    if found and number is not None and number.kind == "reading" and number.sort in ("", "uncertainty"):
+        return replace(number, remark=found[0].strip(), sort="flag")
+    return Parsed("unread", sort="span") if _RANGE.fullmatch(text) and not _DATE.fullmatch(text) else None
 
 
 def _reading(text: str) -> Parsed | None:
@@ -237,6 +251,7 @@ _WAYS: tuple[Callable[[str], Parsed | None], ...] = (
     _formula,
     _limit,
     _stamp,
+    _about,
     _reading,
     lambda text: Parsed("unread", sort="text", meant=_meant(text)),
 )

@@ -8,7 +8,7 @@ from meanlab.intake.entry import STAMP, Parsed, parse
 from meanlab.intake.words import is_summary
 
 _LIST_NUMBER = re.compile(
-    r"(?:\(\d{1,6}\)|\[\d{1,6}\]|#\s?\d{1,6}[.):]?|(?:no|nr)\.?\s?\d{1,6}[.):]?|\d{1,6}\s?[.):](?=\s)|\d{1,6}\)|[A-Za-z][.)])\s*",
+    r"(?:\(\d{1,6}\)|\[\d{1,6}\]|#\s?\d{1,6}[.):]?|(?:no|nr)\.?\s?\d{1,6}[.):]?|\d{1,6}\s?[.):](?=\s)|\d{1,6}\)|[A-Za-z]\)|[A-Za-z]\.(?=\s))\s*",
     re.IGNORECASE | re.ASCII,
 )
 _BULLET = re.compile(r"[•·‣▪◦*]\s+")
@@ -76,11 +76,18 @@ def _is_label(text: str) -> bool:
 
 
 def common_style(lines: Sequence[list[Labelled]], plain: int) -> str:
-    """Return the sort of beginning that most lines share ("" for none): ``plain`` lines are entries as they stand."""
-    counts: dict[str, int] = {}
+    """Return the sort of beginning that most lines share ("" for none); ``plain`` lines are entries as they stand.
+
+    List numbers that do not go up are none: "5. 02", "5. 04" is a slip of the keyboard.
+    """
+    counts: dict[str, list[str]] = {}
     for ways in lines:
         for way in ways:
             if way.sort != "summary":
-                counts[way.sort] = counts.get(way.sort, 0) + 1
-    best = max(counts, key=lambda sort: counts[sort], default="")
-    return best if best and counts[best] >= max(plain, 1) and (counts[best] > 1 or not plain) else ""
+                counts.setdefault(way.sort, []).append(way.label)
+    numbers = [int(found[0]) for label in counts.get("number", ()) if (found := re.search(r"\d+", label))]
+    if any(b <= a for a, b in zip(numbers, numbers[1:], strict=False)) or (len(numbers) == 1 and numbers[0] > 1):
+        del counts["number"]
+    best = max(counts, key=lambda sort: len(counts[sort]), default="")
+    most = len(counts[best]) if best else 0
+    return best if most >= max(plain, 1) and (most > 1 or not plain) else ""

@@ -8,7 +8,7 @@ from meanlab.intake.choosing import NothingToRead, Picked, pick
 from meanlab.intake.column import Given, Read, read_column
 from meanlab.intake.doubts import doubts_about
 from meanlab.intake.found import Column, Intake
-from meanlab.intake.layout import ChoiceNeeded
+from meanlab.intake.separators import ChoiceNeeded
 from meanlab.intake.long_column import OneColumn
 from meanlab.intake.numerals import Sign, decimal_sign
 from meanlab.intake.roles import listed, roles_of, sample_of
@@ -184,8 +184,8 @@ def _texts(table: Table, rows: Sequence[int], column: int) -> list[str]:
 def _computed(table: Table, places: Sequence[tuple[int, int]]) -> frozenset[int]:
     if table.sheet is None:
         return frozenset()
-    rows = table.sheet.rows
-    return frozenset(i for i, (row, column) in enumerate(places) if column < len(rows[row]) and rows[row][column].computed)
+    cells = ((i, table.cell(row, column)) for i, (row, column) in enumerate(places))
+    return frozenset(i for i, cell in cells if cell is not None and cell.computed)
 
 
 def _hint(picked: Picked) -> Sign | None:

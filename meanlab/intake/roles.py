@@ -93,7 +93,7 @@ def _role_of_numbers(word: str, texts: list[str], headed: bool) -> str:
     whole = all(_WHOLE.fullmatch(text) for text in texts)
     if whole and (word in _COUNTER or word in _LABEL or word in _ANALYTE or word in _OTHER):
         return "counter" if word in _COUNTER else "label"
-    if whole and len({len(text) for text in texts}) == 1 and len(texts[0]) > 1 and any(t[0] == "0" for t in texts):
+    if whole and len({len(text) for text in texts}) == 1 and len(texts[0]) > 3 and any(t[0] == "0" for t in texts):
         return "label"
     if whole and is_count(texts) and (len(texts) > 2 or not headed):
         return "counter"

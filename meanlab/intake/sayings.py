@@ -21,6 +21,7 @@ _WHY = {
     "width": "a cell too narrow to show its number",
     "infinite": "not finite",
     "two numbers": "more than one number",
+    "span": "a range of numbers",
     "malformed": "not a number",
     "lost power": "a power of ten without its exponent",
     "range": "out of range",
@@ -79,13 +80,14 @@ def _unread(one: Parsed) -> str:
         "let it calculate, save it, and read it again.",
         "width": "was copied from a cell too narrow to show its number: widen the column and copy again.",
         "infinite": "is not finite, so it is no reading.",
+        "span": "is a range of numbers, not one reading.",
         "two numbers": "holds more than one number: write one reading a line.",
         "range": "is outside what is computed exactly: 1e-300 to 1e300, at most 40 significant digits.",
         "thousands": f"could be {one.meant} or have a thousands mark: type it without one.",
         "lost power": "has lost the raised exponent of its power of ten: write it like 1.2e3.",
         "malformed": "is not a number: check its points and commas.",
         "long": "is a text, not a number.",
-    }.get(one.sort, "is not a number." + meant)
+    }.get(one.sort, "is not a number." + (meant or one.remark))
 
 
 def about(sort: str, given: "Given", places: Sequence[int], each: Sequence[Parsed]) -> str:

@@ -6,7 +6,7 @@ import re
 from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.containers import is_plain_text
 from meanlab.intake.layout import table_of
-from meanlab.intake.table import Table
+from meanlab.intake.table import Table, upright
 from meanlab.intake.workbooks import sheets_of
 
 MOST_BYTES = 50_000_000
@@ -32,13 +32,13 @@ def tables_of(source: str | bytes, filename: str | None, decimal: str | None) ->
             "Split it, or export only the column with the readings."
         )
     if isinstance(source, str):
-        return [table_of(_no_controls(source.removeprefix("\ufeff"), "text"), decimal)]
+        return [upright(table_of(_no_controls(source.removeprefix("\ufeff"), "text"), decimal))]
     if not source.strip():
         raise IntakeComplaint("The file is empty: there is nothing to read in it. Choose the file with the readings.")
     if is_plain_text(source):
-        return [table_of(text_of(source), decimal)]
+        return [upright(table_of(text_of(source), decimal))]
     return [
-        Table([[cell.text.strip() for cell in row] for row in sheet.rows], None, sheet)
+        upright(Table([[cell.text.strip() for cell in row] for row in sheet.rows], None, sheet))
         for sheet in sheets_of(source, filename or "")
     ]
 

@@ -1,21 +1,22 @@
 """A table of cells with the places they stand at, and the blocks of data in it with their headings."""
 
-import re
-from collections.abc import Sequence
-from dataclasses import dataclass, field
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, replace
 from functools import lru_cache
 
 from meanlab.intake.characters import one_spelling
 from meanlab.intake.entry import Parsed, parse
-from meanlab.intake.grid import Sheet
+from meanlab.intake.grid import Cell, Sheet
 from meanlab.intake.heading import Heading, heading_of
 from meanlab.intake.long_column import OneColumn
-from meanlab.intake.numerals import leaning
+from meanlab.intake.numerals import leaning, under
 from meanlab.intake.units import is_unit
 from meanlab.intake.words import is_summary
 
 FIRST_ROWS = 400
-_LETTER = re.compile(r"[^\W\d_]|[%°‰]")
+MOST_TURNED = 12  # rows of a table that stands on its side
+CLOSE = 1.5  # readings of one quantity beside each other differ by less than this factor
+_ENTRIES = ("number", "limit", "missing", "word", "")
 _ODD = ("lost power", "formula", "width", "infinite", "two numbers", "malformed")
 
 
@@ -28,7 +29,9 @@ class Table:
     sheet      the sheet the rows come from, None for a text
     separator  what parts the cells of a text: "\\t", ";", ",", "|", " " or "" for one entry a line
     remarks    what must be seen about the whole table; ``notes`` what is neutral
-    labels     what stood before each entry of a text with one entry a line, by row
+    named      the name that stands before every entry of a text with one entry a line
+    labels     label of the preparation each line belongs to, by number of line
+    turned     True where rows and columns of the text or sheet have changed places
     """
 
     rows: Sequence[Sequence[str]]
@@ -37,7 +40,9 @@ class Table:
     separator: str = ""
     remarks: tuple[str, ...] = ()
     notes: tuple[str, ...] = ()
-    labels: dict[int, str] = field(default_factory=dict)
+    named: str = ""
+    labels: Mapping[int, str] | None = None
+    turned: bool = False
 
     @property
     def name(self) -> str:
@@ -51,15 +56,29 @@ class Table:
 
     def kind(self, row: int, column: int) -> str:
         """Return the kind of a cell as the workbook has it; "text" in a text."""
-        if self.sheet is None or column >= len(self.sheet.rows[row]):
-            return "text"
-        return self.sheet.rows[row][column].kind
+        cell = self.cell(row, column)
+        return "text" if cell is None else cell.kind
+
+    def cell(self, row: int, column: int) -> Cell | None:
+        """Return a cell as the workbook has it; None in a text and beyond the end of a row."""
+        if self.sheet is None:
+            return None
+        row, column = (column, row) if self.turned else (row, column)
+        cells = self.sheet.rows[row]
+        return cells[column] if column < len(cells) else None
 
     def place(self, row: int, column: int) -> str:
         """Return where a cell stands, in words: "line 3" or "B7"."""
+        if self.turned:
+            row, column = column, row
         if self.lines is not None:
-            return f"line {self.lines[row]}"
+            return f"line {self.lines[row]}" + (f", field {column + 1}" if self.turned else "")
         return f"{column_letters(column)}{row + 1}"
+
+    def turn(self) -> "Table":
+        """Return the table with its rows as columns."""
+        wide = max(map(len, self.rows))
+        return replace(self, rows=[[self.text(row, column) for row in range(len(self.rows))] for column in range(wide)], turned=True)
 
 
 def column_letters(column: int) -> str:
@@ -155,7 +174,11 @@ def sort_of_text(text: str) -> str:
         return "missing"
     if found.sort in ("date", "time"):
         return "stamp"
-    return "odd" if found.meant or found.sort in _ODD or not _LETTER.search(text) else "text"
+    return "odd" if found.meant or found.sort in _ODD or not _has_letter(text) else "text"
+
+
+def _has_letter(text: str) -> bool:
+    return any(one.isalpha() or one in "%°‰" for one in text)
 
 
 def is_blank(cells: Sequence[str]) -> bool:
@@ -174,6 +197,28 @@ def blocks_of(table: Table) -> list[Block]:
             end = starts[first + 1][1] if first + 1 < len(starts) else len(rows)
         found.append(_block(table, heading_rows, start, end))
     return [block for block in found if block.data]
+
+
+def upright(table: Table) -> Table:
+    """Return a table whose quantities stand in rows, "Nitrate; 5.02; 5.04; 4.98", with rows and columns exchanged."""
+    rows = [row for row in range(min(len(table.rows), MOST_TURNED + 1)) if not is_blank(table.rows[row])]
+    if not rows or len(rows) > MOST_TURNED or len(table.rows) > 100 or table.separator == "" and table.sheet is None:
+        return table
+    for row in rows:
+        sorts = [sort_of(table, row, column) for column in range(len(table.rows[row]))]
+        numbers = [_size(table.text(row, column)) for column, sort in enumerate(sorts) if sort == "number"]
+        if sorts[0] != "text" or len(numbers) < 2 or any(sort not in _ENTRIES for sort in sorts[1:]):
+            return table
+        counted = numbers == list(range(1, len(numbers) + 1))
+        if len(rows) > 1 and not counted and not 0 < max(numbers) < CLOSE * min(numbers):
+            return table
+    return table.turn()
+
+
+def _size(text: str) -> float:
+    found = parsed(text)
+    plain = under(found.numeral, ".") or under(found.numeral, ",") or "0"
+    return float(plain) * 10.0 ** max(-300, min(found.exponent, 300))
 
 
 def _starts(table: Table) -> list[tuple[list[int], int]]:
