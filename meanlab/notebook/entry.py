@@ -66,17 +66,28 @@ class Entry(Facts):
         del values["digest"]
         return {"format": FORMAT, **values}
 
-    def sealed(self) -> "Entry":
-        """Return this entry with its digest.
+    def sealed(self) -> "Sealed":
+        """Return this entry with its digest, its exact values and its content.
 
         Raises NotebookComplaint for a text that cannot be written as UTF-8.
         """
+        values = self.to_exact()
         try:
-            return replace(self, digest=digest_of(self.content))
+            content = canonical(values)
+            return Sealed(replace(self, digest=digest_of(content)), values, content)
         except UnicodeEncodeError as problem:
             raise NotebookComplaint(
                 f"The entry holds a character that cannot be kept ({problem.object[problem.start]!r}): take it out."
             ) from problem
+
+
+@dataclass(frozen=True)
+class Sealed:
+    """An entry with its digest, as exact values, and as the content that the digest is taken of."""
+
+    entry: Entry
+    values: Mapping[str, Any]
+    content: bytes
 
 
 @dataclass(frozen=True)
@@ -120,6 +131,36 @@ def entry_from(content: bytes, digest: str) -> Entry:
         raise NotebookComplaint(
             f"The content of this entry cannot be read ({problem}). Verify the notebook, and go back to a copy of it."
         ) from problem
+
+
+def entry_of_result(parts: Mapping[str, Any]) -> Sealed:
+    """Return the parts of a single result's record file as the first entry of a notebook.
+
+    It stands there with the time at which it was computed. Raises NotebookComplaint where the parts cannot be read.
+    """
+    try:
+        analysis = rebuilt(Analysis, parts["analysis"])
+        written = rebuilt(Written, parts["written"])
+        entry = Entry(
+            number=1,
+            key=analysis.provenance.fingerprint[:32],
+            time=analysis.provenance.time,
+            zone="UTC",
+            title=written.title,
+            by=written.by,
+            note=written.note,
+            instrument=written.instrument,
+            method=written.method,
+            amends="",
+            reason="",
+            source=rebuilt(Source, parts["source"]),
+            analysis=analysis,
+            previous="",
+            set_times=written.set_times,
+        )
+    except (KeyError, ValueError, TypeError) as problem:
+        raise NotebookComplaint(f"The result in this record file cannot be read ({problem}).") from problem
+    return entry.sealed()
 
 
 def values_of(content: bytes) -> dict[str, Any]:

@@ -11,7 +11,7 @@ from sqlalchemy.exc import SQLAlchemyError
 from meanlab.core.complaints import NotebookComplaint
 from meanlab.core.exact_values import canonical
 from meanlab.core.record_file import KIND, parts_of, record_file
-from meanlab.notebook.entry import values_of
+from meanlab.notebook.entry import entry_of_result, values_of
 from meanlab.notebook.listing import line_values
 from meanlab.notebook.place import open_engine, writing
 from meanlab.notebook.schema import BENCH_DEFAULT, ENTRY, ENTRY_CONTENT, LAST_ENTRY, prepare
@@ -56,10 +56,17 @@ def save(path: Path, content: bytes) -> Path:
 
 
 def entries_of_file(content: bytes) -> tuple[Sequence[Mapping[str, Any]], Mapping[str, Any]]:
-    """Return the entries of a notebook's record file, each with digest and content, and the mark of the last one."""
+    """Return the entries of a record file, each with digest and content, and the mark of the last one.
+
+    A single result is a notebook of one entry.
+    """
     parts = parts_of(content)
+    if parts[KIND] == "result":
+        sealed = entry_of_result(parts)
+        digest = sealed.entry.digest
+        return [{"digest": digest, "content": sealed.values}], {"number": 1, "digest": digest}
     entries, last = parts.get("entries"), parts.get("last")
-    if parts[KIND] != "notebook" or not isinstance(entries, list) or not isinstance(last, dict):
+    if not isinstance(entries, list) or not isinstance(last, dict):
         raise NotebookComplaint("This record file holds no notebook.")
     return entries, last
 

@@ -185,7 +185,7 @@ class Notebook(Database):
         """Number, chain and seal an entry while no other can write, so that two at once stand one after the other."""
         with self._writing() as connection:
             number, digest = last_of(connection)
-            entry = Entry(
+            sealed = Entry(
                 number=number + 1,
                 key=secrets.token_urlsafe(KEY_BYTES),
                 time=datetime.now(UTC).isoformat(timespec="microseconds"),
@@ -196,7 +196,8 @@ class Notebook(Database):
                 set_times=dict(set_times or {}),
                 **{"amends": "", "reason": "", **written},
             ).sealed()
-            put(connection, line_values(entry.to_exact(), entry.digest), entry.content)
+            entry = sealed.entry
+            put(connection, line_values(sealed.values, entry.digest), sealed.content)
             move_end(connection, entry.number, entry.digest)
         return entry
 

@@ -3,14 +3,14 @@
 The wording of numbers and sentences is that of `meanlab.wording`; here they are only put in order.
 """
 
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterable, Iterator, Mapping
 from dataclasses import dataclass
 
 from meanlab.core.question import PROCEDURES
 from meanlab.core.results import Analysis, NotApplicable, Test
 from meanlab.core.source import Source
 from meanlab.core.written import Written
-from meanlab.records.asked import question_rows
+from meanlab.records.asked import moment, question_rows
 from meanlab.wording import PanelTexts, agreement_sentence, decision_rule, enough_sentence
 from meanlab.wording.names import CHECK_TITLES, PROCEDURE_NAMES
 from meanlab.wording.numbers import (
@@ -26,13 +26,15 @@ from meanlab.wording.numbers import (
 
 MOST_ROWS = 300
 DIGITS_OF_U = 3
+WIDTHS: Mapping[int, tuple[int, ...]] = {3: (8, 22, 70), 4: (8, 22, 50, 20), 5: (8, 22, 35, 20, 15)}
 
 
 @dataclass(frozen=True)
 class Part:
     """One part of a written record: a heading, a table with its column headings, and sentences below it.
 
-    ``listed`` marks sentences that stand as a list; a table without column headings has labels in its first column.
+    ``listed`` marks sentences that stand as a list; a table without column headings has labels in its first column;
+    ``widths`` are those of the columns, in percent.
     """
 
     heading: str
@@ -40,6 +42,7 @@ class Part:
     columns: tuple[str, ...] = ()
     rows: tuple[tuple[str, ...], ...] = ()
     listed: bool = False
+    widths: tuple[int, ...] = (30, 70)
 
 
 def account(analysis: Analysis, texts: PanelTexts, source: Source, written: Written) -> tuple[Part, ...]:
@@ -49,7 +52,7 @@ def account(analysis: Analysis, texts: PanelTexts, source: Source, written: Writ
         Part("Cautions", analysis.cautions, listed=True),
         Part("Decision rule and reach", _rule(analysis)),
         Part("Why this procedure", (texts.why, *analysis.route.reasons[1:]), listed=True),
-        Part("Checks of the readings", columns=("Looked at", "Outcome", "What was seen"), rows=_checks(analysis)),
+        _checks(analysis),
         _uncertainty(analysis, texts),
         _others(analysis, texts),
         Part("With and without readings", tuple(one.sentence for one in analysis.withouts), listed=True),
@@ -82,7 +85,7 @@ def readings_part(analysis: Analysis, source: Source) -> Part:
     if not any(one.place for one in entries):
         del columns[3]
         rows = [(*row[:3], *row[4:]) for row in rows]
-    return Part("Readings as typed", sentences, tuple(columns), tuple(rows))
+    return Part("Readings as typed", sentences, tuple(columns), tuple(rows), widths=WIDTHS[len(columns)])
 
 
 def origin_rows(analysis: Analysis, source: Source, written: Written) -> Iterator[tuple[str, str]]:
@@ -94,12 +97,13 @@ def origin_rows(analysis: Analysis, source: Source, written: Written) -> Iterato
         ("Instrument", written.instrument),
         ("Method", written.method),
         ("Note", written.note),
-        ("Entry", "" if written.number is None else f"no. {written.number}, saved {written.time} ({written.zone})"),
+        ("Entry", "" if written.number is None else f"no. {written.number}, saved {moment(written.time)}"),
+        ("Time zone of the bench", written.zone),
         ("Amends", "" if written.amends_number is None else f"entry no. {written.amends_number}: {written.reason}"),
         ("File", source.file_name and f"{source.file_name}, {source.size} bytes"),
         ("SHA-256 of the file", source.checksum),
         ("Chosen in it", "; ".join(f"{name}: {text}" for name, text in source.selection.items())),
-        ("Computed", made.time),
+        ("Computed", moment(made.time)),
         ("Versions", ", ".join(f"{name} {version}" for name, version in made.versions.items())),
         ("Fingerprint", f"{made.fingerprint} (SHA-256 of the readings as typed and of the question)"),
         ("Digest of the entry", written.digest),
@@ -112,8 +116,10 @@ def _rule(analysis: Analysis) -> tuple[str, ...]:
     return tuple(text for text in (decision_rule(analysis), agreement, enough_sentence(analysis)) if text)
 
 
-def _checks(analysis: Analysis) -> tuple[tuple[str, ...], ...]:
-    return tuple((CHECK_TITLES.get(one.name, one.name), one.outcome, one.message) for one in analysis.checks)
+def _checks(analysis: Analysis) -> Part:
+    rows = tuple((CHECK_TITLES.get(one.name, one.name), one.outcome, one.message) for one in analysis.checks)
+    columns = ("Looked at", "Outcome", "What was seen")
+    return Part("Checks of the readings", columns=columns, rows=rows, widths=(20, 12, 68))
 
 
 def _uncertainty(analysis: Analysis, texts: PanelTexts) -> Part:
@@ -132,7 +138,8 @@ def _uncertainty(analysis: Analysis, texts: PanelTexts) -> Part:
     rows.append(("combined", of(budget.combined), degrees, _percent(1.0, sign)))
     rows.append((f"expanded, k = {statistic_number(budget.k, sign)}", of(budget.expanded), "", ""))
     columns = ("Component", "Standard uncertainty u", "Degrees of freedom", "Share of u²")
-    return Part("Uncertainty of the difference", tuple(one.message for one in budget.bounds), columns, tuple(rows))
+    said = tuple(one.message for one in budget.bounds)
+    return Part("Uncertainty of the difference", said, columns, tuple(rows), widths=(26, 30, 24, 20))
 
 
 def _others(analysis: Analysis, texts: PanelTexts) -> Part:
@@ -140,7 +147,8 @@ def _others(analysis: Analysis, texts: PanelTexts) -> Part:
     rows = tuple(_other(analysis, texts, others[name]) for name in PROCEDURES if name in others)
     columns = ("Procedure", "Speaks of the", "Estimate", "Interval", "Statistic", "p")
     sentences = ("None of these decided: the procedure is chosen by its rule before any p-value is looked at.",)
-    return Part("Same readings, other procedures", sentences if rows else (), columns, rows)
+    widths = (15, 20, 12, 21, 17, 15)
+    return Part("Same readings, other procedures", sentences if rows else (), columns, rows, widths=widths)
 
 
 def _other(analysis: Analysis, texts: PanelTexts, other: Test | NotApplicable) -> tuple[str, ...]:

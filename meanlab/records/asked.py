@@ -1,6 +1,7 @@
 """The question as it was asked, as rows of label and text; numbers as they were typed."""
 
 from collections.abc import Iterator
+from datetime import UTC, datetime
 from decimal import Decimal
 from math import isfinite
 
@@ -27,7 +28,7 @@ def question_rows(analysis: Analysis, written: Written) -> Iterator[tuple[str, s
         ("In the order of measurement", "yes" if question.run_order else "not stated"),
         ("Set after the readings were seen", ", ".join(AFTERTHOUGHT_NAMES.get(one, one) for one in question.set_after)),
         ("Look at this question", f"no. {question.look}" if question.look > 1 else ""),
-        *((f"Set: {part}", time) for part, time in written.set_times.items()),
+        *((f"Set: {part}", moment(time)) for part, time in written.set_times.items()),
     )
     return ((label, text) for label, text in rows if text)
 
@@ -39,6 +40,18 @@ def typed(number: Number, sign: str) -> str:
     ('0,050', '0,05')
     """
     return number.strip() if isinstance(number, str) else number_text(Decimal(str(number)), sign)
+
+
+def moment(time: str) -> str:
+    """Return a time (ISO 8601) in UTC to the second; a text that is none stays as it is.
+
+    >>> moment("2026-12-01T09:30:12.5+01:00")
+    '2026-12-01 08:30:12 UTC'
+    """
+    try:
+        return f"{datetime.fromisoformat(time).astimezone(UTC):%Y-%m-%d %H:%M:%S} UTC"
+    except ValueError:
+        return time
 
 
 def _known(question: Question, sign: str, unit: str) -> Iterator[tuple[str, str]]:

@@ -5,6 +5,7 @@ The same result gives the same bytes: the moment of writing is nowhere in the fi
 
 import re
 import zipfile
+from collections.abc import Sequence
 from datetime import UTC, datetime
 from io import BytesIO
 from typing import Any
@@ -14,7 +15,7 @@ from docx.document import Document
 from docx.enum.table import WD_TABLE_ALIGNMENT
 from docx.oxml import OxmlElement
 from docx.oxml.ns import qn
-from docx.shared import Mm, Pt, RGBColor
+from docx.shared import Emu, Mm, Pt, RGBColor
 from docx.text.paragraph import Paragraph
 
 from meanlab.core.results import Analysis
@@ -119,23 +120,40 @@ def _table(page: Document, part: Part) -> None:
     table = page.add_table(rows=len(rows), cols=len(rows[0]))
     table.alignment = WD_TABLE_ALIGNMENT.LEFT
     _lines_between(table)
+    widths = [Emu(int(WIDTH * share / 100)) for share in part.widths]
+    for one, width in zip(table.columns, widths, strict=True):
+        one.width = width
     for place, (row, texts) in enumerate(zip(table.rows, rows, strict=True)):
         properties = row._tr.get_or_add_trPr()
         properties.append(OxmlElement("w:cantSplit"))
         head = bool(part.columns) and place == 0
         if head:
             properties.append(OxmlElement("w:tblHeader"))
-        for column, (cell, text) in enumerate(zip(row.cells, texts, strict=True)):
+        cells = row.cells
+        for column, (cell, text) in enumerate(zip(cells, texts, strict=True)):
+            cell.width = widths[column]
             paragraph = cell.paragraphs[0]
             paragraph.paragraph_format.space_after = Pt(1)
             run = paragraph.add_run(printed(text))
             run.font.size, run.bold = SMALL, head or (not part.columns and column == 0)
+        if len(cells) > 2 and not any(texts[2:]):
+            _over_the_rest(cells)
     page.add_paragraph().paragraph_format.space_after = Pt(0)
 
 
+def _over_the_rest(cells: Sequence[Any]) -> None:
+    """Let the text of the second cell take the room of the empty ones after it."""
+    for cell in cells[2:]:
+        paragraph = cell.paragraphs[0]._p
+        paragraph.getparent().replace(paragraph, OxmlElement("w:p"))
+    whole = cells[1].merge(cells[-1])
+    for paragraph in whole.paragraphs[1:]:
+        paragraph._p.getparent().remove(paragraph._p)
+
+
 def _lines_between(table: Any) -> None:
-    """Rules between rows only; columns as wide as their text asks for."""
-    table.autofit = True
+    """Rules between rows only."""
+    table.autofit = False
     borders = OxmlElement("w:tblBorders")
     for side in ("top", "bottom", "insideH"):
         line = OxmlElement(f"w:{side}")
@@ -154,9 +172,15 @@ def _foot(page: Document, origin: str) -> None:
     paragraph = page.sections[0].footer.paragraphs[0]
     run = paragraph.add_run(printed(f"{origin} · page "))
     run.font.size = SMALL
-    field = OxmlElement("w:fldSimple")
-    field.set(qn("w:instr"), "PAGE")
-    paragraph._p.append(field)
+    for kind in ("begin", None, "end"):
+        run = paragraph.add_run()
+        run.font.size = SMALL
+        element = OxmlElement("w:fldChar" if kind else "w:instrText")
+        if kind:
+            element.set(qn("w:fldCharType"), kind)
+        else:
+            element.text = "PAGE"
+        run._r.append(element)
 
 
 def _describe(page: Document, analysis: Analysis, title: str, written: Written) -> None:
