@@ -10,9 +10,10 @@ from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.compound import Compound
 from meanlab.intake.page_tables import is_page
 from meanlab.intake.parts import DAMAGED, LOCKED, Parts
+from meanlab.intake.xls import is_readable
 from meanlab.intake.xml_workbooks import is_xml_workbook
 
-Workbook = Literal["xlsx", "xlsb", "ods", "xls", "xml", "page"]
+Workbook = Literal["xlsx", "xlsb", "ods", "xls", "early xls", "xml", "page"]
 
 _ZIP = b"PK\x03\x04"
 _EMPTY_ZIP = b"PK\x05\x06"
@@ -124,13 +125,14 @@ def _open_document_kind(parts: Parts) -> Workbook:
 
 
 def _compound_kind(data: bytes) -> Workbook:
-    names = Compound(data).names()
+    book = Compound(data)
+    names = book.names()
     if "EncryptedPackage" in names:
         raise IntakeComplaint(LOCKED)
     if "WordDocument" in names:
         raise IntakeComplaint(f"The file is a text document, no workbook. {_SAVE_AS}")
     if "Workbook" in names or "Book" in names:
-        return "xls"
+        return "xls" if "Workbook" in names and is_readable(book.stream("Workbook")) else "early xls"
     raise IntakeComplaint(f"The file is an office file of another kind; no workbook is in it. {_SAVE_AS}")
 
 

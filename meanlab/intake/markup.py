@@ -47,7 +47,9 @@ def walk(chunks: Iterable[bytes], walker: Walker) -> None:
         for chunk in chunks:
             parser.Parse(chunk, False)
         parser.Parse(b"", True)
-    except (expat.ExpatError, UnicodeError, LookupError) as error:
+    except IntakeComplaint:
+        raise
+    except (expat.ExpatError, ValueError, LookupError) as error:
         raise IntakeComplaint(DAMAGED) from error
 
 

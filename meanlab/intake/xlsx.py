@@ -32,10 +32,10 @@ def read_xlsx(parts: Parts) -> tuple[Sheet, ...]:
     relations = _relations(parts, book_name)
     by_kind = dict(relations.values())
     texts, styles = _Texts(), Styles()
-    if by_kind.get("sharedStrings", "") in parts:
-        walk(parts.chunks(by_kind["sharedStrings"]), texts)
-    if by_kind.get("styles", "") in parts:
-        walk(parts.chunks(by_kind["styles"]), _StyleSheet(styles))
+    walker: Walker
+    for kind, walker in (("sharedStrings", texts), ("styles", _StyleSheet(styles))):
+        if kind in by_kind and by_kind[kind] in parts:
+            walk(parts.chunks(by_kind[kind]), walker)
     styles.since_1904 = book.since_1904
     room = Room()
     sheets = []

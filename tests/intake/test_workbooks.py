@@ -378,14 +378,14 @@ def test_a_workbook_before_1997_and_a_binary_one_are_read_with_a_word_on_what_th
     number = biff(0x203, struct.pack("<3Hd", 2, 1, 0, 5.02))
     (old,) = sheets_of(compound({"Book": xls_stream(number, version=0x500)}))
     assert texts(old) == [[], [], ["", "5.02"]]
-    (binary,) = sheets_of(xlsb([5.02, 5.04, 4.98]))
-    assert column(binary, 0) == ["5.02", "5.04", "4.98"]
+    (binary,) = sheets_of(xlsb([5.02, 5.04, 4.98], first_row=2, column=1))
+    assert texts(binary) == [["0.5"], [], ["", "5.02"], ["", "5.04"], ["", "4.98"]]
     assert ".xlsb" in binary.remarks[0]
     assert old.remarks == binary.remarks
 
 
 def test_an_open_document_workbook_shows_its_zeros_in_any_language() -> None:
-    """The text beside the stored number tells the zeros, whichever decimal sign and thousands sign it is written with."""
+    """The text beside the number tells the zeros, whichever decimal and thousands sign it is written with."""
 
     def cell(value: str, shown: str, kind: str = "float") -> str:
         return (
