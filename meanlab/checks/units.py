@@ -7,13 +7,14 @@ from meanlab.core.results import Check
 from meanlab.wording.numbers import plain_words
 
 _LITRE = re.compile(r"(?<![A-Za-zµ])([mµndckh]?)l(?![A-Za-z])")
+_OF_ONE = re.compile(r"\b(of|on|from) (one|the same) (preparation|portion)\b")
 _SAME = str.maketrans({"μ": "µ", "⋅": "·", "∙": "·", "−": "-", "–": "-"})
 
 
 def units_check(facts: Facts) -> Check:
     """Return what is known about the units; "stop" where target and readings are in different units."""
     of_readings, of_target = plain_words(facts.unit), plain_words(facts.question.unit)
-    if of_readings and of_target and _spelling(of_readings) != _spelling(of_target):
+    if of_readings and of_target and not same_unit(of_readings, of_target):
         said = (
             f'The readings are in "{of_readings}" and the target in "{of_target}": bring both to one unit before '
             "anything is compared."
@@ -28,16 +29,33 @@ def units_check(facts: Facts) -> Check:
             f"readings raise {facts.percent(0.329)} false alarms."
         )
         return Check("units", "note", None, None, said)
-    said = (
-        f"Each {facts.noun} is one of: {described}; whether s is a repeatability or an intermediate precision depends "
-        "on what was changed between them."
-    )
+    if _OF_ONE.search(described) and not facts.nested:
+        said = (
+            f"Stated of the {facts.noun}s: {described}; repeats of one preparation are no independent units, so the "
+            "statement speaks of this one preparation and not of the material."
+        )
+        return Check("units", "caution", None, None, said)
+    said = f"Stated of the {facts.noun}s: {described}."
+    if "conditions" not in described:
+        said = (
+            f"Stated of the {facts.noun}s: {described}; whether s is a repeatability or an intermediate precision "
+            "depends on what was changed between them."
+        )
     if unequal:
         said = (
             said.removesuffix(".")
             + "; preparations with more readings weigh no more than the others, which is cautious."
         )
     return Check("units", "note" if unequal else "clear", None, None, said)
+
+
+def same_unit(one: str, other: str) -> bool:
+    """Return whether two texts write the same unit, whatever its spelling.
+
+    >>> same_unit("mg / l", "mg/L"), same_unit("mg/L", "µg/L")
+    (True, False)
+    """
+    return _spelling(plain_words(one)) == _spelling(plain_words(other))
 
 
 def _spelling(unit: str) -> str:

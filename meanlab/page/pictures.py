@@ -3,6 +3,7 @@
 from functools import lru_cache
 from typing import Any
 
+import pandas as pd  # noqa: F401  # whole before the first picture: plotly took it half imported by another thread
 import streamlit as st
 
 from meanlab import pictures as described

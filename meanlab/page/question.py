@@ -2,8 +2,10 @@
 
 import streamlit as st
 
+from meanlab.checks.units import same_unit
 from meanlab.core.question import TARGET_KINDS
 from meanlab.page import asked, readings, state
+from meanlab.page.guard import say
 from meanlab.wording.names import ALTERNATIVE_QUESTIONS
 
 LEVELS = ("10 %", "5 %", "2.5 %", "1 %", "0.1 %")
@@ -33,6 +35,8 @@ def draw() -> None:
     left, right = st.columns([3, 2], gap="small")
     left.text_input("Target", key="target", placeholder="e.g. 5.000")
     right.text_input("Unit", key="unit", placeholder=unit or "e.g. mg/L")
+    if unit and state.value("unit").strip() and not same_unit(unit, state.value("unit")):
+        say(f'The heading gives the readings in "{unit}": write the target in that unit; nothing is converted.')
     left, right = st.columns([3, 2], gap="small")
     left.selectbox("The target is a", TARGET_KINDS, key="target_kind", on_change=_side_follows_kind)
     right.selectbox(

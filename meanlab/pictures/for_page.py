@@ -4,7 +4,6 @@ from collections.abc import Iterable, Mapping
 from types import MappingProxyType
 from typing import Any
 
-import pandas as pd  # noqa: F401  # plotly looks at it unfinished where another visitor's thread is just importing it
 import plotly.graph_objects as go
 
 from meanlab.pictures.drawing import Drawing, Fill, Mark, Stroke, Words

@@ -154,6 +154,8 @@ def test_what_a_reading_is_a_replicate_of_is_asked():
     assert "32.9 %" in check_of("units", EIGHT).message
     said = check_of("units", EIGHT, units_are="titrations of one solution")
     assert (said.outcome, "titrations of one solution" in said.message) == ("clear", True)
+    repeats = check_of("units", EIGHT, units_are="each an injection of one preparation")
+    assert (repeats.outcome, "not of the material" in repeats.message) == ("caution", True)
     unequal = check_of("units", EIGHT, units_are="days", places=((0, 1), *((i,) for i in range(2, 9))))
     assert unequal.outcome == "note"
 
