@@ -20,7 +20,7 @@ from meanlab.intake.words import FLAGS
 
 _SURE_COMMA = re.compile(r",(?!\d{3}$)|^[+-]?(?:0|\d{4,}),", re.ASCII | re.MULTILINE)
 _SURE_POINT = re.compile(r"\.(?!\d{3}$)|^[+-]?(?:0|\d{4,})\.", re.ASCII | re.MULTILINE)
-_OPEN_UNIT = re.compile(r"[^\W\d_][^\s()\d]{0,11}")
+_OPEN_UNIT = re.compile(r"[^\W\d_][^\s()\d]{0,11}|[€£¥¢]")
 _LOOKALIKE = {"O": "0", "o": "0", "l": "1", "I": "1", "S": "5", "B": "8"}
 _CODES = frozenset({"-9", "-99", "-999", "-9999", "-99999", "-999.9", "-999.99", "9999", "99999", "-999.0", "-9999.0"})
 
@@ -100,7 +100,7 @@ def _read_any(given: Given) -> Read:
         key: _parsed(*(key if given.kinds is not None else (key, "text"))) for key in dict.fromkeys(keys)
     }
     counts = Counter(keys)
-    known = _settle_suffixes(known, counts)
+    known = _settle_suffixes(known, counts, given.heading_unit)
     found = Read()
     found.sign = _sign(given, known)
     numbers = {key: _number_of(one, key, found.sign, given) for key, one in known.items()}
@@ -127,14 +127,18 @@ def _parsed(text: str, kind: str) -> Parsed:
     return parse(one_spelling(text).strip(" \t\xa0"))
 
 
-def _settle_suffixes(known: dict[Hashable, Parsed], counts: Counter[Any]) -> dict[Hashable, Parsed]:
+def _settle_suffixes(
+    known: dict[Hashable, Parsed], counts: Counter[Any], heading_unit: str | None
+) -> dict[Hashable, Parsed]:
     """A letter or word behind every reading is a unit; behind some of them it is a mark, or a slip of the keyboard."""
     numeric = [one for one in known.values() if one.numeral]
     total = sum(counts[key] for key, one in known.items() if one.numeral)
     suffixes = {one.remark if one.sort == "flag" else one.unit for one in numeric}
+    word = next(iter(suffixes), "")
+    if heading_unit and len(word) == 1 and word.isalpha() and not same_unit(word, heading_unit):
+        total = 0
     if len(suffixes) == 1 and total > 1:
-        word = suffixes.pop()
-        if word and not is_unit(word) and word.casefold() not in FLAGS and _OPEN_UNIT.fullmatch(word):
+        if word and not heading_unit and not is_unit(word) and word.casefold() not in FLAGS and _OPEN_UNIT.fullmatch(word):
             return {
                 key: replace(one, unit=word, remark="", sort="open unit") if one.numeral else one
                 for key, one in known.items()

@@ -15,6 +15,7 @@ def doubts_about(picked: Picked, given: Given, found: Read) -> tuple[list[str], 
     block = picked.block
     warnings = [*block.table.remarks, *picked.warnings, *found.warnings]
     warnings.extend(_left_out_rows(block))
+    warnings.extend(_odd_heading(picked))
     warnings.extend(_odd_lengths(picked))
     warnings.extend(_hidden(picked))
     if len(found.numbers) <= MOST_ROWS:
@@ -23,9 +24,16 @@ def doubts_about(picked: Picked, given: Given, found: Read) -> tuple[list[str], 
     notes = [*block.table.notes, *picked.notes, *found.notes]
     first = block.heading if block.heading is not None else block.data[0]
     above = sum(any(cells) for cells in block.table.rows[: min(first, 2000)])
-    if above:
-        notes.append(f"{above} {'line' if above == 1 else 'lines'} above the heading {'was' if above == 1 else 'were'} not read.")
+    if above and not block.table.turned:
+        notes.append(f"Above the heading {_counted(above, 'line was', 'lines were')} not read.")
+    if block.table.labels:
+        count = len(set(block.table.labels.values()) - {""})
+        notes.append(f"{count} lines name preparations: readings of one preparation are no independent units.")
     return list(dict.fromkeys(warnings)), list(dict.fromkeys(notes))
+
+
+def _counted(count: int, one: str, many: str) -> str:
+    return f"{count} {one if count == 1 else many}"
 
 
 def _left_out_rows(block: Block) -> list[str]:
@@ -40,6 +48,16 @@ def _left_out_rows(block: Block) -> list[str]:
         where = ", ".join(table.place(row, 0) for row in block.again[:5])
         found.append(f"The heading comes again at {where}; the rows below it were read on as one column.")
     return found
+
+
+def _odd_heading(picked: Picked) -> list[str]:
+    """A heading that begins like a number could be a reading that was meant."""
+    block, column = picked.block, picked.columns[0]
+    text = block.heading_text(column)
+    if len(picked.columns) > 1 or block.heading is None or not text[:1].isdigit() or block.table.separator:
+        return []
+    place = block.table.place(block.heading, column)
+    return [f'{place[0].upper()}{place[1:]}: "{shown(text)}" was taken for the heading, not for a reading.']
 
 
 def _odd_lengths(picked: Picked) -> list[str]:
@@ -109,12 +127,3 @@ def _last_is_mean(picked: Picked, given: Given, found: Read) -> list[str]:
 
 def _places(number: str) -> int:
     return len(number.partition(".")[2]) if "E" not in number else 0
-
-
-def empty_label(block: Block, rows: Sequence[int], column: int) -> bool:
-    """Tell whether the last row alone has nothing in the columns before the readings."""
-    if len(rows) < 4 or column == 0:
-        return False
-    table = block.table
-    before = [any(table.text(row, left) for left in range(column)) for row in (*rows[:20], rows[-1])]
-    return all(before[:-1]) and not before[-1]

@@ -27,6 +27,8 @@ _READING = re.compile(rf"(?P<sign>[+-](?P<gap>\s*))?(?P<numeral>{NUMERAL})(?:{PO
 _LOST_POWER = re.compile(rf"[+-]?(?:{NUMERAL})\s?[x×*·⋅]\s?10\d{{1,2}}(?!\d)", re.ASCII)
 _ERROR_CODE = re.compile(r"err(?:or)?[ -]?\d{0,4}|e\d{2,3}", re.IGNORECASE | re.ASCII)
 _RANGE = re.compile(rf"[+-]?(?:{NUMERAL})\s*(?:-|\.\.+|…|\bto\b|\bbis\b)\s*(?:{NUMERAL})(?:\s?\D*)", re.ASCII)
+_IN_BRACKETS = re.compile(rf"\([+-]?(?:{NUMERAL})\)", re.ASCII)
+_UNIT_IN_BRACKETS = re.compile(r"[(\[]([^()\[\]]{2,})[)\]]")
 _ABOUT = re.compile(r"(?:~|≈|≅|∼|ca\.?(?=[\s\d])|circa\b|about\b|approx(?:\.|imately)?(?=\s)|around\b|etwa\b|roughly\b)\s*", re.IGNORECASE)
 _QUOTES = "'\"“”„‘’‚«»"
 _BARE_POWER = re.compile(r"(?P<sign>[+-])?10\^(?P<exponent>[+-]?\d{1,4})", re.ASCII)
@@ -73,7 +75,8 @@ class Parsed:
     unit      as written
     remark    what stands behind the number and unit
     sort      what kind of remark or why not read: "uncertainty", "flag", "trailing minus", "gap", "word", "unclear",
-              "error", "span", "lost power", "date", "time", "formula", "width", "infinite", "two numbers", "text"
+              "error", "span", "lost power",
+              "brackets", "date", "time", "formula", "width", "infinite", "two numbers", "text"
     meant     what was probably meant, for the complaint
     """
 
@@ -155,6 +158,8 @@ def _about(text: str) -> Parsed | None:
     number = _reading(text[found.end() :]) if found else None
     if found and number is not None and number.kind == "reading" and number.sort in ("", "uncertainty"):
         return replace(number, remark=found[0].strip(), sort="flag")
+    if _IN_BRACKETS.fullmatch(text):
+        return Parsed("unread", sort="brackets")
     return Parsed("unread", sort="span") if _RANGE.fullmatch(text) and not _DATE.fullmatch(text) else None
 
 
@@ -197,6 +202,9 @@ def _with_rest(rest: str, as_reading: Callable[..., Parsed], signed: bool) -> Pa
     uncertainty = _UNCERTAINTY.fullmatch(body)
     if uncertainty and (not uncertainty["unit"] or is_unit(uncertainty["unit"])):
         return as_reading(uncertainty["unit"], body, "uncertainty")
+    bracketed = _UNIT_IN_BRACKETS.fullmatch(body)
+    if bracketed and is_unit(bracketed[1].strip()):
+        return as_reading(bracketed[1].strip())
     if is_unit(body) and not (rest[0] != " " and body.casefold() in FLAGS and len(body) == 1 and body not in "gLlVAKNCs"):
         return as_reading(body)
     return _with_unit_and_remark(rest, body, as_reading)

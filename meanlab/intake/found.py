@@ -77,7 +77,8 @@ class Intake:
     warnings      what the technician must see; ``notes`` what is neutral
     refused       nothing may be computed, ``reason`` says why; ``needs_choice`` with ``choices`` where it must be asked
     computed      some numbers are computed spreadsheet numbers that say nothing of their resolution
-    preparations  label of the preparation of each entry, None where none are named
+    preparations  label of the preparation of each entry, None where none are named; they are proposed only and count
+                  where ``preparations_chosen`` says so
     """
 
     texts: Sequence[str] = ()
@@ -95,6 +96,7 @@ class Intake:
     choices: tuple[Mapping[str, Any], ...] = ()
     computed: bool = False
     preparations: tuple[str, ...] | None = None
+    preparations_chosen: bool = False
     place_of: Callable[[int], str] | None = field(default=None, repr=False, compare=False)
 
     @property
@@ -133,8 +135,7 @@ class Intake:
                 i,
                 "below" if one.kind == "below" else "above",
                 exact(one.number) if one.number else None,
-                None if self.preparations is None else self.preparations[i],
-                self.texts[i],
+                typed=self.texts[i],
             )
             for i, one in sorted(self.special.items())
             if one.kind in ("below", "above")
@@ -171,14 +172,15 @@ class Intake:
     ) -> ReadingSet:
         """Return the readings for an analysis.
 
-        ``left_out`` is {index of the entry: cause}; ``preparations`` labels each entry, or each reading.
+        ``left_out`` is {index of the entry: cause}; ``preparations`` labels each entry, or each reading; without them
+        the labels of the preparation column that was chosen count.
         Raises IntakeComplaint where the intake was refused or a choice is open, ReadingsComplaint as ReadingSet does.
         """
         if self.refused:
             raise IntakeComplaint(self.reason, "readings")
         if self.needs_choice:
-            raise IntakeComplaint("Several columns could be meant: choose one.", "readings")
-        labels = preparations
+            raise IntakeComplaint(self.reason or "Several columns could be meant: choose one.", "readings")
+        labels = self.preparations if preparations is None and self.preparations_chosen else preparations
         if labels is not None and len(labels) == len(self.texts):
             taken = sorted([*self.positions, *(one.index for one in self.censored)])
             labels = [labels[i] for i in taken]

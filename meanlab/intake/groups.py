@@ -4,14 +4,11 @@ import re
 from dataclasses import replace
 
 from meanlab.intake.lines import Lines
+from meanlab.intake.roles import PREPARATIONS
 from meanlab.intake.table import sort_of_text
 from meanlab.intake.words import plain_word
 
 _RUNNING = re.compile(r"(?P<stem>[^\W\d_][^\d:]*?)[\s_.#-]*(?P<mark>\d{1,3}|[A-Za-z]|[IVX]{1,4})\s*:?")
-_STEMS = frozenset(
-    "prep preparation preparationno vial flask bottle aliquot digest digestion extract extraction weighing weighingno "
-    "portion testportion ansatz einwaage aufschluss aufarbeitung probenvorbereitung subsample".split()
-)
 MOST_LINES = 20_000
 
 
@@ -22,18 +19,19 @@ def preparation_of(text: str) -> str:
     ('Prep A', 'Vial 2', '')
     """
     found = _RUNNING.fullmatch(text.strip())
-    return text.strip().rstrip(": ") if found and plain_word(found["stem"]) in _STEMS else ""
+    return text.strip().rstrip(": ") if found and plain_word(found["stem"]) in PREPARATIONS else ""
 
 
 def without_group_lines(lines: Lines) -> tuple[Lines, dict[int, str] | None]:
     """Return the lines without those that name a preparation, and {line number: label} of the lines below them."""
     if len(lines.texts) > MOST_LINES:
         return lines, None
-    labels = [preparation_of(line) if line.strip() and sort_of_text(line.strip()) == "text" else "" for line in lines.texts]
+    bare = [line.strip() for line in lines.texts]
+    labels = [preparation_of(line) if line and sort_of_text(line) == "text" else "" for line in bare]
     if len({label for label in labels if label}) < 2:
         return lines, None
     first = next(place for place, label in enumerate(labels) if label)
-    if any(sort_of_text(line.strip()) in ("number", "limit") for line in lines.texts[:first]):
+    if any(sort_of_text(line) in ("number", "limit") for line in bare[:first]):
         return lines, None
     named: dict[int, str] = {}
     current = ""

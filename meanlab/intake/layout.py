@@ -11,6 +11,7 @@ from meanlab.intake.groups import without_group_lines
 from meanlab.intake.labels import Labelled, common_style, take_apart
 from meanlab.intake.lines import Lines, is_entry, lines_of, sample, split_lines
 from meanlab.intake.long_column import long_column
+from meanlab.intake.roles import is_label_word
 from meanlab.intake.separators import GAPS, PAIRS, separator_of
 from meanlab.intake.table import Table
 
@@ -117,6 +118,8 @@ def _one_a_line(lines: Lines) -> Table:
                 rows[row] = [way.label, way.entry] if way.sort == "summary" else [way.entry]
                 names |= {way.label} if way.sort == "label" else set()
     name = names.pop() if len(names) == 1 else ""
+    if style == "label" and rows and rows[0] and len(words := rows[0][0].split()) > 1 and is_label_word(words[0]):
+        rows[0] = [" ".join(words[1:])]  # "Sample Nitrate" over "QC-1 5.02"
     notes = [*lines.notes, *([_STYLES[style]] if style and not name else [])]
     return Table(rows, lines.numbers, None, "", tuple(lines.remarks), tuple(notes), name, preparations)
 

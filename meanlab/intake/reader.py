@@ -1,20 +1,25 @@
 """The door of the intake: a pasted text or the bytes of a file in, an Intake out."""
 
 from collections.abc import Callable, Mapping, Sequence
+from dataclasses import replace
 from typing import Any
 
 from meanlab.core.complaints import IntakeComplaint
-from meanlab.intake.choosing import NothingToRead, Picked, pick
+from meanlab.intake.characters import shown
+from meanlab.intake.choosing import pick
 from meanlab.intake.column import Given, Read, read_column
 from meanlab.intake.doubts import doubts_about
 from meanlab.intake.found import Column, Intake
+from meanlab.intake.picked import NothingToRead, Picked
 from meanlab.intake.separators import ChoiceNeeded
 from meanlab.intake.long_column import OneColumn
 from meanlab.intake.numerals import Sign, decimal_sign
 from meanlab.intake.roles import listed, roles_of, sample_of
 from meanlab.intake.sources import tables_of
 from meanlab.intake.table import Block, Table, blocks_of, parsed
+from meanlab.intake.words import is_summary
 
+FEW_UNREAD = 3
 _KEYS = frozenset(
     ("sheet", "column", "column_index", "columns", "where", "qualifier_column", "decimal", "preparation")
 )
@@ -96,7 +101,7 @@ def _one_sheet(with_blocks: Sequence[tuple[Table, list[Block]]], selection: dict
     """The only visible sheet with something to read, or a question."""
     visible = [pair for pair in with_blocks if not (pair[0].sheet and pair[0].sheet.hidden)] or list(with_blocks)
     found: list[Picked] = []
-    choices: list[Mapping[str, Any]] = []
+    choices: list[dict[str, Any]] = []
     for _, blocks in visible:
         try:
             picked = pick(blocks, selection)
@@ -120,21 +125,24 @@ def _one_sheet(with_blocks: Sequence[tuple[Table, list[Block]]], selection: dict
 def _nothing(tables: Sequence[Table]) -> Intake:
     """Say why nothing at all could be read: the first entries and what is wrong with them."""
     for table in tables:
+        figures = [cells for cells in table.rows[:200] if len(cells) > 1 and is_summary(cells[0])]
+        if figures:
+            named = shown(" ".join(figures[0]))
+            return Intake(refused=True, reason=f'Only computed figures were found ("{named}"), no readings.')
         places = [(row, column) for row, cells in enumerate(table.rows[:200]) for column, text in enumerate(cells) if text]
         if places:
-            found = _entries(table, places[:50], Given)
+            found = _entries(table, places[:50])
             read_back = read_column(found)
             first = next(iter([*(table.sheet.remarks if table.sheet else ()), *read_back.warnings]), "")
             return Intake(refused=True, reason=f"No reading was found. {first}".strip())
     return Intake(refused=True, reason="There is nothing to read: paste the readings, one a line, or open a file.")
 
 
-def _entries(table: Table, places: Sequence[tuple[int, int]], kind: Callable[..., Given], **more: Any) -> Given:
-    return kind(
+def _entries(table: Table, places: Sequence[tuple[int, int]]) -> Given:
+    return Given(
         [table.text(row, column) for row, column in places],
         lambda i: table.place(*places[i]),
         None if table.sheet is None else [table.kind(row, column) for row, column in places],
-        **more,
     )
 
 
@@ -146,15 +154,13 @@ def _column(picked: Picked, selection: dict[str, Any]) -> Intake:
         hint = _hint(picked)
         if hint is None:
             raise _ask_for_sign(picked, given, found)
-        from dataclasses import replace
-
         given = replace(given, hint=hint)
         found = read_column(given)
     return _intake(picked, given, found)
 
 
 def _given(picked: Picked, decimal: Sign | None) -> Given:
-    table, block = picked.block.table, picked.block
+    table = picked.block.table
     if len(picked.columns) == 1 and table.sheet is None:
         column, rows = picked.columns[0], picked.rows
         texts = _texts(table, rows, column)
@@ -171,7 +177,6 @@ def _given(picked: Picked, decimal: Sign | None) -> Given:
     qualifiers = None
     if picked.qualifier is not None:
         qualifiers = [table.text(row, picked.qualifier) for row in picked.rows for _ in picked.columns]
-    del block
     return Given(texts, place_of, kinds, computed, qualifiers, decimal, None, picked.unit)
 
 
@@ -221,6 +226,10 @@ def _intake(picked: Picked, given: Given, found: Read) -> Intake:
     if not found.numbers and not censored:
         first = next(iter(found.warnings), "Every entry is marked as missing.")
         return Intake(refused=True, reason=f"No reading was found. {first}")
+    unread = sum(one.kind == "unread" for one in found.special.values())
+    if unread > FEW_UNREAD and unread * 3 > 2 * len(given.texts):
+        first = next(iter(found.warnings), "")
+        return Intake(refused=True, reason=f"{unread} of {len(given.texts)} entries are no readings. {first}")
     return Intake(
         texts=given.texts,
         special=found.special,
@@ -233,12 +242,15 @@ def _intake(picked: Picked, given: Given, found: Read) -> Intake:
         notes=tuple(notes),
         computed=found.computed,
         preparations=_preparations(picked),
+        preparations_chosen=picked.is_chosen,
         place_of=given.place_of,
     )
 
 
 def _preparations(picked: Picked) -> tuple[str, ...] | None:
-    if picked.preparation is None:
-        return None
     table = picked.block.table
-    return tuple(table.text(row, picked.preparation) for row in picked.rows for _ in picked.columns)
+    if picked.preparation is not None:
+        return tuple(table.text(row, picked.preparation) for row in picked.rows for _ in picked.columns)
+    if table.labels is None or table.lines is None:
+        return None
+    return tuple(table.labels[table.lines[row]] for row in picked.rows for _ in picked.columns)

@@ -26,6 +26,10 @@ _TIME = frozenset(
     "time date datetime timestamp zeit datum uhrzeit elapsed elapsedtime runtime start startzeit end clock clocktime "
     "acquired measuredat measuredon day tag stunde hour dateandtime datetimeutc timeutc fecha hora heure jour".split()
 )
+PREPARATIONS = frozenset(
+    "prep preparation preparationno prepno prepid vial flask bottle aliquot digest digestion extract extraction weighing "
+    "weighingno portion testportion ansatz einwaage aufschluss aufarbeitung probenvorbereitung subsample".split()
+)
 _UNIT = frozenset("unit units einheit einheiten unité unidad uom".split())
 _OTHER = frozenset(
     "operator analyst user remark remarks comment comments note notes bemerkung bearbeiter instrument method gerät "
@@ -83,6 +87,8 @@ def _role_of_filled(block: Block, column: int, texts: list[str], sorts: Counter[
         return "unit"
     if sorts["stamp"] * 2 >= filled or (word in _TIME and heading.text):
         return "time"
+    if word in PREPARATIONS and 1 < len(marks) < len(texts):
+        return "preparation"
     numeric = sorts["number"] + sorts["limit"]
     if not numeric or (numeric + sorts["missing"] + sorts["word"]) * 2 < filled:
         return "analyte" if word in _ANALYTE else "label" if word in _LABEL else "text"
@@ -98,6 +104,15 @@ def _role_of_numbers(word: str, texts: list[str], headed: bool) -> str:
     if whole and is_count(texts) and (len(texts) > 2 or not headed):
         return "counter"
     return "summary" if word and is_summary(word) else "readings"
+
+
+def is_label_word(word: str) -> bool:
+    """Tell whether a heading names labels or counters, not readings: "Sample", "Run".
+
+    >>> is_label_word("Sample"), is_label_word("Nitrate")
+    (True, False)
+    """
+    return plain_word(word) in _LABEL | _COUNTER | _TIME | PREPARATIONS
 
 
 def is_count(texts: Sequence[str]) -> bool:
@@ -116,7 +131,8 @@ def listed(block: Block, roles: Sequence[Role], rows: Sequence[int] | None = Non
             continue
         heading = block.heading_at(index)
         first = [text for row in rows[:50] if (text := block.table.text(row, index))][:3]
-        count = role.numbers if len(rows) <= FIRST_ROWS else -(-role.numbers * len(rows) // max(1, len(sample_of(rows, len(roles)))))
+        looked_at = max(1, len(sample_of(rows, len(roles))))
+        count = role.numbers if looked_at >= len(rows) else round(role.numbers / looked_at * len(rows))
         found.append(
             Column(
                 block.table.name,

@@ -272,7 +272,8 @@ def _begins(
         return True
     if len(headed) > 1:
         return blank_before or bool((columns & headed) - numeric)
-    return blank_before and heading_of(heading[min(headed)]).unit is not None and not table.separator
+    is_quantity = heading_of(heading[min(headed)]).unit is not None or bool(starts[-1][0])
+    return blank_before and is_quantity and not table.separator
 
 
 def _is_words(sorts: list[str]) -> bool:

@@ -18,7 +18,7 @@ _PREFIXED = {
 }
 _ALONE = (
     "% ‰ ‱ \" ppm ppb ppt ppmv ppbv ppmw °C °F °K °dH °fH °e °Bx °Brix °P °Bé °Z ° ′ ″ °Oe °SR Brix "
-    "min h d wk yr mo a hr hrs sec NTU FNU FTU FAU FBU JTU EBC SRM CFU cfu KBE KbE KBE MPN PFU pfu GE copies cells "
+    "min h d wk yr mo hr hrs sec NTU FNU FTU FAU FBU JTU EBC SRM CFU cfu KBE KbE KBE MPN PFU pfu GE copies cells "
     "IU U U.I. I.U. IE AU mAU RU RFU RLU LU FU Ct Cq cts counts count rpm min⁻¹ RPM G xg px dpi pH pX dB dBA "
     "mmHg inHg mmH2O cmH2O atm at psi psig psia in ft yd mil oz lb lbs gal HV HB HRC HRB HK ShA ShD Shore cP cSt mPas "
     "TCU Hazen APHA PCU Pt-Co mgPt mgPt/L PSU psu S.U. SU dtex den tex gsm ha Å amu kDa Da MPa log log10 lg "

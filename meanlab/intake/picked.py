@@ -1,0 +1,32 @@
+"""The cells that are to be read, in reading order, with what goes with them."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+
+from meanlab.core.complaints import IntakeComplaint
+from meanlab.intake.table import Block
+
+
+class NothingToRead(IntakeComplaint):
+    """No column of the table holds a reading."""
+
+
+@dataclass
+class Picked:
+    """Rows and columns of a block that hold the readings.
+
+    name, unit   as the headings give them
+    qualifier    column that holds "<" and ">", None where there is none
+    preparation  column that holds the labels of the preparations; ``is_chosen`` where it was chosen, not only found
+    """
+
+    block: Block
+    rows: Sequence[int]
+    columns: list[int]
+    name: str | None = None
+    unit: str | None = None
+    qualifier: int | None = None
+    preparation: int | None = None
+    is_chosen: bool = False
+    warnings: list[str] = field(default_factory=list)
+    notes: list[str] = field(default_factory=list)
