@@ -1,8 +1,12 @@
 """An interval as a bar: closed ends with a crossbar, an end without bound as an arrow."""
 
+from collections.abc import Mapping
+from types import MappingProxyType
+
 from meanlab.pictures.axis import Scale
 from meanlab.pictures.drawing import Drawing, Mark, line
 
+BOUNDS: Mapping[str, str] = MappingProxyType({"greater": "lower bound", "less": "upper bound"})
 NO_BOUND = "no bound on this side"
 
 

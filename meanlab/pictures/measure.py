@@ -1,6 +1,6 @@
 """How much room a text takes, and where a label fits: an upper estimate that holds for the page's and the paper's font.
 
-The widths are the advances of DejaVu Sans (the font of the paper renderer) in em, rounded up to 0.05; the page's font
+The widths are the advances of DejaVu Sans (the font of the paper renderer) in em, rounded up to 0.025; the page's font
 is narrower. tests/pictures compares them with what matplotlib draws.
 """
 
@@ -12,24 +12,37 @@ from types import MappingProxyType
 
 _SETS = {
     0.25: "′",
-    0.3: "'IJijl",
-    0.35: " ,./:;\\|·",
-    0.4: "()-[]ft″",
-    0.45: "!r⁰¹²³⁴⁵⁶⁷⁸⁹₀₁₂₃₄₅₆₇₈₉",
-    0.5: '"*_`°–',
-    0.55: "?csz⁺⁻",
-    0.6: "FLkvxyν",
-    0.65: "$0123456789EPSTYabdeghnopquσμµßäöüéèáàíóú{}",
-    0.7: "ABCKRVXZα",
-    0.75: "NUÄÜ",
-    0.85: "&DGHOQÖ#+<=>^w~±−≤≥×∞÷",
-    0.9: "M",
+    0.275: "'",
+    0.3: "IJijlí",
+    0.325: " \u00a0,.·",
+    0.35: "/:;\\|",
+    0.375: "-f″",
+    0.4: "()[]t",
+    0.425: "!r⁰¹²³⁴⁵⁶⁷⁸⁹₀₁₂₃₄₅₆₇₈₉",
+    0.475: '"',
+    0.5: "*_`°–",
+    0.525: "sz",
+    0.55: "?c⁺⁻",
+    0.575: "Lν",
+    0.6: "Fkvxy",
+    0.625: "PTYaeoäöéèáàó",
+    0.65: "$0123456789ESbdghnpqu{}σμßµüú",
+    0.675: "Kα",
+    0.7: "ABCRVXZÄ",
+    0.75: "NUÜ",
+    0.775: "DGH",
+    0.8: "&OQÖ",
+    0.825: "w",
+    0.85: "#+<=>^~±−≤≥×∞÷",
+    0.875: "M",
+    0.975: "%m",
 }
 _WIDTHS: Mapping[str, float] = MappingProxyType({sign: width for width, signs in _SETS.items() for sign in signs})
 _OTHER = 1.0
 _WIDEST = 1.45
-_BOLDER = 1.27
+_BOLDER = 1.24
 LINE = 1.25
+BOTH_SIDES = ("=", "<")
 
 
 @dataclass(frozen=True)
@@ -64,7 +77,7 @@ def width_of(text: str, size: float, bold: bool = False) -> float:
     """Return an upper estimate of the width of a text in pixels.
 
     >>> width_of("t = 4.08", 10.0)
-    39.5
+    41.75
     """
     em = sum(_WIDTHS.get(sign) or _other(sign) for sign in text)
     return round(em * size * (_BOLDER if bold else 1.0), 6)
@@ -87,11 +100,13 @@ def box_of_words(text: str, x: float, y: float, align: str, size: float, bold: b
 def wrapped(text: str, width: float, size: float, bold: bool = False) -> tuple[str, ...]:
     """Return a text in lines no wider than ``width``; a word that is wider is broken.
 
+    "5 %", "± 0.05" and "p = 0.0018" stay on one line.
+
     >>> wrapped("the true mean exceeds the limit", 80.0, 10.0)
-    ('the true', 'mean exceeds', 'the limit')
+    ('the true mean', 'exceeds the', 'limit')
     """
     lines, current = [], ""
-    for word in text.split():
+    for word in _glued(text.split()):
         longer = f"{current} {word}" if current else word
         if width_of(longer, size, bold) <= width:
             current = longer
@@ -101,6 +116,18 @@ def wrapped(text: str, width: float, size: float, bold: bool = False) -> tuple[s
         *full, current = _broken(word, width, size, bold)
         lines += full
     return (*lines, current) if current or not lines else tuple(lines)
+
+
+def _glued(words: list[str]) -> list[str]:
+    """Return words, each with what must not be parted from it."""
+    glued: list[str] = []
+    for word in words:
+        before = glued[-1] if glued else ""
+        if before and (word.startswith("%") or word in BOTH_SIDES or before.split()[-1] in (*BOTH_SIDES, "±")):
+            glued[-1] = f"{before} {word}"
+        else:
+            glued.append(word)
+    return glued
 
 
 def _broken(word: str, width: float, size: float, bold: bool) -> list[str]:
@@ -123,7 +150,7 @@ def shortened(text: str, width: float, size: float) -> str:
     """Return a text that fits into a width, its end replaced by … where it does not.
 
     >>> shortened("a rather long name", 60.0, 10.0)
-    'a rathe…'
+    'a rather l…'
     """
     if width_of(text, size) <= width:
         return text

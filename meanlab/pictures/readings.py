@@ -7,7 +7,7 @@ from meanlab.core.results import Analysis
 from meanlab.pictures.axis import Scale, below
 from meanlab.pictures.drawing import WORDS, Align, Dash, Drawing, Mark, Stroke, Words, line, together
 from meanlab.pictures.entries import Entries, Entry, entries_of, thinned
-from meanlab.pictures.interval import interval_bar
+from meanlab.pictures.interval import BOUNDS, interval_bar
 from meanlab.pictures.measure import Box, shortened
 from meanlab.pictures.places import Obstacles
 from meanlab.wording.digits import estimate_of
@@ -64,7 +64,8 @@ def alt_of(analysis: Analysis) -> str:
     parts = [counted(summary.n_readings, "reading")]
     parts += [f"{summary.left_out} left out"] if summary.left_out else []
     parts += [f"{parameter_of(analysis)} {numbers.estimate}"] if numbers.estimate else []
-    parts += [f"{numbers.interval_level} interval {numbers.interval}"] if numbers.interval else []
+    noun_of = BOUNDS.get(analysis.question.alternative, "interval")
+    parts += [f"{numbers.interval_level} {noun_of} {numbers.interval}"] if numbers.interval else []
     return f"Readings on their scale: {', '.join(parts)}; {noun} {numbers.target}."
 
 
@@ -78,7 +79,7 @@ def title_of(analysis: Analysis, entries: Entries, width: float) -> str:
         what = "injections (ticks) and preparation means"
     if test is not None:
         level = level_text(test.interval.level, entries.sign)
-        what += f"; above: {parameter_of(analysis)} with {level} interval"
+        what += f"; above: {parameter_of(analysis)} with {level} {BOUNDS.get(test.alternative, 'interval')}"
     elif analysis.summary.mean is not None:
         what += "; above: mean"
     unit = shortened(entries.unit, width / 3, 12)

@@ -60,14 +60,14 @@ def sampling_distribution(
 
 
 def area_words(test: Test, law: NullLaw, region: Region, sign: str = ".") -> str:
-    """Return the probability of a rejection region in words: "2.5 % beyond 2.20", "1.07 %: 8 or more"."""
+    """Return the probability of a rejection region in words: "2.5 % beyond 2.20", "1.07 % at ≥ 8"."""
     percent = significant(100 * region.area, 3, sign)
     if sign in percent and "×" not in percent:
         percent = percent.rstrip("0").removesuffix(sign)
     about = "about " if law.approximate else ""
     if test.procedure in CURVED:
         return f"{about}{percent} % beyond {statistic_number(region.bound, sign)}"
-    return f"{about}{percent} %: {rank_number(region.bound, sign)} or {'more' if region.upper else 'less'}"
+    return f"{about}{percent} % at {'≥' if region.upper else '≤'} {rank_number(region.bound, sign)}"
 
 
 def alt_of(test: Test, law: NullLaw, noun: str, sign: str) -> str:
@@ -208,5 +208,8 @@ def _beside(text: str, region: Region, frame: _Frame, obstacles: Obstacles, heig
         yield Words(bound, y, text)
         for part in range(1, 6):
             yield Words(bound - 20 * part * step, y, text, outwards)
-    yield Words(edge, STRIP / 2, text, inwards)
-    yield Words(frame.width - edge, STRIP / 2, text, outwards)
+    middle = frame.width / 2
+    for y in (*heights, STRIP / 2):
+        for part in range(41):
+            yield Words(edge + (middle - edge) * part / 40, y, text, inwards)
+            yield Words(edge + (middle - edge) * part / 40, y, text, outwards)

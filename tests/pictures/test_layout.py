@@ -13,7 +13,7 @@ from meanlab.pictures.places import Obstacles
 
 TEXTS = (
     "2.5 % beyond −2.20", "t(11) = 4.08", "W⁺ = 16991.5", "The mean of 12 readings (taken as independent) of Nitrate",
-    "Schwermetallrückstandsbestimmung in Klärschlammasche", "±∞ ≤ ≥ × 10⁻⁷ µg/kg °C ″ ′ ₀₁ ν σ α", 
+    "Schwermetallrückstandsbestimmung in Klärschlammasche", "±∞ ≤ ≥ × 10⁻⁷ µg/kg °C ″ ′ ₀₁ ν σ α",
     "WWW @@@ %%% mmm MMM", "fill {of} [odd] signs <&> $x^2$ #~|\\/", "жизнь αβγδ ŁŃŻ ½¼‰",
 )  # fmt: skip
 

@@ -14,9 +14,9 @@ from meanlab.pictures import for_paper
 from meanlab.records.panel import HEIGHT, WIDTH, panel, panel_png, panel_svg
 from meanlab.wording import panel_texts
 
-TWELVE = "5.012 5.043 5.028 5.009 5.051 5.017 5.026 5.033 4.998 4.987 5.021 5.034".split()
+TWELVE = ["5.012", "5.043", "5.028", "5.009", "5.051", "5.017", "5.026", "5.033", "4.998", "4.987", "5.021", "5.034"]
 LONG = {
-    "quantity": "Gesamtstickstoffgehaltsbestimmung nach Aufschluss (Doppelbestimmung im Mikrowellendruckaufschlussgerät)",
+    "quantity": "Gesamtstickstoffgehaltsbestimmung nach Aufschluss (zweifach im Mikrowellendruckaufschlussgerät)",
     "material": "Klärschlammtrocknungsrückstandsrückstellmusterflasche KTR-2026/118-B der Sammelprobe Nordwest",
     "unit": "mg/kg Trockenrückstand",
     "units_are": "Einwaagen aus getrennten Flaschen, an drei Tagen von zwei Personen aufgeschlossen und gemessen",
