@@ -1,19 +1,19 @@
 """A table of samples → a table of results: it only groups and assembles; every number is that of one analysis."""
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Callable, Hashable, Mapping, Sequence
 from dataclasses import replace
 from typing import Any
 
+import numpy as np
 import pandas as pd
-from statsmodels.stats.multitest import multipletests
 
 from meanlab.analysis import decide
-from meanlab.core.complaints import QuestionComplaint, ReadingsComplaint
+from meanlab.core.complaints import Complaint, QuestionComplaint, ReadingsComplaint
 from meanlab.core.question import Question
 from meanlab.core.readings import ReadingSet
 
-COLUMNS = ("n", "mean", "s", "low", "high", "difference", "statistic", "df", "p", "p_holm")
-COLUMNS += ("procedure", "verdict", "flags")
+NUMBERS = ("n", "mean", "s", "low", "high", "difference", "statistic", "df", "p", "p_holm")
+COLUMNS = (*NUMBERS, "procedure", "verdict", "flags")
 LIMIT_SIGNS = {"<": "below", "≤": "below", ">": "above", "≥": "above"}
 
 
@@ -28,31 +28,57 @@ def analyse_many(
 ) -> pd.DataFrame:
     """Return one row a sample, in order of first appearance: the same numbers as ``analyse`` one by one.
 
-    table        long table, one reading a row; ``value`` names the column of numbers, number texts or "<0.05"
+    table        long table, one reading a row; ``value`` names the column of numbers, number texts or "<0.05";
+                 another kind of table is used where its ``compute()`` gives a pandas one (Dask)
     sample       name of the column, or list of names, that tells the samples apart
     targets      each sample's own target: a mapping from the sample, or the name of a column
     preparation  name of the column with the preparation labels
     progress     called with (done, all)
 
     Columns after those of the sample: n, mean, s, low, high, difference, statistic, df, p, p_holm (Holm over the rows
-    that have a p), procedure, verdict (by raw p), flags. Missing values are left away and counted in the flags.
-    Raises Complaint for columns that are not there or a sample without a target. Source: Holm 1979.
+    that have a p), procedure, verdict (by raw p), flags. A sample column that bears the name of a result column is
+    called "… (sample)". Missing values are left away and counted in the flags.
+    Raises Complaint, naming the sample, for columns that are not there, a sample without a target, or a bad reading.
+    Source: Holm 1979.
     """
     keys = [sample] if isinstance(sample, str) else list(sample)
     named = [*keys, value, *([preparation] if preparation else []), *([targets] if isinstance(targets, str) else [])]
-    absent = [name for name in named if name not in table.columns]
-    if absent:
-        there = ", ".join(map(str, table.columns))
-        raise ReadingsComplaint(f'There is no column "{absent[0]}" in the table; it has {there}.')
-    groups = table.groupby(keys, sort=False, dropna=False)
+    readings = _chosen(table, named)
+    groups = readings.groupby(keys, sort=False, dropna=False)
     rows, total = [], groups.ngroups
     for done, (key, group) in enumerate(groups, 1):
-        asked = _with_target(question, targets, key if len(keys) > 1 else key[0], group)
-        rows.append((*key, *_row(group, value, preparation, asked)))
+        name = key if len(keys) > 1 else key[0]
+        try:
+            asked = _with_target(question, targets, name, group)
+            rows.append(_row(group, value, preparation, asked))
+        except Complaint as complaint:
+            raise type(complaint)(f'Sample "{_in_words(key)}": {complaint}', complaint.where) from None
         if progress is not None:
             progress(done, total)
-    columns = [*keys, *(name for name in COLUMNS if name != "p_holm")]
-    return _with_holm(pd.DataFrame(rows, columns=columns), question.alpha)[[*keys, *COLUMNS]]
+    results = _with_holm(pd.DataFrame(rows, columns=[name for name in COLUMNS if name != "p_holm"]), question.alpha)
+    labels = readings[keys].drop_duplicates().reset_index(drop=True)
+    return pd.concat([labels.rename(columns=_free_name), results], axis=1)
+
+
+def _chosen(table: Any, named: Sequence[str]) -> pd.DataFrame:
+    """Return the columns that are named, as a pandas table."""
+    columns = list(table.columns)
+    there = ", ".join(map(str, columns))
+    for name in named:
+        if columns.count(name) == 0:
+            raise ReadingsComplaint(f'There is no column "{name}" in the table; it has {there}.')
+        if columns.count(name) > 1:
+            raise ReadingsComplaint(f'There is more than one column "{name}" in the table: give each its own name.')
+    chosen = table[list(dict.fromkeys(named))]
+    return chosen if isinstance(chosen, pd.DataFrame) else chosen.compute()
+
+
+def _in_words(key: tuple[Any, ...]) -> str:
+    return ", ".join(map(str, key))
+
+
+def _free_name(name: Hashable) -> Hashable:
+    return f"{name} (sample)" if name in COLUMNS else name
 
 
 def _with_target(
@@ -63,20 +89,19 @@ def _with_target(
     if isinstance(targets, str):
         found = group[targets].dropna().unique()
         if len(found) != 1:
-            many = f'Sample "{key}" has {len(found)} targets in column "{targets}"; it needs one.'
-            raise QuestionComplaint(many, "target")
+            raise QuestionComplaint(f'it has {len(found)} targets in column "{targets}"; it needs one.', "target")
         return replace(question, target=found[0])
     if key not in targets:
-        raise QuestionComplaint(f'Sample "{key}" has no target.', "target")
+        raise QuestionComplaint("it has no target; give each sample its own.", "target")
     return replace(question, target=targets[key])
 
 
 def _row(group: pd.DataFrame, value: str, preparation: str | None, question: Question) -> tuple[Any, ...]:
-    present = group[group[value].notna()]
-    missing = len(group) - len(present)
+    blank = group[value].isna() | (group[value].astype(str).str.strip() == "")
+    present, missing = group[~blank], int(blank.sum())
     flags = [f"{missing} missing"] if missing else []
     if present.empty:
-        return (0, *[None] * 8, "not testable", "; ".join([*flags, "no reading"]))
+        return (0, *[None] * 8, None, "not testable", "; ".join([*flags, "no reading"]))
     found = decide(_readings(present, value, preparation), question)
     units, test, route = found.units, found.test, found.route
     scatter = None if units.sample is None else units.sample
@@ -104,19 +129,36 @@ def _readings(group: pd.DataFrame, value: str, preparation: str | None) -> Readi
     for place, entry in enumerate(group[value].tolist()):
         text = entry.strip() if isinstance(entry, str) else ""
         if text[:1] in LIMIT_SIGNS and text:
-            censored.append({"index": place, "kind": LIMIT_SIGNS[text[0]], "limit": text.lstrip("<>≤≥=").strip()})
+            limit = text.lstrip("<>≤≥=").strip()
+            censored.append({"index": place, "kind": LIMIT_SIGNS[text[0]], "limit": limit or None, "typed": text})
         else:
             values.append(entry)
+    if preparation is not None and group[preparation].isna().any():
+        raise ReadingsComplaint(f'a reading has no label in column "{preparation}".', "preparations")
     labels = None if preparation is None else tuple(map(str, group[preparation]))
     return ReadingSet(tuple(values), preparations=labels, censored=tuple(censored))  # type: ignore[arg-type]
 
 
 def _with_holm(results: pd.DataFrame, alpha: float) -> pd.DataFrame:
     """Return the results with Holm's p over the rows that have a p, and a flag where it changes the rejection."""
-    results["p_holm"] = float("nan")
-    tested = results["p"].notna()
-    if tested.any():
-        results.loc[tested, "p_holm"] = multipletests(results.loc[tested, "p"].astype(float), method="holm")[1]
-    lost = tested & (results["p"].astype(float) < alpha) & (results["p_holm"] >= alpha)
+    p = results["p"].to_numpy(dtype=float)
+    adjusted = holm(p)
+    results.insert(COLUMNS.index("p_holm"), "p_holm", adjusted)
+    lost = (p < alpha) & (adjusted >= alpha)
     results.loc[lost, "flags"] = [f"{flags}; not after Holm".lstrip("; ") for flags in results.loc[lost, "flags"]]
     return results
+
+
+def holm(p: np.ndarray) -> np.ndarray:
+    """Return Holm's adjusted p-values: in rising order, max over the earlier ones of (m − i)·p₍ᵢ₎, at most 1.
+
+    Rows without a p (nan) stay without and do not count. Source: Holm 1979, Scandinavian Journal of Statistics 6:65.
+
+    >>> holm(np.array([0.01, 0.04, np.nan, 0.03])).tolist()
+    [0.03, 0.06, nan, 0.06]
+    """
+    order = np.argsort(p, kind="stable")[: np.count_nonzero(~np.isnan(p))]
+    adjusted = np.full(len(p), np.nan)
+    left = np.arange(len(order), 0, -1)
+    adjusted[order] = np.minimum(1.0, np.maximum.accumulate(left * p[order])) if len(order) else p[order]
+    return adjusted

@@ -1,0 +1,171 @@
+"""A table of many samples gives row by row the numbers of ``analyse``, and Holm's adjustment over the rows."""
+
+import numpy as np
+import pandas as pd
+import pytest
+from drawn import ALTERNATIVES, FEWER, drawn_readings
+from hypothesis import given
+from hypothesis import strategies as st
+from statsmodels.stats.multitest import multipletests
+
+from meanlab import Complaint, Question, ReadingSet, analyse, analyse_many
+from meanlab.many import COLUMNS, holm
+
+
+def same(found, expected) -> bool:
+    """Tell whether a cell is the number of an analysis to the last bit; nan where the analysis has None."""
+    return bool(pd.isna(found)) if expected is None else found == expected
+
+
+def assert_row_is(row, analysis):
+    """Assert that a row of the results holds the figures of one analysis."""
+    summary, test, difference = analysis.summary, analysis.test, analysis.difference
+    expected = {
+        "n": summary.n,
+        "mean": summary.mean,
+        "s": summary.s,
+        "low": test.interval.low if test else None,
+        "high": test.interval.high if test else None,
+        "difference": difference.value if difference else None,
+        "statistic": test.statistic if test else None,
+        "df": test.df if test else None,
+        "p": test.p_value if test else None,
+        "procedure": analysis.route.procedure,
+        "verdict": analysis.verdict,
+    }
+    assert {name: row[name] for name, value in expected.items() if not same(row[name], value)} == {}
+
+
+@FEWER
+@given(
+    samples=st.lists(drawn_readings(fewest=1, most=12, scattering=False), min_size=1, max_size=6),
+    alternative=st.sampled_from(ALTERNATIVES),
+    seed=st.integers(0, 1000),
+)
+def test_each_row_is_one_analysis(samples, alternative, seed):
+    """Samples mixed in one table, each with its own target: every figure is that of analyse, in order of appearance."""
+    rows = [(f"sample {place}", text) for place, drawn in enumerate(samples) for text in drawn.readings]
+    order = np.random.default_rng(seed).permutation(len(rows))
+    table = pd.DataFrame([rows[place] for place in order], columns=["sample", "value"])
+    targets = {f"sample {place}": drawn.target for place, drawn in enumerate(samples)}
+    question = Question("0", alternative, equivalence_limit="0.5")
+    found = analyse_many(table, "value", "sample", question, targets)
+    assert found["sample"].tolist() == list(dict.fromkeys(table["sample"]))
+    for _, row in found.iterrows():
+        mine = Question(targets[row["sample"]], alternative, equivalence_limit="0.5")
+        assert_row_is(row, analyse(table.loc[table["sample"] == row["sample"], "value"].tolist(), mine))
+
+
+def test_preparations_limits_and_missing_values():
+    """Preparations are averaged, "<0.05" counts as below a limit, missing and blank cells are counted in the flags."""
+    table = pd.DataFrame(
+        {
+            "batch": ["A"] * 7 + ["B"] * 7 + ["C"] * 2,
+            "prep": ["1", "1", "2", "2", "3", "3", "3"] * 2 + ["1", "1"],
+            "mg": [
+                *("5.1", "5.2", "4.9", "5.0", "5.3", None, "5.2"),
+                *("0.2", "<0.1", "<0.1", "0.3", " ", "<0.1", "0.4"),
+                *(None, ""),
+            ],
+        }
+    )
+    found = analyse_many(table, "mg", "batch", Question("0.5"), preparation="prep").set_index("batch")
+    nested = ReadingSet(("5.1", "5.2", "4.9", "5.0", "5.3", "5.2"), preparations=("1", "1", "2", "2", "3", "3"))
+    assert_row_is(found.loc["A"], analyse(nested, Question("0.5")))
+    censored = tuple(
+        {"index": i, "kind": "below", "limit": "0.1", "preparation": p} for i, p in ((1, 1), (2, 2), (4, 3))
+    )
+    limited = ReadingSet(("0.2", "0.3", "0.4"), preparations=("1", "2", "3"), censored=censored)
+    assert_row_is(found.loc["B"], analyse(limited, Question("0.5")))
+    assert found.loc["A", "flags"] == "1 missing"
+    assert found.loc["C", "verdict"] == "not testable"
+    assert "2 missing" in found.loc["C", "flags"]
+
+
+@pytest.mark.parametrize("name", [*COLUMNS, "sample"])
+def test_a_sample_column_may_bear_the_name_of_a_result(name):
+    """A sample column called "s" or "p" stays apart from the result of that name."""
+    table = pd.DataFrame({name: [1, 1, 1, 2, 2, 2], "x": [5.0, 5.1, 5.3, 4.0, 4.1, 4.5]})
+    found = analyse_many(table, "x", name, Question("5"))
+    label = name if name == "sample" else f"{name} (sample)"
+    assert found.columns.tolist() == [label, *COLUMNS]
+    assert found[label].tolist() == [1, 2]
+    assert found["s"].tolist() == [analyse(one, Question("5")).summary.s for one in ([5.0, 5.1, 5.3], [4.0, 4.1, 4.5])]
+
+
+def test_several_sample_columns_and_a_column_of_targets():
+    """Samples may be told apart by several columns, and their targets may stand in a column of the table."""
+    table = pd.DataFrame(
+        {
+            "lot": ["a", "a", "a", "a", "a", "a"],
+            "day": [1, 1, 1, 2, 2, 2],
+            "x": ["5.0", "5.1", "5.3", "4.0", "4.1", "4.5"],
+            "nominal": ["5.0"] * 3 + ["4.2"] * 3,
+        }
+    )
+    found = analyse_many(table, "x", ["lot", "day"], Question("0"), targets="nominal")
+    assert found[["lot", "day"]].to_numpy().tolist() == [["a", 1], ["a", 2]]
+    assert_row_is(found.iloc[1], analyse(["4.0", "4.1", "4.5"], Question("4.2")))
+
+
+def test_a_complaint_names_the_sample():
+    """What cannot be read, or has no target, is complained of with the sample it belongs to."""
+    table = pd.DataFrame({"batch": ["A", "A", "B", "B"], "x": ["1", "2", "3", "4,5,6"]})
+    with pytest.raises(Complaint, match='Sample "B": Reading 2: "4,5,6" is not a number'):
+        analyse_many(table, "x", "batch", Question("1"))
+    with pytest.raises(Complaint, match='Sample "B": it has no target'):
+        analyse_many(table.assign(x=1.0), "x", "batch", Question("1"), {"A": 1})
+    with pytest.raises(Complaint, match='no column "lot" in the table; it has batch, x'):
+        analyse_many(table, "x", "lot", Question("1"))
+    doubled = pd.DataFrame([["A", 1.0, 2.0]], columns=["batch", "x", "x"])
+    with pytest.raises(Complaint, match='more than one column "x"'):
+        analyse_many(doubled, "x", "batch", Question("1"))
+
+
+def test_a_table_in_pieces_is_gathered():
+    """A table that is no pandas one is used by its compute(), as Dask's are."""
+    whole = pd.DataFrame({"batch": ["A"] * 4, "x": [1.0, 2.0, 4.0, 3.0], "other": [object()] * 4})
+
+    class InPieces:
+        columns, dtypes = whole.columns, whole.dtypes
+
+        def __getitem__(self, names):
+            part = InPieces()
+            part.compute = lambda: whole[names]
+            return part
+
+    found = analyse_many(InPieces(), "x", "batch", Question("2"))
+    assert_row_is(found.iloc[0], analyse([1.0, 2.0, 4.0, 3.0], Question("2")))
+
+
+def test_progress_is_told_and_no_row_gives_no_result():
+    """``progress`` hears (done, all) after each sample; an empty table gives an empty result with all columns."""
+    heard = []
+    table = pd.DataFrame({"batch": list("aabb"), "x": [1.0, 2.0, 3.0, 4.0]})
+    analyse_many(table, "x", "batch", Question("2"), progress=lambda done, total: heard.append((done, total)))
+    assert heard == [(1, 2), (2, 2)]
+    empty = analyse_many(table[:0], "x", "batch", Question("2"))
+    assert empty.columns.tolist() == ["batch", *COLUMNS]
+    assert len(empty) == 0
+
+
+@FEWER
+@given(st.lists(st.one_of(st.just(float("nan")), st.floats(0, 1)), max_size=30))
+def test_holm_is_that_of_the_reference_library(values):
+    """statsmodels 0.15 multipletests, method "holm", over the rows that have a p."""
+    p = np.array(values, dtype=float)
+    has, found = ~np.isnan(p), holm(p)
+    assert np.isnan(found[~has]).all()
+    if has.any():
+        assert found[has] == pytest.approx(multipletests(p[has], method="holm")[1], rel=1e-13)
+
+
+def test_the_flag_of_a_rejection_that_holm_takes_back():
+    """Verdicts stand by raw p; "not after Holm" where p < α ≤ p_holm."""
+    generator = np.random.default_rng(20261201)
+    table = pd.DataFrame({"batch": np.repeat(np.arange(40), 6), "x": generator.normal(0.25, 1, 240).round(2)})
+    found = analyse_many(table, "x", "batch", Question("0"))
+    flagged = found["flags"].str.contains("not after Holm")
+    assert flagged.any()
+    assert (flagged == ((found["p"] < 0.05) & (found["p_holm"] >= 0.05))).all()
+    assert (found.loc[flagged, "verdict"] == "differs").all()
