@@ -57,12 +57,16 @@ class SheetBuilder:
         self.twice: list[str] = []
         self.summaries: set[tuple[int, int]] = set()
         self.merged: set[tuple[int, int, int]] = set()
+        self._outside = 0
         self._room = room
         self._rows: dict[int, dict[int, Cell]] = {}
 
     def put(self, row: int, column: int, cell: Cell) -> None:
         """Set one cell; an empty one leaves no trace, a second one at the same place counts and is told."""
-        if not cell.text or not (0 <= row < LAST_ROW and 0 <= column < LAST_COLUMN):
+        if not cell.text:
+            return
+        if not (0 <= row < LAST_ROW and 0 <= column < LAST_COLUMN):
+            self._outside += 1
             return
         self._room.take_cell()
         cells = self._rows.setdefault(row, {})
@@ -155,6 +159,8 @@ class SheetBuilder:
             yield f"{_cells(summaries)} calculated from the cells above (mean, scatter or the like) and not read."
         if strays:
             yield f"{_cells(strays)} far from the other cells and left out."
+        if self._outside:
+            yield f"{self._outside} cells beyond the last row or column that a sheet can have were left out."
         if self.twice:
             yield f"{_cells(self.twice)} stored more than once; the last value is used."
         if self.struck:

@@ -46,6 +46,8 @@ def sheets_from_child(data: bytes, kind: Workbook, seconds: float = SECONDS, mem
     finally:
         child.kill()
         child.wait()
+        if child.stdout:
+            child.stdout.close()
     if child.returncode not in (0, None) or not answer:
         raise _too_much(memory, seconds)
     found = json.loads(answer)
