@@ -133,8 +133,8 @@ def _nothing(tables: Sequence[Table]) -> Intake:
         if places:
             found = _entries(table, places[:50])
             read_back = read_column(found)
-            first = next(iter([*(table.sheet.remarks if table.sheet else ()), *read_back.warnings]), "")
-            return Intake(refused=True, reason=f"No reading was found. {first}".strip())
+            found_out = [*(table.sheet.remarks if table.sheet else ()), *read_back.warnings]
+            return Intake(refused=True, reason=" ".join(["No reading was found.", *found_out[:2]]))
     return Intake(refused=True, reason="There is nothing to read: paste the readings, one a line, or open a file.")
 
 
