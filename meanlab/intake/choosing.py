@@ -11,7 +11,7 @@ from meanlab.intake.picked import Picked
 from meanlab.intake.remaining import remaining
 from meanlab.intake.roles import listed, roles_of, sample_of
 from meanlab.intake.separators import ChoiceNeeded
-from meanlab.intake.table import Block
+from meanlab.intake.table import Block, filled_width
 
 MOST_NAMED = 12
 _MARKS = {",": "comma", ";": "semicolon", "\t": "tab", " ": "blank"}
@@ -147,14 +147,14 @@ def _refuse_misaligned(block: Block, rows: Sequence[int]) -> None:
     table = block.table
     if block.heading is None or table.separator not in _MARKS or table.turned:
         return
-    headings = len(table.rows[block.heading])
+    headings = filled_width(table.rows[block.heading])
     looked_at = sample_of(rows)
-    longer = [row for row in looked_at if len(table.rows[row]) > headings]
+    longer = [row for row in looked_at if filled_width(table.rows[row]) > headings]
     if headings < 2 or len(longer) * 2 < len(looked_at):
         return
     row, mark = longer[0], _MARKS[table.separator]
     why = " The comma may be both the separator and the decimal sign." if mark == "comma" else ""
     raise IntakeComplaint(
-        f"The heading names {headings} columns, but {table.place(row, 0)} has {len(table.rows[row])} fields parted by a "
+        f"The heading names {headings} columns, but {table.place(row, 0)} has {filled_width(table.rows[row])} fields parted by a "
         f"{mark}, so no reading can be told for sure.{why} Export it again with tabs or semicolons."
     )

@@ -5,7 +5,7 @@ from collections.abc import Sequence
 from meanlab.intake.characters import shown
 from meanlab.intake.choosing import Picked
 from meanlab.intake.column import Given, Read
-from meanlab.intake.table import Block
+from meanlab.intake.table import Block, filled_width
 
 MOST_ROWS = 20_000
 
@@ -65,15 +65,15 @@ def _odd_lengths(picked: Picked) -> list[str]:
     table, block = picked.block.table, picked.block
     if block.heading is None or table.sheet is not None or not table.separator or len(picked.rows) > MOST_ROWS:
         return []
-    width, last = len(table.rows[block.heading]), max(picked.columns)
-    odd = [row for row in picked.rows if len(table.rows[row]) > max(width, last + 1) or len(table.rows[row]) <= last]
-    odd = [row for row in odd if len(table.rows[row]) > width or len(table.rows[row]) < width - 1 or last == width - 1]
-    surplus = [row for row in odd if len(table.rows[row]) > width]
-    if not surplus and len(odd) * 2 > len(picked.rows):
-        return []
+    width, last = filled_width(table.rows[block.heading]), max(picked.columns)
+    surplus = {row: filled_width(table.rows[row]) for row in picked.rows if filled_width(table.rows[row]) > width}
+    short = {row: len(table.rows[row]) for row in picked.rows if len(table.rows[row]) <= last}
+    if len(short) * 2 > len(picked.rows):
+        short = {}
+    odd = dict(sorted({**surplus, **short}.items()))
     if not odd:
         return []
-    where = ", ".join(f"{table.place(row, 0)} has {len(table.rows[row])}" for row in odd[:5])
+    where = ", ".join(f"{table.place(row, 0)} has {count}" for row, count in list(odd.items())[:5])
     return [f"Rows with another number of fields than the {width} of the heading: {where}. Check them in the file."]
 
 

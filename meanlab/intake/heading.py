@@ -4,7 +4,7 @@ import re
 from dataclasses import dataclass
 
 from meanlab.intake.characters import one_spelling
-from meanlab.intake.units import is_qualified_unit, is_unit
+from meanlab.intake.units import is_qualified_unit, is_unit, is_unmistakable
 
 _BRACKETED = re.compile(r"[(\[]([^()\[\]]*(?:\([^()]*\)[^()\[\]]*)?)[)\]]")
 _BEHIND_A_MARK = re.compile(r"^(.*\S)\s*(?:,|;|:|\s/|/(?=\()|\s-|\s–|_|\bin)\s*(\S.*)$")
@@ -77,7 +77,7 @@ def _behind_a_mark(text: str) -> tuple[str, str] | None:
 
 
 def _whole(text: str) -> tuple[str, str] | None:
-    if is_unit(text) and (len(text) > 1 or text in "%°‰") and _unmistakable(text):
+    if is_unit(text) and (len(text) > 1 or text in "%°‰") and is_unmistakable(text):
         return "", text
     return None
 
@@ -87,18 +87,8 @@ def _last_words(text: str) -> tuple[str, str] | None:
     words = text.split(" ")
     for first in range(max(1, len(words) - 3), len(words)):
         unit = " ".join(words[first:])
-        if is_unit(unit) and _unmistakable(unit):
+        if is_unit(unit) and is_unmistakable(unit):
             return " ".join(words[:first]), unit
     if words[0] == "%" and len(words) > 1:
         return " ".join(words[1:]), "%"
     return None
-
-
-def _unmistakable(unit: str) -> bool:
-    """Tell whether a unit is more than a letter or a word that could be part of a name."""
-    return bool(re.search(r"[/%‰°µμΩ^⁻]", unit)) or (
-        len(unit) > 1 and unit not in _WORDS and not (unit.isalpha() and unit.islower() and len(unit) > 3)
-    )
-
-
-_WORDS = frozenset("pH pX Abs abs day min max log in at mol count counts cells units copies events Count RU Ct LU S Da".split())

@@ -62,19 +62,12 @@ def _without_list_brackets(text: str) -> str:
 
 def _fields(line: str, separator: str) -> list[str]:
     if separator == ", ":
-        return _stripped(re.split(r",\s+|,$", line))
+        return [cell.strip() for cell in re.split(r",\s+|,$", line)]
     if separator == PAIRS:
-        parts = _stripped(line.split(","))
+        parts = [cell.strip() for cell in line.split(",")]
         even = len(parts) % 2 == 0
         return [f"{a},{b}" for a, b in zip(parts[::2], parts[1::2], strict=True)] if even else parts
-    return _stripped((line.strip().strip("|") if separator == "|" else line).split(separator))
-
-
-def _stripped(cells: Sequence[str]) -> list[str]:
-    found = [cell.strip() for cell in cells]
-    while found and not found[-1]:
-        found.pop()
-    return found
+    return [cell.strip() for cell in (line.strip().strip("|") if separator == "|" else line).split(separator)]
 
 
 def _by_blanks(lines: Sequence[str]) -> list[list[str]]:
@@ -87,7 +80,7 @@ def _by_blanks(lines: Sequence[str]) -> list[list[str]]:
     cuts = _gutters(filled)
     if not cuts:
         return [line.split() for line in lines]
-    return [_stripped([line[a:b] for a, b in zip([0, *cuts], [*cuts, None], strict=True)]) for line in lines]
+    return [[line[a:b].strip() for a, b in zip([0, *cuts], [*cuts, None], strict=True)] for line in lines]
 
 
 def _gutters(lines: list[str]) -> list[int]:
@@ -140,7 +133,7 @@ def _quoted(text: str) -> Table | None:
     line = 1
     try:
         for cells in reader:
-            rows.append(_stripped(cells))
+            rows.append([cell.strip() for cell in cells])
             numbers.append(line)
             line = reader.line_num + 1
     except csv.Error as error:

@@ -102,6 +102,8 @@ def _question(
         return NothingToRead("No column holds readings: paste the readings, one a line, or choose another file.")
     choices = [column.to_dict() for column in listed(block, roles, rows) if column.column_index in readings]
     choices += _choices_across(block, rows, roles, across)
+    if block.heading is None and len(rows) > 1 and max(len(readings), 1) <= MOST_CHOICES:
+        choices.append({"sheet": block.table.name, "column": "", "columns": readings})
     names = ", ".join(f'"{shown(choice["column"])}"' for choice in choices[:6] if choice["column"])
     return ChoiceNeeded(
         f"{len(readings)} columns hold numbers{f' ({names})' if names else ''}: choose the one with the readings.",

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from meanlab.intake.characters import one_spelling
 from meanlab.intake.found import Column
 from meanlab.intake.table import FIRST_ROWS, Block, sort_of
-from meanlab.intake.units import is_unit
+from meanlab.intake.units import is_unit, is_unmistakable
 from meanlab.intake.words import is_summary, plain_word
 
 _COUNTER = frozenset(
@@ -83,7 +83,7 @@ def _role_of_filled(block: Block, column: int, texts: list[str], sorts: Counter[
     marks = {one_spelling(text) for text in texts}
     if marks <= _MARKS or (word in _QUALIFIER and not sorts["number"]):
         return "qualifier"
-    if word in _UNIT or (len(texts) > 1 and not word and all(is_unit(text) for text in marks)):
+    if word in _UNIT or (len(texts) > 1 and not word and all(is_unit(one) and is_unmistakable(one) for one in marks)):
         return "unit"
     if sorts["stamp"] * 2 >= filled or (word in _TIME and heading.text):
         return "time"

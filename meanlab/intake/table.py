@@ -141,7 +141,8 @@ class Block:
         for left in range(column, -1, -1):
             text = self.table.text(self.group, left)
             if text:
-                return heading_of(text).unit
+                alone = sum(map(bool, self.table.rows[self.group])) == 1
+                return heading_of(text).unit if left == column or not (alone and left == 0) else None
         return None
 
 
@@ -179,6 +180,11 @@ def sort_of_text(text: str) -> str:
 
 def _has_letter(text: str) -> bool:
     return any(one.isalpha() or one in "%°‰" for one in text)
+
+
+def filled_width(cells: Sequence[str]) -> int:
+    """Return how many cells a row has up to its last filled one."""
+    return next((width for width in range(len(cells), 0, -1) if cells[width - 1]), 0)
 
 
 def is_blank(cells: Sequence[str]) -> bool:

@@ -35,9 +35,13 @@ _SYMBOLS = _WITH_PREFIX | frozenset([*_ALONE, *_BASES.split(), "C", "t", "B", "P
 _LITRE = frozenset("l Ml kl hl dl cl ml µl μl ul nl pl fl mcl".split())
 _RAISED: Mapping[int, str] = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻", "0123456789+-")
 _TERM = re.compile(r"([^\W\d_]+[₀-₉]*|[%‰‱°′″Å][A-Za-zé]*|\d+(?:\.\d+)?)(?:\^?\(?([+-]?\d{1,2})\)?)?", re.UNICODE)
+_LENGTHS = frozenset("m dm cm mm µm μm um nm km in ft s h".split())
 _BETWEEN = re.compile(r"\s*(/|per\b|[·⋅*×.•]|\s)\s*")
 _QUALIFIED = re.compile(r"(.*\S)\s+(?:as\s+)?\(?((?:[A-Z][a-z]?\d{0,2}){1,6}(?:[-–][NPSC])?)\)?")
 _BASIS = re.compile(r"\s*\(?\b(w/w|m/m|v/v|w/v|m/v|n/n|mol/mol|dry|wet|DM|TS|i\. ?Tr\.|FS)\)?$")
+_WORDS = frozenset(
+    "pH pX Abs abs day min max log in at mol count counts cells units copies events Count RU Ct LU SU GE IE HK".split()
+)
 MOST_CHARACTERS = 24
 
 
@@ -62,6 +66,17 @@ def is_qualified_unit(text: str) -> bool:
         return True
     found = _QUALIFIED.fullmatch(_bare(text))
     return bool(found and "/" in found[1] and is_unit(found[1]))
+
+
+def is_unmistakable(unit: str) -> bool:
+    """Tell whether a unit is more than a letter or a word that could be part of a name or a label.
+
+    >>> is_unmistakable("mg/L"), is_unmistakable("NTU"), is_unmistakable("A"), is_unmistakable("day")
+    (True, True, False, False)
+    """
+    if re.search(r"[/%‰°µμΩ^⁻]", unit):
+        return True
+    return len(unit) > 1 and unit not in _WORDS and not (unit.isalpha() and unit.islower() and len(unit) > 3)
 
 
 def same_unit(one: str, other: str) -> bool:
@@ -119,4 +134,5 @@ def _is_term(term: re.Match[str], inside: bool) -> bool:
     symbol = term[1]
     if symbol[0].isdigit():
         return inside
-    return symbol in _SYMBOLS
+    bare_power = term[2] is not None and term[0] == symbol + term[2] and term[2][0] not in "+-"
+    return symbol in _SYMBOLS and (not bare_power or (term[2] in "23" and symbol in _LENGTHS))
