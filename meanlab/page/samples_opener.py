@@ -11,14 +11,14 @@ from meanlab.samples import SampleSet, sample_sets
 
 def draw() -> None:
     """Draw the opener."""
-    with st.popover("Sample sets", key="sample_sets"):
+    with st.popover("Sample sets", key="sample_sets"), st.container(key="sample_list"):
         sets = _sets()
         if not sets:
             st.html('<p class="ml-status">The folder sample_sets is not here; copy it beside the folder meanlab.</p>')
-        with st.container(key="sample_list"):
-            for place, one in enumerate(sets):
-                st.button(one.title, key=f"sample_{place}", on_click=_open, args=(one,), type="tertiary")
-                st.html(f'<p class="ml-status ml-scenario">{html.escape(one.scenario)}</p>')
+        for place, one in enumerate(sets):
+            with st.container(key=f"sample_row_{place}", horizontal=True, vertical_alignment="center", gap="small"):
+                st.button(one.title, key=f"sample_{place}", on_click=_open, args=(one,), width=230)
+                st.html(f'<p class="ml-status">{html.escape(one.scenario)}</p>')
 
 
 def _open(chosen: SampleSet) -> None:

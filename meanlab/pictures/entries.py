@@ -3,10 +3,11 @@
 from collections.abc import Sequence
 from dataclasses import dataclass
 
+from meanlab.core.numbers import places
 from meanlab.core.readings import Censored, ReadingSet
 from meanlab.core.results import Analysis
 from meanlab.wording.names import unit_of
-from meanlab.wording.numbers import number_text, unit_text
+from meanlab.wording.numbers import decimal_text, unit_text
 
 MOST_DRAWN = 240
 
@@ -86,5 +87,5 @@ def _at_limits(readings: ReadingSet) -> tuple[AtLimit, ...]:
 
 def _words(kind: str, group: list[Censored], left_out: bool, sign: str) -> str:
     limit = group[0].limit
-    where = f"{kind} a limit not stated" if limit is None else f"{kind} {number_text(limit, sign)}"
+    where = f"{kind} a limit not stated" if limit is None else f"{kind} {decimal_text(limit, places(limit), sign)}"
     return f"{len(group)} {where}{', left out' if left_out else ''}"

@@ -13,6 +13,7 @@ from matplotlib.font_manager import FontProperties, findfont, get_font
 from matplotlib.lines import Line2D
 from matplotlib.patches import Polygon
 
+from meanlab.core.printable import printable
 from meanlab.pictures.drawing import Drawing, Mark, Words
 
 PIXELS_PER_INCH = 100
@@ -68,8 +69,9 @@ def svg(drawing: Drawing) -> str:
     paper = figure(drawing)
     FigureCanvasSVG(paper)
     content = BytesIO()
+    facts = {"Date": None, "Creator": None, "Description": printable(drawing.alt)}
     with _ONE_AT_A_TIME, matplotlib.rc_context(_SAME_IDS):
-        paper.savefig(content, format="svg", metadata={"Date": None, "Creator": None, "Description": drawing.alt})
+        paper.savefig(content, format="svg", metadata=facts)
     return content.getvalue().decode("utf-8")
 
 
@@ -80,7 +82,7 @@ def pdf(drawing: Drawing) -> bytes:
     content = BytesIO()
     moment = dict.fromkeys(("CreationDate", "ModDate", "Creator", "Producer"))
     with _ONE_AT_A_TIME, matplotlib.rc_context(_SELECTABLE):
-        paper.savefig(content, format="pdf", metadata={**moment, "Title": drawing.alt})
+        paper.savefig(content, format="pdf", metadata={**moment, "Title": printable(drawing.alt)})
     return content.getvalue()
 
 

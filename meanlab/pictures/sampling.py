@@ -3,6 +3,7 @@
 from collections.abc import Iterator
 from dataclasses import dataclass
 from itertools import pairwise
+from math import isclose
 
 import numpy as np
 
@@ -12,6 +13,7 @@ from meanlab.pictures.drawing import Align, Drawing, Fill, Mark, Point, Stroke, 
 from meanlab.pictures.measure import Box
 from meanlab.pictures.null_law import CURVE_POINTS, NullLaw, Region, drawn_statistic, null_law
 from meanlab.pictures.places import Obstacles, around, kept_inside
+from meanlab.procedures.decision import tail
 from meanlab.wording.numbers import df_text, level_text, rank_number, significant, statistic_number, statistic_text
 
 WIDTH, HEIGHT = 620.0, 186.0
@@ -60,14 +62,16 @@ def sampling_distribution(
 
 
 def area_words(test: Test, law: NullLaw, region: Region, sign: str = ".") -> str:
-    """Return the probability of a rejection region in words: "2.5 % beyond 2.20", "1.07 % at ≥ 8"."""
-    percent = significant(100 * region.area, 3, sign)
-    if sign in percent and "×" not in percent:
-        percent = percent.rstrip("0").removesuffix(sign)
+    """Return the probability of a rejection region in words: "2.5 % beyond 2.20", "1.1 % at ≥ 8"."""
+    nominal = tail(test.alternative, test.significance)
+    if isclose(region.area, nominal, rel_tol=1e-9):
+        percent = level_text(nominal, sign)
+    else:
+        percent = f"{significant(100 * region.area, 2, sign)} %"
     about = "about " if law.approximate else ""
     if test.procedure in CURVED:
-        return f"{about}{percent} % beyond {statistic_number(region.bound, sign)}"
-    return f"{about}{percent} % at {'≥' if region.upper else '≤'} {rank_number(region.bound, sign)}"
+        return f"{about}{percent} beyond {statistic_number(region.bound, sign)}"
+    return f"{about}{percent} at {'≥' if region.upper else '≤'} {rank_number(region.bound, sign)}"
 
 
 def alt_of(test: Test, law: NullLaw, noun: str, sign: str) -> str:
