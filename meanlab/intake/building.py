@@ -16,6 +16,7 @@ _LONGEST_TEXT = 1_000
 _MOST_MERGED = 1_000_000
 _NAMED = 3
 _LINE_BREAKS = re.compile(r"[\r\n\t\v\f\u2028\u2029]+")
+_UNSHOWN = re.compile(r"[\x00-\x1f\x7f-\x9f\ud800-\udfff\ufffe\uffff]")
 
 
 class Room:
@@ -172,8 +173,13 @@ class SheetBuilder:
 
 
 def shown_text(text: str) -> str:
-    """A text on one line, cut where no reading or heading would be that long."""
-    text = _LINE_BREAKS.sub(" ", text)
+    """A text on one line without characters that cannot be shown, cut where no reading or heading would be that long.
+
+    >>> shown_text("Lead\\n(µg/L)\\x00")
+    'Lead (µg/L)'
+    """
+    if not text.isprintable():
+        text = _UNSHOWN.sub("", _LINE_BREAKS.sub(" ", text))
     return text if len(text) <= _LONGEST_TEXT else text[:_LONGEST_TEXT] + "…"
 
 

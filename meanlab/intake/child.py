@@ -1,12 +1,10 @@
 """Reads a workbook in a process of its own, so that a hostile or huge file can end that process and nothing else.
 
-The parent sends the file through standard input and gets the sheets back as JSON. The child limits its own memory and
-processor time where the system knows such limits, and the parent ends it when it takes longer or more all the same.
-
-    python -m meanlab.intake.child xlsb < file
+The file goes to the child (``reading_process.py``) through standard input, the sheets come back as JSON. The child
+limits its own memory and processor time where the system knows such limits; here it is ended when it takes longer or
+more all the same.
 """
 
-import gc
 import json
 import os
 import subprocess
@@ -16,7 +14,7 @@ import time
 from contextlib import suppress
 from itertools import islice
 from pathlib import Path
-from typing import IO, Any, cast
+from typing import IO, Any
 
 from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.containers import Workbook
@@ -34,7 +32,7 @@ def sheets_from_child(data: bytes, kind: Workbook, seconds: float = SECONDS, mem
     Raises IntakeComplaint for what the child complains of, and when it had to be ended or ended itself.
     """
     child = subprocess.Popen(
-        [sys.executable, "-m", "meanlab.intake.child", kind, str(memory), str(seconds)],
+        [sys.executable, "-m", "meanlab.intake.reading_process", kind, str(memory), str(seconds)],
         stdin=subprocess.PIPE,
         stdout=subprocess.PIPE,
         stderr=subprocess.DEVNULL,
@@ -138,39 +136,3 @@ def unpacked(sheets: list[dict[str, Any]]) -> tuple[Sheet, ...]:
             )
         )
     return tuple(result)
-
-
-def _limit_own_process(memory: int, seconds: float) -> None:
-    """Limit this process where the system can; elsewhere the parent watches alone."""
-    try:
-        import resource
-    except ImportError:
-        return
-    for limit, most in (
-        (resource.RLIMIT_AS, memory),
-        (resource.RLIMIT_CPU, int(seconds) + 2),
-        (resource.RLIMIT_CORE, 0),
-    ):
-        try:
-            resource.setrlimit(limit, (most, most))
-        except (ValueError, OSError):
-            continue
-
-
-def main(kind: str, memory: str, seconds: str) -> None:
-    """Read one workbook from standard input and write its sheets, or the complaint, to standard output as JSON."""
-    _limit_own_process(int(memory), float(seconds))
-    from meanlab.intake.workbooks import read_kind
-
-    # millions of cells and no cycles among them: looking for some takes a third of the time
-    gc.disable()
-    data = sys.stdin.buffer.read()
-    try:
-        answer: dict[str, object] = {"sheets": packed(read_kind(data, cast(Workbook, kind)))}
-    except IntakeComplaint as complaint:
-        answer = {"complaint": str(complaint)}
-    sys.stdout.buffer.write(json.dumps(answer, separators=(",", ":")).encode())
-
-
-if __name__ == "__main__":
-    main(*sys.argv[1:4])

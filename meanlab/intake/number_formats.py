@@ -12,6 +12,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from decimal import Decimal
 
+from meanlab.intake.building import shown_text
 from meanlab.intake.grid import Cell
 
 GENERAL = "General"
@@ -61,7 +62,7 @@ class NumberFormat:
     """
 
     def __init__(self, code: str) -> None:
-        self.sections = tuple(_section(tokens) for tokens in _split(code[:_MOST_CODE]))
+        self.sections = tuple(_section(tokens) for tokens in _split(shown_text(code[:_MOST_CODE])))
 
     def cell(self, number: float, since_1904: bool = False) -> Cell:
         """The cell that shows this stored number."""

@@ -243,12 +243,15 @@ def test_a_large_file_comes_through_the_child_as_it_is() -> None:
     assert "without a result" in sheet.remarks[0]
 
 
+def test_characters_that_cannot_be_shown_are_taken_away() -> None:
+    """Half a pair of UTF-16, a zero byte and control characters would stop the page or the notebook later."""
+    (sheet,) = sheets_of(xlsx(rows('<c t="inlineStr"><is><t>_xD800_5_x0000_.0_x001B_2_x0085_</t></is></c>')))
+    assert sheet.rows[0][0].text == "5.02"
+
+
 def test_the_child_starts_without_the_large_libraries() -> None:
     """Numerical libraries, the page and openpyxl would take a second and a hundred megabytes at each start."""
-    code = (
-        "import sys; import meanlab.intake.child, meanlab.intake.workbooks, meanlab.intake.old_workbooks; "
-        "print(*sys.modules)"
-    )
+    code = "import sys; import meanlab.intake.reading_process, meanlab.intake.old_workbooks; print(*sys.modules)"
     done = subprocess.run([sys.executable, "-c", code], capture_output=True, cwd=ROOT, check=True, text=True)
     assert not {"numpy", "scipy", "pandas", "streamlit", "openpyxl", "psutil"} & set(done.stdout.split())
 
