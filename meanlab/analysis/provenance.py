@@ -38,5 +38,6 @@ def fingerprint(readings: ReadingSet, question: Question) -> str:
         "question": {field.name: str(getattr(question, field.name)) for field in fields(question)},
     }
     for name, part in parts.items():
-        digest.update(json.dumps([name, part], ensure_ascii=False, sort_keys=True).encode("utf-8"))
+        text = json.dumps([name, part], ensure_ascii=False, sort_keys=True)
+        digest.update(text.encode("utf-8", "surrogatepass"))  # half a surrogate pair is no reason to refuse a result
     return digest.hexdigest()

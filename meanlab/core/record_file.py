@@ -22,11 +22,22 @@ SUFFIX = ".meanlab.json"
 def record_file(kind: str, parts: Mapping[str, Any]) -> bytes:
     """Return a record file; a member of a list stands on a line of its own.
 
+    Raises NotebookComplaint for a text that cannot be written as UTF-8.
+
     >>> record_file("notebook", {"entries": [1, 2]}).decode()
     '{"meanlab record":"notebook","format":1,\\n"entries":[\\n1,\\n2\\n]\\n}\\n'
     """
-    named = b",\n".join(canonical(name) + b":" + _lines(values) for name, values in parts.items())
+    try:
+        named = _named(parts)
+    except UnicodeEncodeError as problem:
+        raise NotebookComplaint(
+            f"A text holds a character that cannot be written ({problem.object[problem.start]!r}): take it out."
+        ) from problem
     return b'{"%s":"%s","format":%d,\n%s\n}\n' % (KIND.encode(), kind.encode(), FORMAT, named)
+
+
+def _named(parts: Mapping[str, Any]) -> bytes:
+    return b",\n".join(canonical(name) + b":" + _lines(values) for name, values in parts.items())
 
 
 def parts_of(content: bytes) -> dict[str, Any]:

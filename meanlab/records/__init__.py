@@ -7,7 +7,7 @@ from importlib import import_module
 from typing import Any
 
 _HOMES = {
-    "document": "meanlab.records.document",
+    "written_record": "meanlab.records.document",
     "numbers_csv": "meanlab.records.numbers",
     "panel_pdf": "meanlab.records.pdf",
     "panel_png": "meanlab.records.panel",

@@ -3,7 +3,6 @@
 The same result gives the same bytes: the moment of writing is nowhere in the file.
 """
 
-import re
 import zipfile
 from collections.abc import Sequence
 from datetime import UTC, datetime
@@ -18,6 +17,7 @@ from docx.oxml.ns import qn
 from docx.shared import Emu, Mm, Pt, RGBColor
 from docx.text.paragraph import Paragraph
 
+from meanlab.core.printable import printable
 from meanlab.core.results import Analysis
 from meanlab.core.source import Source, entries_of
 from meanlab.core.written import Written
@@ -33,12 +33,9 @@ PAGE, MARGIN = (Mm(210), Mm(297)), Mm(20)
 WIDTH = Mm(170)
 PICTURE = (660.0, 200.0, 150.0)  # pixels: width, height of the distribution and of the readings
 NO_MOMENT = (1980, 1, 1, 0, 0, 0)
-NO_SIGN = "□"
-# What XML 1.0 cannot hold, and signs that turn the direction of the text around them.
-_NOT_PRINTED = re.compile("[^\t\n\u0020-\u2029\u202f-\u2065\u206a-\ud7ff\ue000-\ufffd\U00010000-\U0010ffff]")
 
 
-def document(analysis: Analysis, source: Source | None = None, written: Written | None = None) -> bytes:
+def written_record(analysis: Analysis, source: Source | None = None, written: Written | None = None) -> bytes:
     """Return the written record of a result as DOCX.
 
     ``source`` says where the readings came from (by default the readings as typed), ``written`` what the technician
@@ -72,15 +69,6 @@ def pictures(analysis: Analysis) -> tuple[Drawing, ...]:
     return sampling_distribution(analysis.test, analysis.readings.decimal_sign, noun, width, upper), below
 
 
-def printed(text: str) -> str:
-    """Return a text that any reader of DOCX can show: a box stands for a sign without a form of its own.
-
-    >>> printed("pH\\x07 7")
-    'pH□ 7'
-    """
-    return _NOT_PRINTED.sub(NO_SIGN, text.replace("\r\n", "\n").replace("\r", "\n"))
-
-
 def _empty_page() -> Document:
     page = docx.Document()
     section = page.sections[0]
@@ -101,13 +89,13 @@ def _empty_page() -> Document:
 
 def _write(page: Document, text: str, size: Any = TEXT, bold: bool = False, style: str | None = None) -> Paragraph:
     paragraph = page.add_paragraph(style=style)
-    run = paragraph.add_run(printed(text))
+    run = paragraph.add_run(printable(text))
     run.font.size, run.bold = size, bold
     return paragraph
 
 
 def _part(page: Document, part: Part) -> None:
-    page.add_heading(printed(part.heading), level=1)
+    page.add_heading(printable(part.heading), level=1)
     if part.rows:
         _table(page, part)
     for sentence in part.sentences:
@@ -134,7 +122,7 @@ def _table(page: Document, part: Part) -> None:
             cell.width = widths[column]
             paragraph = cell.paragraphs[0]
             paragraph.paragraph_format.space_after = Pt(1)
-            run = paragraph.add_run(printed(text))
+            run = paragraph.add_run(printable(text))
             run.font.size, run.bold = SMALL, head or (not part.columns and column == 0)
         if len(cells) > 2 and not any(texts[2:]):
             _over_the_rest(cells)
@@ -165,12 +153,12 @@ def _lines_between(table: Any) -> None:
 
 def _draw(page: Document, drawing: Drawing) -> None:
     shape = page.add_picture(BytesIO(png(drawing)), width=WIDTH)
-    shape._inline.docPr.set("descr", printed(drawing.alt))
+    shape._inline.docPr.set("descr", printable(drawing.alt))
 
 
 def _foot(page: Document, origin: str) -> None:
     paragraph = page.sections[0].footer.paragraphs[0]
-    run = paragraph.add_run(printed(f"{origin} · page "))
+    run = paragraph.add_run(printable(f"{origin} · page "))
     run.font.size = SMALL
     for kind in ("begin", None, "end"):
         run = paragraph.add_run()
@@ -189,7 +177,7 @@ def _describe(page: Document, analysis: Analysis, title: str, written: Written) 
         moment = datetime.fromisoformat(written.time or analysis.provenance.time).astimezone(UTC).replace(tzinfo=None)
     except ValueError:
         moment = datetime(*NO_MOMENT)
-    facts.author, facts.title, facts.last_modified_by = printed(written.by)[:255], printed(title)[:255], ""
+    facts.author, facts.title, facts.last_modified_by = printable(written.by)[:255], printable(title)[:255], ""
     facts.created = facts.modified = moment.replace(microsecond=0)
     facts.comments, facts.language = "", "en"
 

@@ -9,6 +9,7 @@ from hypothesis import strategies as st
 
 from meanlab.core.complaints import NotebookComplaint
 from meanlab.notebook import Notebook, recompute
+from meanlab.records import result_file
 
 KEPT = Path(__file__).parent / "kept"
 
@@ -188,7 +189,7 @@ def test_a_copy_that_fails_leaves_nothing(full_book, tmp_path, monkeypatch):
     assert [one.name for one in tmp_path.iterdir() if one.is_file()] == []
 
 
-@pytest.mark.parametrize("path", sorted(KEPT.glob("*.meanlab.json")), ids=lambda path: path.name)
+@pytest.mark.parametrize("path", sorted(KEPT.glob("bench-*.meanlab.json")), ids=lambda path: path.name)
 def test_files_of_earlier_versions_still_open(path):
     """A record file made by an earlier meanlab opens, is whole, gives every kept number, and is written the same."""
     opened = Notebook.open_file(path)
@@ -208,6 +209,19 @@ def test_files_of_earlier_versions_still_open(path):
     assert opened.exported() == path.read_bytes()
 
 
-def test_there_is_a_kept_file():
-    """The file of the first version is there to be opened."""
-    assert (KEPT / "bench-1.0.0.meanlab.json").exists()
+@pytest.mark.parametrize("path", sorted(KEPT.glob("result-*.meanlab.json")), ids=lambda path: path.name)
+def test_results_of_earlier_versions_still_open(path):
+    """A single result that an earlier meanlab wrote opens as an entry with every number."""
+    opened = Notebook.open_file(path)
+    assert opened.verify() == []
+    entry = opened.entry(opened.entries()[0].key)
+    kept = json.loads(path.read_text(encoding="utf-8"))["analysis"]
+    assert entry.analysis.test.p_value == kept["test"]["p_value"]
+    assert entry.analysis.summary.mean == kept["summary"]["mean"]
+    assert result_file(entry.analysis, entry.source, entry.written) == path.read_bytes()
+
+
+@pytest.mark.parametrize("name", ["bench-1.0.0.meanlab.json", "result-1.0.0.meanlab.json"])
+def test_there_are_files_of_the_first_version(name):
+    """The files of the first version are there to be opened."""
+    assert (KEPT / name).exists()
