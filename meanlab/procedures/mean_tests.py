@@ -74,10 +74,14 @@ def guard(statistic: Any, a: Any) -> Any:
 
 
 def unguard(value: Any, a: Any) -> Any:
-    """Return T with g(T) = value: T = 3y/(c² + c + 1), y = value − a/2, c the real cube root of 1 + 3ay."""
-    y = value - a / 2
+    """Return T with g(T) = value: T = 3y/(c² + c + 1), y = value − a/2, c the real cube root of 1 + 3ay.
+
+    Far out, where c² may overflow and nothing cancels, the same is (c − 1)/a.
+    """
+    y = np.clip(value - a / 2, -1e150, 1e150)
     c = np.cbrt(1 + 3 * a * y)
-    return 3 * y / (c * c + c + 1)
+    far = np.abs(a * y) > 1
+    return np.where(far, (c - 1) / np.where(far, a, 1.0), 3 * y / (c * c + c + 1))
 
 
 def guarded_tails(ratio: Any, a: Any, df: Any) -> tuple[Any, Any]:

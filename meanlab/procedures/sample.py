@@ -115,7 +115,8 @@ class Sample:
     @cached_property
     def differences(self) -> np.ndarray:
         """whole − target, shape (n,), exact."""
-        return self.whole - self.target
+        narrow = self.whole.dtype != object and -WIDE < self.target < WIDE
+        return (self.whole if narrow else self.whole.astype(object)) - self.target
 
     def value(self, whole: int, parts: int = 1) -> float:
         """Return a whole number on the scale of the units, divided by ``parts``, in the unit of the readings."""

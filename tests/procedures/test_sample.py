@@ -95,6 +95,13 @@ def test_shifted_units_keep_their_proportions(texts):
     assert sample_of(texts).shifted.tolist() == expected
 
 
+def test_differences_from_a_target_beyond_64_bits_are_exact():
+    """A target at the end of a very wide equivalence limit does not overflow the units' own 64 bits."""
+    sample = sample_of(["1", "2", "5"]).at(-(10**30))
+    assert sample.differences.tolist() == [10**30 + 1, 10**30 + 2, 10**30 + 5]
+    assert sample.at(1).differences.tolist() == [0, 1, 4]
+
+
 def test_readings_far_below_their_target_have_a_finite_ratio():
     """A ratio that no double can hold is the largest double, with its sign: nothing overflows."""
     assert sample_of(["1e-300", "2e-300"], "1e300").ratio == -float(np.finfo(float).max)
