@@ -11,7 +11,7 @@ from meanlab.core.complaints import ReadingsComplaint
 from meanlab.core.numbers import exact, looks_computed
 from meanlab.intake import sayings
 from meanlab.intake.characters import one_spelling
-from meanlab.intake.entry import Parsed, parse
+from meanlab.intake.entry import Parsed, meant_by_letter, parse
 from meanlab.intake.found import Special
 from meanlab.intake.long_column import ODD_BY_COMMA, ODD_BY_POINT
 from meanlab.intake.numerals import FARTHEST, DecimalSign, Sign, decimal_sign, leaning, under
@@ -21,7 +21,6 @@ from meanlab.intake.words import FLAGS
 _SURE_COMMA = re.compile(r",(?!\d{3}$)|^[+-]?(?:0|\d{4,}),", re.ASCII | re.MULTILINE)
 _SURE_POINT = re.compile(r"\.(?!\d{3}$)|^[+-]?(?:0|\d{4,})\.", re.ASCII | re.MULTILINE)
 _OPEN_UNIT = re.compile(r"[^\W\d_][^\s()\d]{0,11}|[€£¥¢]")
-_LOOKALIKE = {"O": "0", "o": "0", "l": "1", "I": "1", "S": "5", "B": "8"}
 _CODES = frozenset({"-9", "-99", "-999", "-9999", "-99999", "-999.9", "-999.99", "9999", "99999", "-999.0", "-9999.0"})
 
 
@@ -152,8 +151,9 @@ def _no_lone_letter(key: Any, one: Parsed) -> Parsed:
     letter = one.unit or one.remark
     if not one.numeral or one.sort not in ("", "flag") or len(letter) != 1 or not letter.isalpha():
         return one
-    if letter in _LOOKALIKE and text.rstrip().endswith(one.numeral[-1] + letter):
-        return Parsed("unread", sort="text", meant=one.numeral + _LOOKALIKE[letter])
+    slip = meant_by_letter(text, one)
+    if slip:
+        return Parsed("unread", sort="text", meant=slip)
     return replace(one, unit="", remark=letter, sort="flag")
 
 
@@ -279,7 +279,7 @@ def _remark(found: Read, each: list[Parsed], given: Given, known: Iterable[Parse
     if found.sign.mixed:
         found.warnings.append(sayings.mixed_signs(given, each, found.sign.sign))
     if found.sign.thousands:
-        found.warnings.append(sayings.thousands(given, each, found.sign.sign))
+        found.warnings.extend(filter(None, [sayings.thousands(given, each, found.sign.sign)]))
     if any(" " in one.numeral for one in known):
         found.warnings.extend(sayings.blank_groups(given, each))
     found.warnings.extend(_codes_among(given, Counter(found.numbers)))

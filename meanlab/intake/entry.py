@@ -15,7 +15,7 @@ from typing import Literal
 
 from meanlab.intake.numerals import NUMERAL
 from meanlab.intake.units import is_unit
-from meanlab.intake.words import ABOVE, BELOW, ERROR_CELLS, FLAGS, INFINITE, UNCLEAR, is_missing_mark, plain_word
+from meanlab.intake.words import ABOVE, BELOW, ERROR_CELLS, FLAGS, INFINITE, LIMIT_NAMES, UNCLEAR, is_missing_mark, plain_word
 
 Kind = Literal["reading", "below", "above", "missing", "unread"]
 
@@ -26,9 +26,10 @@ POWER = (
 _READING = re.compile(rf"(?P<sign>[+-](?P<gap>\s*))?(?P<numeral>{NUMERAL})(?:{POWER})?", re.ASCII)
 _LOST_POWER = re.compile(rf"[+-]?(?:{NUMERAL})\s?[x×*·⋅]\s?10\d{{1,2}}(?!\d)", re.ASCII)
 _ERROR_CODE = re.compile(r"err(?:or)?[ -]?\d{0,4}|e\d{2,3}", re.IGNORECASE | re.ASCII)
-_RANGE = re.compile(rf"[+-]?(?:{NUMERAL})\s*(?:-|\.\.+|…|\bto\b|\bbis\b)\s*(?:{NUMERAL})(?:\s?\D*)", re.ASCII)
+_RANGE = re.compile(rf"[<>≤≥~]?\s*[+-]?(?:{NUMERAL})\s*(?:-|\.\.+|…|\bto\b|\bbis\b)\s*(?:{NUMERAL})(?:\s?\D*)", re.ASCII)
 _IN_BRACKETS = re.compile(rf"\([+-]?(?:{NUMERAL})\)", re.ASCII)
 _UNIT_IN_BRACKETS = re.compile(r"[(\[]([^()\[\]]{2,})[)\]]")
+_WORD_AND_LIMIT = re.compile(rf"(?P<word><?\s?[^\W\d][^\d(<≤:=]*?)\s*[(<≤:=]*\s*(?P<number>{NUMERAL}[^()]*)\)?", re.ASCII)
 _ABOUT = re.compile(r"(?:~|≈|≅|∼|ca\.?(?=[\s\d])|circa\b|about\b|approx(?:\.|imately)?(?=\s)|around\b|etwa\b|roughly\b)\s*", re.IGNORECASE)
 _QUOTES = "'\"“”„‘’‚«»"
 _BARE_POWER = re.compile(r"(?P<sign>[+-])?10\^(?P<exponent>[+-]?\d{1,4})", re.ASCII)
@@ -121,7 +122,18 @@ def _word(text: str) -> Parsed | None:
         return Parsed("below", sort="unclear" if word in UNCLEAR else "word")
     if word in ABOVE:
         return Parsed("above", sort="unclear" if word in UNCLEAR else "word")
-    return None
+    return _word_and_limit(text)
+
+
+def _word_and_limit(text: str) -> Parsed | None:
+    """A word with its limit: "ND (0.05)", "n.d. < 0.05", "<LOQ (0.05)"."""
+    found = _WORD_AND_LIMIT.fullmatch(text)
+    word = plain_word(found["word"]) if found else ""
+    kind: Kind | None = "below" if word in BELOW - LIMIT_NAMES else "above" if word in ABOVE and len(word) > 1 else None
+    number = _reading(found["number"].strip()) if found and kind else None
+    if number is None or kind is None or number.kind != "reading" or number.sort:
+        return None
+    return replace(number, kind=kind, sort="word and limit")
 
 
 def _formula(text: str) -> Parsed | None:
@@ -149,18 +161,18 @@ def _limit(text: str) -> Parsed | None:
 def _stamp(text: str) -> Parsed | None:
     if _DATE.fullmatch(text):
         return Parsed("unread", sort="date", meant=_meant(text))
+    if _RANGE.fullmatch(text):
+        return Parsed("unread", sort="span")
     return Parsed("unread", sort="time") if _TIME.fullmatch(text) else None
 
 
 def _about(text: str) -> Parsed | None:
-    """A number said to be approximate is kept and marked; a range of numbers is no reading."""
+    """A number said to be approximate is kept and marked; a number in brackets is no reading."""
     found = _ABOUT.match(text)
     number = _reading(text[found.end() :]) if found else None
     if found and number is not None and number.kind == "reading" and number.sort in ("", "uncertainty"):
         return replace(number, remark=found[0].strip(), sort="flag")
-    if _IN_BRACKETS.fullmatch(text):
-        return Parsed("unread", sort="brackets")
-    return Parsed("unread", sort="span") if _RANGE.fullmatch(text) and not _DATE.fullmatch(text) else None
+    return Parsed("unread", sort="brackets") if _IN_BRACKETS.fullmatch(text) else None
 
 
 def _reading(text: str) -> Parsed | None:
@@ -193,7 +205,7 @@ def _with_rest(rest: str, as_reading: Callable[..., Parsed], signed: bool) -> Pa
         return as_reading()
     if rest == "-" and not signed:
         return as_reading(remark="-", sort="trailing minus", negative=True)
-    if rest[0] in ".,'0123456789_:" or rest[0] == "/" and _DIGIT.match(rest[1:2]):
+    if rest[0] in ".,'0123456789_:" or rest in ("e", "E") or rest[0] == "/" and _DIGIT.match(rest[1:2]):
         return None
     if _LAST_DIGITS.match(rest):
         tail = rest[rest.index(")") + 1 :].strip()
@@ -254,11 +266,20 @@ def _meant(text: str) -> str:
     return ""
 
 
+def meant_by_letter(text: str, parsed: Parsed) -> str:
+    """Return the number that was meant where a letter like a digit stands close behind one: "12,3O"; "" elsewhere."""
+    letter = parsed.unit or parsed.remark
+    if len(letter) != 1 or not text.rstrip().endswith(parsed.numeral[-1:] + letter):
+        return ""
+    digit = letter.translate(_LOOKALIKE)
+    return parsed.numeral + digit if digit != letter else ""
+
+
 _WAYS: tuple[Callable[[str], Parsed | None], ...] = (
     _word,
     _formula,
-    _limit,
     _stamp,
+    _limit,
     _about,
     _reading,
     lambda text: Parsed("unread", sort="text", meant=_meant(text)),

@@ -9,6 +9,22 @@ from meanlab.intake.units import is_qualified_unit, is_unit, is_unmistakable
 _BRACKETED = re.compile(r"[(\[]([^()\[\]]*(?:\([^()]*\)[^()\[\]]*)?)[)\]]")
 _BEHIND_A_MARK = re.compile(r"^(.*\S)\s*(?:,|;|:|\s/|/(?=\()|\s-|\s–|_|\bin)\s*(\S.*)$")
 _LETTER = re.compile(r"[^\W\d_]")
+_UNITS_OF_SYMBOLS = {
+    "T": "°C K",
+    "t": "°C s min h",
+    "ϑ": "°C",
+    "θ": "°C",
+    "m": "g mg kg µg",
+    "V": "mL ml L l µL",
+    "p": "bar mbar Pa hPa kPa",
+    "λ": "nm µm",
+    "U": "V mV",
+    "I": "A mA",
+    "w": "%",
+    "φ": "%",
+    **dict.fromkeys("dlhb", "mm cm µm m nm"),
+    **dict.fromkeys("cβρ", "mg/L mg/l g/L g/l µg/L µg/l mol/L mol/l mmol/L mmol/l g/cm³ kg/m³"),
+}
 _NO_UNIT = frozenset({"-", "–", "1", "—", "dimensionless", "no unit", "ohne einheit"})
 _OPEN_WORDS = re.compile(r"[a-zA-ZµμΩ%°]{1,8}(?:/[a-zA-Z0-9 µμ%°.]{1,10})?")
 
@@ -32,7 +48,7 @@ def heading_of(text: str) -> Heading:
     if not _has_words(flat):
         return Heading(flat)
     bare = flat.rstrip(":=* ").strip()
-    for read in (_in_brackets, _behind_a_mark, _whole, _last_words):
+    for read in (_symbol_and_unit, _in_brackets, _behind_a_mark, _whole, _last_words):
         found = read(bare)
         if found:
             name, unit = found
@@ -42,6 +58,14 @@ def heading_of(text: str) -> Heading:
 
 def _has_words(text: str) -> bool:
     return bool(_LETTER.search(text)) or is_unit(text)
+
+
+def _symbol_and_unit(text: str) -> tuple[str, str] | None:
+    """A symbol divided by its unit, "T/°C" (ISO 80000-1), where the unit suits the symbol."""
+    symbol, mark, unit = text.partition("/")
+    symbol, unit = symbol.strip(), unit.strip()
+    suits = is_unit(unit) and unit in _UNITS_OF_SYMBOLS.get(symbol, "").split()
+    return (symbol, unit) if mark and suits else None
 
 
 def _in_brackets(text: str) -> tuple[str, str] | None:

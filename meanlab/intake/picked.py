@@ -18,6 +18,7 @@ class Picked:
     name, unit   as the headings give them
     qualifier    column that holds "<" and ">", None where there is none
     preparation  column that holds the labels of the preparations; ``is_chosen`` where it was chosen, not only found
+    is_pool      lines of numbers that make one set: an empty place in them is no missing entry
     """
 
     block: Block
@@ -28,5 +29,13 @@ class Picked:
     qualifier: int | None = None
     preparation: int | None = None
     is_chosen: bool = False
+    is_pool: bool = False
     warnings: list[str] = field(default_factory=list)
     notes: list[str] = field(default_factory=list)
+
+    def places(self) -> list[tuple[int, int]]:
+        """Return row and column of each entry, in reading order."""
+        table = self.block.table
+        return [
+            (row, column) for row in self.rows for column in self.columns if not self.is_pool or table.text(row, column)
+        ]

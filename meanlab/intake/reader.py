@@ -168,7 +168,7 @@ def _given(picked: Picked, decimal: Sign | None) -> Given:
         kinds, computed = None, frozenset[int]()
         places: Sequence[tuple[int, int]] = ()
     else:
-        places = [(row, column) for row in picked.rows for column in picked.columns]
+        places = picked.places()
         texts = [table.text(row, column) for row, column in places]
         across = len(picked.columns) > 1 and table.lines is not None
         place_of = lambda i: table.place(*places[i]) + (f", field {places[i][1] + 1}" if across else "")  # noqa: E731
@@ -176,7 +176,7 @@ def _given(picked: Picked, decimal: Sign | None) -> Given:
         computed = _computed(table, places)
     qualifiers = None
     if picked.qualifier is not None:
-        qualifiers = [table.text(row, picked.qualifier) for row in picked.rows for _ in picked.columns]
+        qualifiers = [table.text(row, picked.qualifier) for row, _ in picked.places()]
     return Given(texts, place_of, kinds, computed, qualifiers, decimal, None, picked.unit)
 
 
@@ -250,7 +250,7 @@ def _intake(picked: Picked, given: Given, found: Read) -> Intake:
 def _preparations(picked: Picked) -> tuple[str, ...] | None:
     table = picked.block.table
     if picked.preparation is not None:
-        return tuple(table.text(row, picked.preparation) for row in picked.rows for _ in picked.columns)
+        return tuple(table.text(row, picked.preparation) for row, _ in picked.places())
     if table.labels is None or table.lines is None:
         return None
-    return tuple(table.labels[table.lines[row]] for row in picked.rows for _ in picked.columns)
+    return tuple(table.labels[table.lines[row]] for row, _ in picked.places())

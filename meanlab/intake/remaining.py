@@ -26,7 +26,7 @@ def remaining(block: Block, rows: Sequence[int], roles: list[Role], filtered: bo
     if block.heading is None and len(rows) == 1 and len(filled) > 1:
         beside = [i for i in filled if sort_of(block.table, rows[0], i) in _ENTRIES]
         if len(beside) > 1:
-            return Picked(block, rows, filled)
+            return Picked(block, rows, filled, is_pool=True)
     hidden = block.table.sheet.hidden_columns if block.table.sheet else frozenset()
     readings = [i for i, role in enumerate(roles) if role.role == "readings"]
     readings = [i for i in readings if i not in hidden] or readings or _last_resort(block, roles, filled)
@@ -38,7 +38,7 @@ def remaining(block: Block, rows: Sequence[int], roles: list[Role], filtered: bo
         return Picked(block, rows, across, notes=["The columns were read across the row as replicates."])
     if _is_pool(block, rows, readings, filled):
         note = f"{len(rows)} lines of numbers without a heading were read line by line as one set."
-        return Picked(block, rows, readings, notes=[note])
+        return Picked(block, rows, readings, notes=[note], is_pool=True)
     raise _question(block, rows, roles, readings, across)
 
 
@@ -58,7 +58,7 @@ def _last_resort(block: Block, roles: list[Role], filled: list[int]) -> list[int
 def _is_pool(block: Block, rows: Sequence[int], readings: list[int], filled: list[int]) -> bool:
     """Tell whether bare numbers of one kind were typed into a few lines, to be read line by line."""
     table = block.table
-    if block.heading is not None or readings != filled or table.sheet is not None or table.separator not in (" ", ","):
+    if block.heading is not None or readings != filled or table.sheet is not None or table.separator not in (" ", ",", ";"):
         return False
     cells = [(column, table.text(row, column)) for row in rows for column in readings if table.text(row, column)]
     if not 1 < len(readings) <= len(cells) <= MOST_POOLED:
@@ -71,7 +71,9 @@ def _is_pool(block: Block, rows: Sequence[int], readings: list[int], filled: lis
     for column in readings:
         sizes = sorted(float(under(one.numeral, ".") or under(one.numeral, ",") or 0) for c, one in found if c == column)
         middles.append(sizes[len(sizes) // 2])
-    return len(places) == 1 and 0 < max(middles) <= SPREAD * min(middles)
+    whole = places == {0} and table.separator != " "
+    padded = any(one.numeral[0] == "0" and one.numeral[1:2].isdigit() for _, one in found)
+    return len(places) == 1 and not whole and not padded and 0 < max(middles) <= SPREAD * min(middles)
 
 
 def _first_counts(block: Block, rows: Sequence[int]) -> bool:

@@ -103,6 +103,7 @@ def about(sort: str, given: "Given", places: Sequence[int], each: Sequence[Parse
         "gap": f"A minus sign with a blank behind it was read as negative: {where}.",
         "unclear": f"{word} was taken for a reading {each[places[0]].kind} a limit that is not named ({where}). "
         "If it stands for something else, such as not determined, write NA instead.",
+        "word and limit": f"The number behind the word was taken for the limit: {where}.",
         "word": f"Kept apart as {each[places[0]].kind} a limit or range, without a number: {where}.",
         "error": f"Cells in error count as missing: {where}.",
         "open unit": f'"{each[places[0]].unit}" behind every reading was taken for the unit.',
@@ -142,6 +143,8 @@ def thousands(given: "Given", each: Sequence[Parsed], sign: str) -> str:
     """Return the warning for thousands marks that no other entry shows to be such."""
     grouped = [i for i, one in enumerate(each) if one.numeral and leaning(one.numeral) == "either"]
     mark = "point" if sign == "," else "comma"
+    if not grouped:
+        return ""
     return f"The {mark} was taken for a thousands mark, not a decimal sign: {named(given, grouped)}."
 
 

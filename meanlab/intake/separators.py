@@ -124,10 +124,18 @@ def _comma_by_rows(data: list[str]) -> bool:
     readable = sum(is_entry(line) for line in commas)
     if not commas or readable * 2 >= len(commas) or len(commas) * 2 < len(data):
         return False
+    if sum(_is_list_by_blanks(line) for line in commas) * 2 > len(commas):
+        return False
     most = Counter(line.count(",") for line in commas).most_common(1)[0][1]
     entries = all(sort_of_text(part.strip()) for line in commas for part in line.split(","))
     labelled = sum(bool(take_apart(one_spelling(line))) for line in commas)
     return (most * 2 >= len(commas) or entries) and labelled * 2 <= len(commas)
+
+
+def _is_list_by_blanks(line: str) -> bool:
+    """Tell whether blanks part a line into entries with decimal commas: "1 5,02"."""
+    parts = line.split()
+    return len(parts) > 1 and all(is_entry(part) and part[-1] != "," for part in parts)
 
 
 def _heading_fields(filled: list[str]) -> list[str]:
@@ -147,7 +155,7 @@ def _comma_in_a_row(line: str, decimal: str | None) -> str:
     """One line with commas: readings beside each other, decimal commas, or both."""
     if is_entry(line) or (line.count(",") == 1 and take_apart(one_spelling(line))):
         return ""
-    if all(is_entry(part) for part in line.split()):
+    if _is_list_by_blanks(line):
         return ""
     parts = [part.strip() for part in line.split(",")]
     if ", " in line and _DECIMAL_COMMA_LIST.search(line):

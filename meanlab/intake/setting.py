@@ -5,7 +5,7 @@ import re
 from meanlab.core.complaints import QuestionComplaint
 from meanlab.core.numbers import exact
 from meanlab.intake.characters import one_spelling, shown
-from meanlab.intake.entry import Parsed, parse
+from meanlab.intake.entry import Parsed, meant_by_letter, parse
 from meanlab.intake.numerals import leaning, under
 
 _AS_TYPED = re.compile(r"[+−–-]?(\d+([.,]\d*)?|[.,]\d+)([eE][+-]?\d{1,4})?", re.ASCII)
@@ -23,6 +23,8 @@ def read_number(text: str, decimal_sign: str | None = None) -> str:
     """
     typed = text.strip()
     found = parse(one_spelling(typed).strip(" \xa0"))
+    if found.kind == "reading" and (slip := meant_by_letter(typed, found)):
+        found = Parsed("unread", meant=slip)
     objection = _objection(found, decimal_sign)
     if objection:
         raise QuestionComplaint(f'"{shown(typed)}" {objection}')

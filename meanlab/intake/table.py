@@ -175,11 +175,14 @@ def sort_of_text(text: str) -> str:
         return "missing"
     if found.sort in ("date", "time"):
         return "stamp"
-    return "odd" if found.meant or found.sort in _ODD or not _has_letter(text) else "text"
+    return "odd" if found.meant or found.sort in _ODD or _is_like_a_number(text) else "text"
 
 
-def _has_letter(text: str) -> bool:
-    return any(one.isalpha() or one in "%°‰" for one in text)
+def _is_like_a_number(text: str) -> bool:
+    """Tell whether a text that could not be read was meant as an entry, not as a heading: "(0.05)", "<", "1.2e"."""
+    if text[0] in "<>≤≥" or not any(one.isalpha() or one in "%°‰" for one in text):
+        return True
+    return text.lstrip("+-")[:1].isdigit() and not any(sum(map(str.isalpha, word)) > 2 for word in text.split())
 
 
 def filled_width(cells: Sequence[str]) -> int:
@@ -324,6 +327,8 @@ def _block(table: Table, above: list[int], start: int, end: int) -> Block:
 
 
 def _heading_rows(table: Table, above: list[int]) -> tuple[int | None, int | None, int | None]:
+    if above and not table.separator and table.sheet is None and _is_fact(table.rows[above[-1]][0]):
+        above = []
     if not above:
         return None, None, None
     cells = [text for text in table.rows[above[-1]] if text]
@@ -332,6 +337,12 @@ def _heading_rows(table: Table, above: list[int]) -> tuple[int | None, int | Non
         return above[-2], above[-1], None
     group = above[-2] if len(above) > 1 and len(table.rows[above[-2]]) > 1 else None
     return above[-1], None, group
+
+
+def _is_fact(text: str) -> bool:
+    """Tell whether a line above the readings is a name with a value of its own: "Date: 2026-03-04"."""
+    name, mark, value = text.partition(":")
+    return bool(mark and value.strip() and name.strip()) and heading_of(text).unit is None
 
 
 def _is_summary_row(cells: Sequence[str]) -> bool:

@@ -27,6 +27,7 @@ BELOW = frozenset(
     "unternwg unterbestimmungsgrenze unternachweisgrenze <nachweisgrenze <bestimmungsgrenze nondétecté nodetectado "
     "<limit <min <range toolow".split()
 )
+LIMIT_NAMES = frozenset("lod loq mdl mql lo low".split())
 ABOVE = frozenset(
     "over overrange overflow overload overld ovld ovl ovr ovrng ovfl ovrflw overscale ol 0l +ol hi high sat satd saturated "
     "saturation tntc tmtc clip clipped offscale outofrange aboverange abovelimit aboveuloq abovecalibration "
