@@ -156,7 +156,7 @@ class Notebook(Database):
 
     def back_up(self, path: str | Path) -> Path:
         """Copy the notebook, entries and bench defaults, into a new SQLite file that is there whole or not at all."""
-        with _said_plainly_at(path), self._reading() as connection:
+        with self._reading() as connection, _said_plainly_at(path):
             return copy(connection, Path(path))
 
     def bench_defaults(self) -> dict[str, str]:

@@ -146,9 +146,16 @@ def _others(analysis: Analysis, texts: PanelTexts) -> Part:
     others = {one.procedure: one for one in analysis.others}
     rows = tuple(_other(analysis, texts, others[name]) for name in PROCEDURES if name in others)
     columns = ("Procedure", "Speaks of the", "Estimate", "Interval", "Statistic", "p")
-    sentences = ("None of these decided: the procedure is chosen by its rule before any p-value is looked at.",)
+    chosen = "was fixed by the written method" if analysis.route.fixed else "is chosen by its rule"
+    sentences = (f"None of these decided: the procedure {chosen} before any p-value is looked at.",)
     widths = (15, 20, 12, 21, 17, 15)
-    return Part("Same readings, other procedures", sentences if rows else (), columns, rows, widths=widths)
+    return Part(
+        "Same readings, other procedures",
+        sentences if rows and analysis.test is not None else (),
+        columns,
+        rows,
+        widths=widths,
+    )
 
 
 def _other(analysis: Analysis, texts: PanelTexts, other: Test | NotApplicable) -> tuple[str, ...]:

@@ -32,6 +32,7 @@ TEXT, SMALL, HEADING, TITLE = Pt(10), Pt(9), Pt(12), Pt(16)
 PAGE, MARGIN = (Mm(210), Mm(297)), Mm(20)
 WIDTH = Mm(170)
 PICTURE = (660.0, 200.0, 150.0)  # pixels: width, height of the distribution and of the readings
+AFTER_BORDERS = tuple(qn(f"w:{name}") for name in ("shd", "tblLayout", "tblCellMar", "tblLook"))
 NO_MOMENT = (1980, 1, 1, 0, 0, 0)
 
 
@@ -148,7 +149,8 @@ def _lines_between(table: Any) -> None:
         for name, value in (("val", "single"), ("sz", "4"), ("space", "0"), ("color", "BBBBBB")):
             line.set(qn(f"w:{name}"), value)
         borders.append(line)
-    table._tbl.tblPr.append(borders)
+    after = [one for one in table._tbl.tblPr if one.tag in AFTER_BORDERS]
+    after[0].addprevious(borders)  # the schema of the format fixes the order; every table has one of these
 
 
 def _draw(page: Document, drawing: Drawing) -> None:

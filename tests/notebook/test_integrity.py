@@ -14,7 +14,7 @@ from meanlab.notebook import Notebook
 
 ENTRIES = 6
 shared_fixtures = settings(
-    deadline=None, max_examples=60, suppress_health_check=[HealthCheck.function_scoped_fixture], derandomize=True
+    deadline=None, max_examples=40, suppress_health_check=[HealthCheck.function_scoped_fixture], derandomize=True
 )
 
 
@@ -148,7 +148,7 @@ def test_the_database_itself_refuses_to_change_an_entry(tmp_path, whole_file, ta
         connection.execute(statement.format(table))
 
 
-@settings(parent=shared_fixtures, max_examples=120)
+@settings(parent=shared_fixtures, max_examples=80)
 @given(place=st.floats(0, 1, exclude_max=True), bits=st.integers(1, 255))
 def test_a_changed_byte_anywhere_in_the_file_changes_no_entry_unseen(tmp_path, whole_file, place, bits):
     """Flip any byte of the database file: either it is said, or every entry is still what was saved."""
