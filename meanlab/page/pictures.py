@@ -16,10 +16,11 @@ SAMPLING_HEIGHT, READINGS_HEIGHT = 178.0, 130.0
 
 def panel(analysis: Analysis) -> None:
     """Draw the two pictures of the panel: the sampling distribution over the readings."""
-    if analysis.test is not None:
-        noun, sign = short_noun(analysis.question.target_kind), analysis.readings.decimal_sign
-        draw(described.sampling_distribution(analysis.test, sign, noun, height=SAMPLING_HEIGHT), "sampling")
-    draw(described.readings_picture(analysis, height=READINGS_HEIGHT), "readings")
+    with st.container(key="pictures"):
+        if analysis.test is not None:
+            noun, sign = short_noun(analysis.question.target_kind), analysis.readings.decimal_sign
+            draw(described.sampling_distribution(analysis.test, sign, noun, height=SAMPLING_HEIGHT), "sampling")
+        draw(described.readings_picture(analysis, height=READINGS_HEIGHT), "readings")
 
 
 def agreement(analysis: Analysis) -> None:

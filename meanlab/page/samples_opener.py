@@ -8,10 +8,15 @@ import streamlit as st
 from meanlab.page import state
 from meanlab.samples import SampleSet, sample_sets
 
+OPENER = "sample_sets"
+
 
 def draw() -> None:
-    """Draw the opener."""
-    with st.popover("Sample sets", key="sample_sets"), st.container(key="sample_list"):
+    """Draw the opener; its list only while it is open."""
+    opener = st.popover("Sample sets", key=OPENER, on_change="rerun")
+    if not opener.open:
+        return
+    with opener, st.container(key="sample_list"):
         sets = _sets()
         if not sets:
             st.html('<p class="ml-status">The folder sample_sets is not here; copy it beside the folder meanlab.</p>')
@@ -23,6 +28,7 @@ def draw() -> None:
 
 def _open(chosen: SampleSet) -> None:
     content = chosen.content
+    state.note(OPENER, False)
     if isinstance(content, str):
         state.open_set(chosen.title, {**chosen.fields, "readings_text": content})
     else:
