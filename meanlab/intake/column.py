@@ -143,7 +143,8 @@ def _settle_suffixes(
                 for key, one in known.items()
             }
         return known
-    return {key: _no_lone_letter(key, one) for key, one in known.items()}
+    usual = {unit for unit in suffixes if unit and 2 * sum(counts[k] for k, one in known.items() if one.unit == unit) > total}
+    return {key: one if one.unit in usual else _no_lone_letter(key, one) for key, one in known.items()}
 
 
 def _no_lone_letter(key: Any, one: Parsed) -> Parsed:

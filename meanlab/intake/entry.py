@@ -201,7 +201,7 @@ def _reading(text: str) -> Parsed | None:
 
 def _with_rest(rest: str, as_reading: Callable[..., Parsed], signed: bool) -> Parsed | None:
     """What stands behind the number: nothing, a unit, an uncertainty, a remark."""
-    if not rest:
+    if not rest.strip():
         return as_reading()
     if rest == "-" and not signed:
         return as_reading(remark="-", sort="trailing minus", negative=True)

@@ -97,7 +97,8 @@ def _behind_a_mark(text: str) -> tuple[str, str] | None:
     unit = found[2].strip()
     if unit.startswith("(") and unit.endswith(")"):
         unit = unit[1:-1].strip()
-    return (found[1], unit) if is_qualified_unit(unit) and found[1].strip() else None
+    letters = sum(map(str.isalpha, found[1]))
+    return (found[1], unit) if is_qualified_unit(unit) and (len(unit) > 1 or not unit.isalpha() or letters > 2) else None
 
 
 def _whole(text: str) -> tuple[str, str] | None:

@@ -7,10 +7,10 @@ from itertools import chain, pairwise
 from typing import Any
 
 from meanlab.intake.characters import one_spelling, shown
+from meanlab.intake.heading import heading_of
 from meanlab.intake.labels import take_apart
 from meanlab.intake.lines import is_entry, sample
 from meanlab.intake.table import parsed, sort_of_text
-from meanlab.intake.units import is_qualified_unit
 
 GAPS = re.compile(r"\s{2,}|\t")
 _DIGIT = re.compile(r"\d")
@@ -105,13 +105,15 @@ def _are_counted(entries: list[str]) -> bool:
 def _comma(filled: list[str], decimal: str | None) -> str:
     """Return "," or ", " or PAIRS where commas part entries, "" where they belong to them."""
     data = [line for line in filled if _DIGIT.search(line)]
-    if len(filled) == 1 or (len(data) == 1 and len(filled) < 3 and data[0] == filled[-1]):
+    heading = _heading_fields(filled)
+    is_quantity = len(heading) == 2 and heading_of(", ".join(heading)).unit is not None
+    under_heading = len(heading) > 1 and not is_quantity
+    if len(filled) == 1 or (len(data) == 1 and not under_heading and data[0] == filled[-1]):
         return _comma_in_a_row(data[0] if data else filled[0], decimal)
     if any(_DECIMAL_COMMA_LIST.search(line) for line in data) and not any(is_entry(line) for line in data):
         return ", "
-    heading = _heading_fields(filled)
     widths = Counter(line.count(",") + 1 for line in data)
-    if len(heading) > 1 and not (len(heading) == 2 and is_qualified_unit(heading[1])):
+    if under_heading:
         fitting = sum(times for width, times in widths.items() if width >= len(heading))
         if fitting * 2 >= len(data):
             return ","
