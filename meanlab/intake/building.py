@@ -59,6 +59,7 @@ class SheetBuilder:
         self.summaries: set[tuple[int, int]] = set()
         self.merged: set[tuple[int, int, int]] = set()
         self._outside = 0
+        self._waiting: list[str] = []
         self._room = room
         self._rows: dict[int, dict[int, Cell]] = {}
 
@@ -74,6 +75,8 @@ class SheetBuilder:
         if column in cells:
             self.twice.append(place_name(row, column))
         cells[column] = cell
+        if cell.kind == "formula":
+            self._waiting.append(place_name(row, column))
 
     def at(self, row: int, column: int) -> Cell:
         """The cell at one place so far."""
@@ -145,15 +148,9 @@ class SheetBuilder:
         return frozenset(hidden)
 
     def _remarks(self, strays: list[str], summaries: list[str]) -> Iterable[str]:
-        waiting = [
-            place_name(row, column)
-            for row, cells in sorted(self._rows.items())
-            for column, cell in cells.items()
-            if cell.kind == "formula"
-        ]
-        if waiting:
+        if self._waiting:
             yield (
-                f"{_cells(waiting)} without a result: the formula was never calculated. Open the workbook in a "
+                f"{_cells(self._waiting)} without a result: the formula was never calculated. Open the workbook in a "
                 "spreadsheet, let it calculate, and save it."
             )
         if summaries:

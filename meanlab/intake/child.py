@@ -20,7 +20,7 @@ from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.containers import Workbook
 from meanlab.intake.grid import Cell, Sheet
 
-SECONDS = 30
+SECONDS = 60
 MEMORY = 1536 * 2**20
 _LOOK_EVERY = 0.1
 _ROOT = Path(__file__).resolve().parents[2]

@@ -3,11 +3,14 @@
 import re
 from html.parser import HTMLParser
 
-from meanlab.intake.building import LAST_COLUMN, LAST_ROW, Room, SheetBuilder, shown_text
+from meanlab.intake.building import Room, SheetBuilder, shown_text
 from meanlab.intake.grid import Cell, Sheet
 
 _CHARACTERS = re.compile(rb"charset\s*=\s*[\"']?([A-Za-z0-9_-]{3,20})")
 _UNSEEN = ("script", "style", "title", "comment")
+# the limits of the HTML standard (§4.9.11, attributes of td and th)
+_MOST_ROWS = 65_534
+_MOST_COLUMNS = 1_000
 _BLANKS = re.compile(r"\s+")
 
 
@@ -48,7 +51,8 @@ class _Table:
         self.column = 0
         self.pieces: list[str] | None = None
         self.spans = (1, 1)
-        self._taken: dict[int, int] = {}
+        # first column of a cell that spans rows: the row and the column after it
+        self._taken: dict[int, tuple[int, int]] = {}
 
     def begin_row(self) -> None:
         self.row += 1
@@ -57,8 +61,8 @@ class _Table:
     def begin_cell(self, rows: int, columns: int) -> None:
         if self.row < 0:
             self.begin_row()
-        while self._taken.get(self.column, 0) > self.row:
-            self.column += 1
+        while self._taken.get(self.column, (0, 0))[0] > self.row:
+            self.column = self._taken[self.column][1]
         self.pieces, self.spans = [], (rows, columns)
 
     def end_cell(self) -> None:
@@ -68,7 +72,7 @@ class _Table:
         rows, columns = self.spans
         self.builder.put(self.row, self.column, Cell(text))
         if rows > 1:
-            self._taken.update(dict.fromkeys(range(self.column, self.column + columns), self.row + rows))
+            self._taken[self.column] = (self.row + rows, self.column + columns)
             if not text[:1].isdigit():
                 self.builder.merged.add((self.row, self.row + rows - 1, self.column))
         self.column += columns
@@ -97,7 +101,7 @@ class _Page(HTMLParser):
         elif tag in ("td", "th"):
             self._open[-1].end_cell()
             given = dict(attributes)
-            rows, columns = _span(given.get("rowspan"), LAST_ROW), _span(given.get("colspan"), LAST_COLUMN)
+            rows, columns = _span(given.get("rowspan"), _MOST_ROWS), _span(given.get("colspan"), _MOST_COLUMNS)
             self._open[-1].begin_cell(rows, columns)
         elif tag in ("br", "p", "div"):
             self.handle_data(" ")

@@ -4,6 +4,7 @@ Source: ECMA-376-1 §18.3.1 (cells, their kinds and values), §22.4.2.4 (escapes
 """
 
 import re
+from functools import lru_cache
 
 from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.building import LAST_COLUMN, SheetBuilder, place_name, shown_text
@@ -150,15 +151,21 @@ def place_of(reference: str) -> tuple[int, int] | None:
     >>> place_of("B7"), place_of("$AB$10"), place_of("7B")
     ((6, 1), (9, 27), None)
     """
-    reference = reference.replace("$", "")
     letters = reference.rstrip("0123456789")
     digits = reference[len(letters) :]
-    if not (0 < len(letters) < 4 and 0 < len(digits) < 8 and letters.isascii() and letters.isalpha()):
-        return None
+    column = _column_of(letters)
+    return (int(digits) - 1, column) if 0 < len(digits) < 8 and column >= 0 else None
+
+
+@lru_cache(maxsize=1024)
+def _column_of(letters: str) -> int:
+    letters = letters.replace("$", "").upper()
+    if not (0 < len(letters) < 4 and letters.isascii() and letters.isalpha()):
+        return -1
     column = 0
-    for letter in letters.upper():
+    for letter in letters:
         column = column * 26 + ord(letter) - 64
-    return int(digits) - 1, column - 1
+    return column - 1
 
 
 def whole(text: str | None, otherwise: int = 0) -> int:
