@@ -150,6 +150,17 @@ class Spans:
         """Return the same units held against another target."""
         return replace(self, target=target)
 
+    @cached_property
+    def plain(self) -> bool:
+        """Whether every unit has equal bounds."""
+        return self.lows is self.highs or bool(np.all(self.lows == self.highs))
+
+    @cached_property
+    def rising(self) -> tuple[np.ndarray, np.ndarray]:
+        """The lower bounds in rising order, and the upper ones, shape (n,) each."""
+        lows = np.sort(self.lows)
+        return lows, (lows if self.plain else np.sort(self.highs))
+
     def value(self, bound: Any, other: Any = None, origin: int = 0) -> float | None:
         """Return a bound, or the middle of two, minus ``origin`` in the unit of the readings; None if infinite."""
         pair = (bound, bound if other is None else other)

@@ -44,6 +44,9 @@ def count_sides(units: Spans) -> Counts:
 
     "<L" is below when L ≤ target, ">U" above when U ≥ target; other censored units are undecided.
     """
+    if units.plain:
+        lower, higher = (int(np.count_nonzero(side)) for side in (units.lows < units.target, units.lows > units.target))
+        return Counts(lower, higher, units.n - lower - higher, 0)
     known = units.lows == units.highs
     below = np.where(known, units.lows < units.target, units.highs <= units.target).astype(bool)
     above = np.where(known, units.lows > units.target, units.lows >= units.target).astype(bool)
@@ -133,7 +136,7 @@ def critical_counts(n: int, alternative: str, alpha: float) -> tuple[float | Non
 
 def middle_units(units: Spans) -> tuple[Any, Any]:
     """Return the one or two middle units; (infinity, infinity) where the median falls on a censored one."""
-    lows, highs = np.sort(units.lows), np.sort(units.highs)
+    lows, highs = units.rising
     first, second = (units.n - 1) // 2, units.n // 2
     if lows[first] != highs[first] or lows[second] != highs[second]:
         return inf, inf
@@ -148,6 +151,7 @@ def interval_ends(units: Spans, alternative: str, alpha: float) -> tuple[Any, An
     j = fair_critical(tail(alternative, alpha), units.n)
     if j < 0:
         return -inf, inf, 1.0
-    low, high = np.sort(units.lows)[j], np.sort(units.highs)[units.n - 1 - j]
+    lows, highs = units.rising
+    low, high = lows[j], highs[units.n - 1 - j]
     outside = fair_lower(j, units.n) * (2 if alternative == "two-sided" else 1)
     return (-inf if alternative == "less" else low), (inf if alternative == "greater" else high), 1 - outside

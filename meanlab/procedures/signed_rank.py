@@ -67,39 +67,49 @@ class Null:
 
     def tails(self, differences: np.ndarray) -> tuple[float, float]:
         """Return P(W⁺ ≥ observed) and P(W⁺ ≤ observed)."""
-        ranks = doubled_midranks(differences)
-        counted = ranks[differences != 0]
-        observed = int(ranks[differences > 0].sum())
-        if len(differences) > EXACT_UP_TO:
-            return approximate_tails(counted, observed)
-        lower, upper = self.sums(counted)
+        return self.tails_of(*counted_ranks(differences), len(differences))
+
+    def tails_of(self, ranks: np.ndarray, observed: int, n: int) -> tuple[float, float]:
+        """Return the same of the doubled ranks that count and their observed positive sum, among n units."""
+        if n > EXACT_UP_TO:
+            law = Approximate(ranks)
+            return law.upper(observed - law.centre), law.upper(law.centre - observed)
+        lower, upper = self.sums(ranks)
         return float(upper[observed]), float(lower[observed])
 
 
-def approximate_tails(ranks: np.ndarray, observed: int) -> tuple[float, float]:
-    """Return both tails of 2·W⁺ by the normal approximation with ties, continuity and fourth-cumulant terms.
+def counted_ranks(differences: np.ndarray) -> tuple[np.ndarray, int]:
+    """Return the doubled midranks of the differences that are not 0, and the sum of those of positive ones."""
+    ranks = doubled_midranks(differences)
+    return ranks[differences != 0], int(ranks[differences > 0].sum())
+
+
+class Approximate:
+    """2·W⁺ by the normal approximation with ties, continuity and fourth-cumulant terms.
 
     The variance is Σr²/4 over the midranks r, the fourth cumulant −Σr⁴/8; the Edgeworth term of an upper tail is
     φ(z)·(z³ − 3z)·κ₄/(24σ⁴), taken as a factor exp(term/tail) so that no far tail turns negative. The continuity
     correction is half of the step between neighbouring sums.
     """
-    doubled = ranks.astype(float)
-    variance = float(np.sum(doubled**2)) / 4
-    if variance == 0:
-        return 1.0, 1.0
-    kurtosis = -float(np.sum(doubled**4)) / 8 / variance**2
-    step = 1.0 if np.any(ranks % 2) else 2.0
-    centre = float(np.sum(doubled)) / 2
 
-    def upper(distance: float) -> float:
-        z = (distance - step / 2) / sqrt(variance)
+    def __init__(self, ranks: np.ndarray) -> None:
+        doubled = ranks.astype(float)
+        squares = doubled * doubled
+        self.variance = float(squares.sum()) / 4
+        self.kurtosis = -float(squares @ squares) / 8 / self.variance**2 if self.variance else 0.0
+        self.step = 1.0 if np.any(ranks & 1) else 2.0
+        self.centre = float(doubled.sum()) / 2
+
+    def upper(self, distance: float) -> float:
+        """Return the probability of a sum that lies this far above the centre, or farther."""
+        if self.variance == 0:
+            return 1.0
+        z = (distance - self.step / 2) / sqrt(self.variance)
         plain = erfc(z / sqrt(2)) / 2
         if plain < 1e-300:
             return 0.0
-        edge = exp(-z * z / 2) / sqrt(2 * pi) * (z**3 - 3 * z) * kurtosis / 24
+        edge = exp(-z * z / 2) / sqrt(2 * pi) * (z**3 - 3 * z) * self.kurtosis / 24
         return min(1.0, plain * exp(edge / plain))
-
-    return upper(observed - centre), upper(centre - observed)
 
 
 def signed_rank(sample: Sample, alternative: str, alpha: float, estimate_always: bool = False) -> Test:
@@ -111,12 +121,10 @@ def signed_rank(sample: Sample, alternative: str, alpha: float, estimate_always:
     Both are left away above n = 20,000 unless ``estimate_always``.
     Source: Wilcoxon 1945; Pratt 1959; Hodges & Lehmann 1963.
     """
-    null, differences = Null(), sample.differences
-    ranks = doubled_midranks(differences)
-    counted = ranks[differences != 0]
-    observed = int(ranks[differences > 0].sum())
+    null = Null()
+    counted, observed = counted_ranks(sample.differences)
     exact = sample.n <= EXACT_UP_TO
-    p_greater, p_less = null.tails(differences)
+    p_greater, p_less = null.tails_of(counted, observed, sample.n)
     p = float(p_value(alternative, p_greater, p_less))
     rightmost = 0.5 ** len(counted)
     estimated = estimate_always or sample.n <= ESTIMATED_UP_TO
@@ -177,8 +185,9 @@ def critical_sums(
         while rejecting >= 0 and lower[rejecting] == (lower[rejecting - 1] if rejecting else 0.0):
             rejecting -= 1
     else:
-        rejecting = _last_where(lambda k: approximate_tails(ranks, k)[1] < each, -1, total // 2)
-        rejecting -= (rejecting % 2) if not np.any(ranks % 2) else 0
+        law = Approximate(ranks)
+        rejecting = _last_where(lambda k: law.upper(law.centre - k) < each, -1, total // 2)
+        rejecting -= rejecting % 2 if law.step == 2 else 0
     if rejecting < 0:
         return None, None
     return (rejecting / 2 if below else None), ((total - rejecting) / 2 if above else None)
