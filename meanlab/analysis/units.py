@@ -79,8 +79,9 @@ def units_of(readings: ReadingSet, question: Question) -> Units:
     target, limit = question.exact_target, question.exact_number("equivalence_limit")
     settings = [target] if limit is None else [target, limit]
     bounds = [entry.limit for entry in kept.censored if entry.limit is not None]
-    exponent = common_exponent([*kept.values, *bounds, *settings], "Readings, target and limits")
-    whole = [scaled(value, exponent) for value in kept.values]
+    known = [*kept.extremes, *bounds, *settings]
+    exponent = common_exponent(known, "Readings, target and limits", len(kept.values) + len(bounds) + len(settings))
+    whole = kept.whole_at(exponent)
     groups = _groups(kept, whole)
     divisor = lcm(*(len(group.whole) + len(group.censored) for group in groups)) if groups else 1
     scaled_target = scaled(target, exponent) * divisor

@@ -45,7 +45,7 @@ class Facts:
     @cached_property
     def nested(self) -> bool:
         """Whether any unit is a preparation of several readings."""
-        return any(len(places) > 1 for places in self.places)
+        return sum(map(len, self.places)) > len(self.places)
 
     @property
     def noun(self) -> str:

@@ -99,7 +99,7 @@ def far_places(x: np.ndarray) -> list[int]:
             break
         part = ordered[first : last + 1]
         away = part - part.mean()
-        s = sqrt(float(away @ away) / (len(part) - 1))
+        s = sqrt(float(np.square(away).sum()) / (len(part) - 1))
         if -away[0] > away[-1]:
             taken.append(int(order[first]))
             distance, first = -away[0], first + 1

@@ -87,8 +87,8 @@ def looks_computed(value: Decimal) -> bool:
     return len(value.normalize().as_tuple().digits) > MOST_COMPUTED_DIGITS
 
 
-def common_exponent(values: Sequence[Decimal], what: str = "The numbers") -> int:
-    """Return the power of ten of which every value is a whole multiple.
+def common_exponent(values: Sequence[Decimal], what: str = "The numbers", count: int | None = None) -> int:
+    """Return the power of ten of which every value is a whole multiple; ``count`` where the values stand for many.
 
     Raises ReadingsComplaint where the values span more than 650 digits or the exact sums would be too long.
     """
@@ -96,7 +96,7 @@ def common_exponent(values: Sequence[Decimal], what: str = "The numbers") -> int
     lowest = int(min(exponents, default=0))
     highest = max((value.adjusted() for value in values if value), default=lowest)
     span = highest - lowest + 1
-    if span > WIDEST_SPAN or span * len(values) > MOST_WORK:
+    if span > WIDEST_SPAN or span * (count or len(values)) > MOST_WORK:
         raise ReadingsComplaint(
             f"{what} span {span} digits from the largest to the finest; at most {WIDEST_SPAN} digits, and "
             f"{MOST_WORK:,} digits for all readings together, are computed exactly. Remove what is not a reading.",

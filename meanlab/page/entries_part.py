@@ -35,14 +35,14 @@ def draw(_found: Outcome | None) -> None:
 
 def _rows(found: Intake) -> list[tuple[str, ...]]:
     out = dict(readings.left_out(found))
-    plain: list[tuple[str, ...]] = []
-    special: list[tuple[str, ...]] = []
-    for entry in found.entries:
-        cause = out.get(entry.index)
+    entries = found.entries
+    notable = sorted({*found.special, *out})[:MOST_ROWS]
+    rows = []
+    for place in sorted({*notable, *range(min(MOST_ROWS, len(entries)))}):
+        entry, cause = entries[place], out.get(place)
         role = entry.role if cause is None else f"left out: {cause}"
-        row = (str(entry.index + 1), entry.place, entry.text, role)
-        (plain if role == "reading" else special).append(row)
-    return sorted([*special[:MOST_ROWS], *plain[:MOST_ROWS]], key=lambda row: int(row[0]))
+        rows.append((str(place + 1), entry.place, entry.text, role))
+    return rows
 
 
 def _too_many(found: Intake) -> None:
@@ -67,7 +67,8 @@ def _leave_out(found: Intake) -> None:
 
 def _left_out(found: Intake) -> None:
     typed, cause = (state.widget(key) or "" for key in ("leave_out_number", "leave_out_cause"))
-    entry = next((entry for entry in found.entries if str(entry.index + 1) == typed.strip()), None)
+    number = int(typed) if typed.strip().isdecimal() else 0
+    entry = found.entries[number - 1] if 0 < number <= len(found.entries) else None
     state.note("leave_out_complaint", _objection(typed, cause, entry is not None))
     if entry is not None and cause.strip():
         state.leave_out(entry.index, entry.text, cause.strip())

@@ -48,11 +48,10 @@ def intake() -> Intake | None:
 
 def left_out(found: Intake) -> tuple[tuple[int, str], ...]:
     """Return the readings left out by hand with their causes, as far as they still stand where they stood."""
-    entries = {str(entry.index): entry.text for entry in found.entries}
+    entries = found.entries
+    chosen = sorted((int(place), said) for place, said in state.working().left_out.items())
     return tuple(
-        (int(place), said["cause"])
-        for place, said in sorted(state.working().left_out.items(), key=lambda item: int(item[0]))
-        if entries.get(place) == said["text"]
+        (place, said["cause"]) for place, said in chosen if place < len(entries) and entries[place].text == said["text"]
     )
 
 
