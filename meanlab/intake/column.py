@@ -11,16 +11,15 @@ from meanlab.core.complaints import ReadingsComplaint
 from meanlab.core.numbers import exact, looks_computed
 from meanlab.intake import sayings
 from meanlab.intake.characters import one_spelling
-from meanlab.intake.entry import Parsed, meant_by_letter, parse
+from meanlab.intake.entry import Parsed, parse
 from meanlab.intake.found import Special
 from meanlab.intake.long_column import ODD_BY_COMMA, ODD_BY_POINT
 from meanlab.intake.numerals import FARTHEST, DecimalSign, Sign, decimal_sign, leaning, under
-from meanlab.intake.units import is_unit, same_unit
-from meanlab.intake.words import FLAGS
+from meanlab.intake.suffixes import settled
+from meanlab.intake.units import same_unit
 
 _SURE_COMMA = re.compile(r",(?!\d{3}$)|^[+-]?(?:0|\d{4,}),", re.ASCII | re.MULTILINE)
 _SURE_POINT = re.compile(r"\.(?!\d{3}$)|^[+-]?(?:0|\d{4,})\.", re.ASCII | re.MULTILINE)
-_OPEN_UNIT = re.compile(r"[^\W\d_][^\s()\d]{0,11}|[€£¥¢]")
 _CODES = frozenset({"-9", "-99", "-999", "-9999", "-99999", "-999.9", "-999.99", "9999", "99999", "-999.0", "-9999.0"})
 
 
@@ -99,7 +98,7 @@ def _read_any(given: Given) -> Read:
         key: _parsed(*(key if given.kinds is not None else (key, "text"))) for key in dict.fromkeys(keys)
     }
     counts = Counter(keys)
-    known = _settle_suffixes(known, counts, given.heading_unit)
+    known = settled(known, counts, given.heading_unit)
     found = Read()
     found.sign = _sign(given, known)
     numbers = {key: _number_of(one, key, found.sign, given) for key, one in known.items()}
@@ -124,38 +123,6 @@ def _parsed(text: str, kind: str) -> Parsed:
     if kind == "error":
         return Parsed("missing", sort="error")
     return parse(one_spelling(text).strip(" \t\xa0"))
-
-
-def _settle_suffixes(
-    known: dict[Hashable, Parsed], counts: Counter[Any], heading_unit: str | None
-) -> dict[Hashable, Parsed]:
-    """A letter or word behind every reading is a unit; behind some of them it is a mark, or a slip of the keyboard."""
-    numeric = [one for one in known.values() if one.numeral]
-    total = sum(counts[key] for key, one in known.items() if one.numeral)
-    suffixes = {one.remark if one.sort == "flag" else one.unit for one in numeric}
-    word = next(iter(suffixes), "")
-    if heading_unit and len(word) == 1 and word.isalpha() and not same_unit(word, heading_unit):
-        total = 0
-    if len(suffixes) == 1 and total > 1:
-        if word and not heading_unit and not is_unit(word) and word.casefold() not in FLAGS and _OPEN_UNIT.fullmatch(word):
-            return {
-                key: replace(one, unit=word, remark="", sort="open unit") if one.numeral else one
-                for key, one in known.items()
-            }
-        return known
-    usual = {unit for unit in suffixes if unit and 2 * sum(counts[k] for k, one in known.items() if one.unit == unit) > total}
-    return {key: one if one.unit in usual else _no_lone_letter(key, one) for key, one in known.items()}
-
-
-def _no_lone_letter(key: Any, one: Parsed) -> Parsed:
-    text = key[0] if isinstance(key, tuple) else key
-    letter = one.unit or one.remark
-    if not one.numeral or one.sort not in ("", "flag") or len(letter) != 1 or not letter.isalpha():
-        return one
-    slip = meant_by_letter(text, one)
-    if slip:
-        return Parsed("unread", sort="text", meant=slip)
-    return replace(one, unit="", remark=letter, sort="flag")
 
 
 def _sign(given: Given, known: dict[Hashable, Parsed]) -> DecimalSign:
