@@ -41,7 +41,7 @@ def analyse(readings: Intake | ReadingSet | Iterable[Any], question: Question) -
 
     >>> found = analyse(["5.02", "5.04", "4.98", "5.01", "5.03"], Question("5.00"))
     >>> found.route.procedure, round(found.test.statistic, 3), found.verdict
-    ('t', 1.5, 'cannot tell')
+    ('t', 1.554, 'cannot tell')
     """
     given = as_reading_set(readings)
     decided = decide(given, question)
