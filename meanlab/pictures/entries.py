@@ -1,7 +1,8 @@
 """The entries of a question as a picture shows them: kept readings, left-out ones, below- and above-limit ones."""
 
-from collections.abc import Sequence
 from dataclasses import dataclass
+
+import numpy as np
 
 from meanlab.core.numbers import places
 from meanlab.core.readings import Censored, ReadingSet
@@ -35,10 +36,15 @@ class AtLimit:
 
 @dataclass(frozen=True)
 class Entries:
-    """What there is to be drawn of the readings of one question."""
+    """What there is to be drawn of the readings of one question.
+
+    kept, left_out   readings in reading order, thinned where there are many
+    count            how many were kept
+    """
 
     kept: tuple[Entry, ...]
     left_out: tuple[Entry, ...]
+    count: int
     at_limit: tuple[AtLimit, ...]
     unit: str
     sign: str
@@ -50,28 +56,37 @@ class Entries:
 
 
 def entries_of(analysis: Analysis) -> Entries:
-    """Return the entries of an analysis, readings in reading order."""
+    """Return the entries of an analysis; of more than 240 readings as many, evenly by rank, with both extremes."""
     readings = analysis.readings
-    plain = [
-        Entry(float(value), place + 1, typed.strip(), "" if readings.preparations is None else readings.preparations[i])
-        for i, (value, place, typed) in enumerate(zip(readings.values, readings.positions, readings.typed, strict=True))
-    ]
+    values = np.array([float(value) for value in readings.values])
+    out = readings.left_out
+    kept = [i for i, place in enumerate(readings.positions) if place not in out]
+    left_out = [i for i, place in enumerate(readings.positions) if place in out]
+
+    def entry(i: int) -> Entry:
+        label = "" if readings.preparations is None else readings.preparations[i]
+        return Entry(float(values[i]), readings.positions[i] + 1, readings.typed[i].strip(), label)
+
     return Entries(
-        tuple(entry for entry in plain if entry.place - 1 not in readings.left_out),
-        tuple(entry for entry in plain if entry.place - 1 in readings.left_out),
+        tuple(entry(kept[i]) for i in thinned(values[kept])),
+        tuple(entry(left_out[i]) for i in thinned(values[left_out])),
+        len(kept),
         _at_limits(readings),
         unit_of(analysis),
         readings.decimal_sign,
     )
 
 
-def thinned(entries: Sequence[Entry], most: int = MOST_DRAWN) -> tuple[Entry, ...]:
-    """Return at most so many readings, evenly by rank, the smallest and the largest among them, in reading order."""
-    if len(entries) <= most:
-        return tuple(entries)
-    by_size = sorted(range(len(entries)), key=lambda i: entries[i].value)
-    chosen = sorted({by_size[round(i * (len(entries) - 1) / (most - 1))] for i in range(most)})
-    return tuple(entries[i] for i in chosen)
+def thinned(values: np.ndarray, most: int = MOST_DRAWN) -> list[int]:
+    """Return the places of at most so many values, evenly by rank, the smallest and the largest among them.
+
+    >>> thinned(np.array([5.0, 1.0, 2.0, 3.0, 4.0]), 3)
+    [0, 1, 3]
+    """
+    if len(values) <= most:
+        return list(range(len(values)))
+    ranks = np.linspace(0, len(values) - 1, most).round().astype(int)
+    return sorted(map(int, np.argsort(values, kind="stable")[ranks]))
 
 
 def _at_limits(readings: ReadingSet) -> tuple[AtLimit, ...]:

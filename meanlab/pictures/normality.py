@@ -6,7 +6,8 @@ from meanlab.checks.normality import FEWEST, ProbabilityPlot, probability_plot
 from meanlab.core.results import Analysis
 from meanlab.pictures.axis import Scale, below, upright, widest
 from meanlab.pictures.drawing import Drawing, Fill, Mark, Stroke, Words, together
-from meanlab.pictures.entries import MOST_DRAWN, entries_of
+from meanlab.pictures.entries import MOST_DRAWN
+from meanlab.wording.names import unit_of
 from meanlab.wording.numbers import level_text, number_text, unit_text
 
 WIDTH, HEIGHT = 500.0, 330.0
@@ -24,7 +25,7 @@ def normality_picture(analysis: Analysis, width: float = WIDTH, height: float = 
     origin = values[0]
     plot = probability_plot(np.array([value - origin for value in values]))
     chosen = _chosen(len(values))
-    sign, unit = analysis.readings.decimal_sign, entries_of(analysis).unit
+    sign, unit = analysis.readings.decimal_sign, unit_of(analysis)
     base = height - ROOM_BELOW
     low = min(plot.low[0], plot.readings[0]) + origin
     high = max(plot.high[-1], plot.readings[-1]) + origin
@@ -41,12 +42,12 @@ def normality_picture(analysis: Analysis, width: float = WIDTH, height: float = 
 
 def units_of(analysis: Analysis) -> tuple[float, ...]:
     """Return the values of the independent units; empty where any is known only to lie below or above a limit."""
-    entries = entries_of(analysis)
-    if any(not group.left_out for group in entries.at_limit):
+    kept = analysis.readings.kept()
+    if kept.censored:
         return ()
     if analysis.readings.preparations is not None:
         return tuple(one.mean for one in analysis.summary.preparations if one.mean is not None)
-    return tuple(entry.value for entry in entries.kept)
+    return tuple(float(value) for value in kept.values)
 
 
 def outside(plot: ProbabilityPlot) -> int:

@@ -6,7 +6,7 @@ from math import isfinite
 from meanlab.core.results import Analysis
 from meanlab.pictures.axis import Scale, below
 from meanlab.pictures.drawing import WORDS, Align, Dash, Drawing, Mark, Stroke, Words, line, together
-from meanlab.pictures.entries import Entries, Entry, entries_of, thinned
+from meanlab.pictures.entries import Entries, Entry, entries_of
 from meanlab.pictures.interval import BOUNDS, interval_bar
 from meanlab.pictures.measure import Box, shortened
 from meanlab.pictures.places import Obstacles
@@ -73,8 +73,8 @@ def title_of(analysis: Analysis, entries: Entries, width: float) -> str:
     """Return the title of the axis: the unit and what stands above it."""
     test = analysis.test
     nested = analysis.readings.preparations is not None
-    drawn, there = len(thinned(entries.kept)), len(entries.kept)
-    what = "readings" if drawn == there else f"readings ({drawn} of {there})"
+    drawn = len(entries.kept)
+    what = "readings" if drawn == entries.count else f"readings ({drawn} of {entries.count})"
     if nested:
         what = "injections (ticks) and preparation means"
     if test is not None:
@@ -187,7 +187,7 @@ def _rows(analysis: Analysis, entries: Entries, frame: Frame, obstacles: Obstacl
         bottom -= ROW
         drawn.append(_left_out(entries, frame, obstacles, bottom + ROW / 2))
     if analysis.readings.preparations is None:
-        marks = _stacked(thinned(entries.kept), entries, frame.scale, top, bottom)
+        marks = _stacked(entries, frame.scale, top, bottom)
     else:
         marks = _nested(analysis, entries, frame.scale, top, bottom)
     for mark in marks:
@@ -196,10 +196,10 @@ def _rows(analysis: Analysis, entries: Entries, frame: Frame, obstacles: Obstacl
     return [*drawn, Drawing(frame.width, frame.base, marks=marks)]
 
 
-def _stacked(chosen: tuple[Entry, ...], entries: Entries, scale: Scale, top: float, bottom: float) -> tuple[Mark, ...]:
+def _stacked(entries: Entries, scale: Scale, top: float, bottom: float) -> tuple[Mark, ...]:
     """Return a tick for each reading; equal ones stand on each other."""
     heaps: dict[int, list[Entry]] = {}
-    for entry in chosen:
+    for entry in entries.kept:
         heaps.setdefault(round(scale.px(entry.value)), []).append(entry)
     tallest = max(map(len, heaps.values()), default=1)
     pitch = min(18.0, (bottom - top) / tallest)
@@ -219,7 +219,7 @@ def _nested(analysis: Analysis, entries: Entries, scale: Scale, top: float, bott
     marks = [
         Mark(scale.px(entry.value), row[entry.preparation] + (0 if few else pitch), "tick", min(9, pitch * 0.8),
              entries.said(entry))
-        for entry in thinned(entries.kept)
+        for entry in entries.kept
     ]  # fmt: skip
     marks += [
         Mark(scale.px(one.mean), row[one.label], "diamond", min(7, pitch * 0.7), f"mean of preparation {one.label}")
@@ -231,7 +231,7 @@ def _nested(analysis: Analysis, entries: Entries, scale: Scale, top: float, bott
 
 def _left_out(entries: Entries, frame: Frame, obstacles: Obstacles, y: float) -> Drawing:
     scale, marks = frame.scale, []
-    for entry in thinned(entries.left_out):
+    for entry in entries.left_out:
         says = f"{entries.said(entry)}, left out"
         if scale.holds(entry.value):
             marks.append(Mark(scale.px(entry.value), y, "cross", 9, says))

@@ -5,7 +5,7 @@ from collections.abc import Mapping
 from meanlab.core.results import Analysis
 from meanlab.pictures.axis import Scale, below, upright, widest
 from meanlab.pictures.drawing import Drawing, Mark, Stroke, Words, line, together
-from meanlab.pictures.entries import entries_of, thinned
+from meanlab.pictures.entries import entries_of
 from meanlab.pictures.measure import shortened
 from meanlab.pictures.readings import span_of
 from meanlab.wording.names import short_noun
@@ -22,7 +22,7 @@ def run_order_picture(analysis: Analysis, width: float = WIDTH, height: float = 
     base, right = height - ROOM_BELOW, width - SIDE - KEY_ROOM
     values = Scale(low, high, base, TOP)
     left = widest(values, entries.sign) + 4
-    chosen, left_out = thinned(entries.kept), thinned(entries.left_out)
+    chosen, left_out = entries.kept, entries.left_out
     places = [entry.place for entry in (*chosen, *left_out)] or [1]
     order = Scale(min(places) - 0.5, max(places) + 0.5, left, right)
     kept = [(order.px(entry.place), values.px(entry.value)) for entry in chosen]
@@ -44,7 +44,7 @@ def run_order_picture(analysis: Analysis, width: float = WIDTH, height: float = 
         width, height,
         (upright(values, left, unit, entries.sign, right), axis,
          Drawing(width, height, tuple(strokes), marks=tuple(marks), words=_names(drawn, right))),
-        f"{len(entries.kept)} readings in {title}, with mean and {noun}.",
+        f"{entries.count} readings in {title}, with mean and {noun}.",
     )  # fmt: skip
 
 

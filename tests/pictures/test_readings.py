@@ -2,11 +2,12 @@
 
 from decimal import Decimal
 
+import numpy as np
 import pytest
 from collisions import touching
 
 from meanlab import Question, ReadingSet, analyse
-from meanlab.pictures.entries import MOST_DRAWN, entries_of, thinned
+from meanlab.pictures.entries import MOST_DRAWN, entries_of
 from meanlab.pictures.readings import readings_picture
 from meanlab.pictures.run_order import run_order_picture
 
@@ -93,10 +94,11 @@ def test_preparations_are_rows_with_their_means():
 def test_many_readings_are_thinned_evenly_and_it_is_said():
     """Of 3,000 readings 240 are drawn, the extremes among them, and the axis says how many."""
     analysis = analyse([str(Decimal(i * i % 3001) / 1000) for i in range(3000)], Question("1.5"))
-    kept = entries_of(analysis).kept
-    chosen = [entry.value for entry in thinned(kept)]
+    values = [float(value) for value in analysis.readings.values]
+    chosen = [entry.value for entry in entries_of(analysis).kept]
     assert len(chosen) == MOST_DRAWN
-    assert (min(chosen), max(chosen)) == (min(e.value for e in kept), max(e.value for e in kept))
+    assert (min(chosen), max(chosen)) == (min(values), max(values))
+    assert np.quantile(chosen, [0.25, 0.5, 0.75]) == pytest.approx(np.quantile(values, [0.25, 0.5, 0.75]), abs=0.01)
     drawing = readings_picture(analysis)
     assert any(f"readings ({MOST_DRAWN} of 3000)" in words.text for words in drawing.words)
     assert len(drawing.marks) <= MOST_DRAWN + 2
