@@ -1,5 +1,6 @@
 """Drawings on paper: a matplotlib figure (never pyplot), as PNG, SVG or PDF; the same bytes each time."""
 
+from functools import lru_cache
 from io import BytesIO
 from threading import Lock
 from typing import Any
@@ -92,8 +93,13 @@ def with_glyphs(text: str) -> str:
     >>> with_glyphs("pH 7 µg")
     'pH 7 µg'
     """
-    known = get_font(findfont(FontProperties(family=FONT))).get_charmap()
+    known = _known_signs()
     return "".join(sign if ord(sign) in known else NO_GLYPH for sign in text)
+
+
+@lru_cache(maxsize=1)
+def _known_signs() -> frozenset[int]:
+    return frozenset(get_font(findfont(FontProperties(family=FONT))).get_charmap())
 
 
 def _mark(mark: Mark) -> Line2D:
