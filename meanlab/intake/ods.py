@@ -144,8 +144,9 @@ class _Content(Walker):
         count = _repeated(attributes, "number-columns-repeated", LAST_COLUMN)
         cell = _cell(attributes, "".join(self._pieces))
         if cell.text:
-            for row in range(self._row, self._row + self._rows_repeated):
-                for column in range(self._column, self._column + count):
+            # beyond the last row and column one cell tells that something was there
+            for row in range(self._row, max(self._row + 1, min(self._row + self._rows_repeated, LAST_ROW))):
+                for column in range(self._column, max(self._column + 1, min(self._column + count, LAST_COLUMN))):
                     self._builder.put(row, column, cell)
             formula = attributes.get("formula", "").replace("[.", "").replace(":.", ":").replace("]", "")
             if formula and cell.kind == "number" and sums_up(formula.partition("=")[2], self._row, self._column):

@@ -170,6 +170,14 @@ def test_a_document_type_is_refused_wherever_it_stands(data: bytes) -> None:
             ),
             "no filled cell",
         ),
+        (
+            lambda: ods(
+                '<table:table table:name="R"><table:table-row table:number-rows-repeated="1048576"/>'
+                f'{REPEATED}table:number-columns-repeated="16384" office:value-type="float" office:value="1"/>'
+                "</table:table-row></table:table>"
+            ),
+            "no filled cell",
+        ),
         (lambda: b"<html><table>" + b"<!" * 30_000, "no filled cell"),
     ],
     ids=lambda value: value if isinstance(value, str) else "",
