@@ -1,7 +1,7 @@
 """A table of samples → a table of results: it only groups and assembles; every number is that of one analysis."""
 
 from collections.abc import Callable, Hashable, Mapping, Sequence
-from dataclasses import replace
+from dataclasses import dataclass, replace
 from typing import Any
 
 import numpy as np
@@ -44,20 +44,62 @@ def analyse_many(
     keys = [sample] if isinstance(sample, str) else list(sample)
     named = [*keys, value, *([preparation] if preparation else []), *([targets] if isinstance(targets, str) else [])]
     readings = _chosen(table, named)
-    groups = readings.groupby(keys, sort=False, dropna=False)
-    rows, total = [], groups.ngroups
-    for done, (key, group) in enumerate(groups, 1):
-        name = key if len(keys) > 1 else key[0]
-        try:
-            asked = _with_target(question, targets, name, group)
-            rows.append(_row(group, value, preparation, asked))
-        except Complaint as complaint:
-            raise type(complaint)(f'Sample "{_in_words(key)}": {complaint}', complaint.where) from None
-        if progress is not None:
-            progress(done, total)
-    results = _with_holm(pd.DataFrame(rows, columns=[name for name in COLUMNS if name != "p_holm"]), question.alpha)
     labels = readings[keys].drop_duplicates().reset_index(drop=True)
+    samples = _samples(readings, value, keys, targets if isinstance(targets, str) else None, preparation)
+    rows = []
+    for done, (key, group) in enumerate(zip(labels.itertuples(index=False, name=None), samples, strict=True), 1):
+        try:
+            asked = _with_target(question, targets, key if len(keys) > 1 else key[0], group)
+            rows.append(_row(group, asked))
+        except Complaint as complaint:
+            in_words = ", ".join(map(str, key))
+            raise type(complaint)(f'Sample "{in_words}": {complaint}', complaint.where) from None
+        if progress is not None:
+            progress(done, len(samples))
+    results = _with_holm(pd.DataFrame(rows, columns=[name for name in COLUMNS if name != "p_holm"]), question.alpha)
     return pd.concat([labels.rename(columns=_free_name), results], axis=1)
+
+
+@dataclass(frozen=True)
+class _Sample:
+    """The cells of one sample: entries that are not blank, their preparation labels, its targets, count of blanks."""
+
+    entries: list[Any]
+    preparations: list[Any] | None
+    targets: list[Any]
+    missing: int
+
+
+def _samples(
+    readings: pd.DataFrame, value: str, keys: list[str], targets: str | None, preparation: str | None
+) -> list[_Sample]:
+    """Return the samples in order of first appearance."""
+    if readings.empty:
+        return []
+    codes = readings.groupby(keys, sort=False, dropna=False).ngroup().to_numpy()
+    order = np.argsort(codes, kind="stable")
+    entries = readings[value].tolist()
+    blank = [gone or str(entry).strip() == "" for entry, gone in zip(entries, readings[value].isna(), strict=True)]
+    labels = None if preparation is None else _labels(readings[preparation])
+    aims = None if targets is None else readings[targets].tolist()
+    found = []
+    for places in np.split(order, np.flatnonzero(np.diff(codes[order])) + 1):
+        there = [place for place in places.tolist() if not blank[place]]
+        found.append(
+            _Sample(
+                [entries[place] for place in there],
+                None if labels is None else [labels[place] for place in there],
+                []
+                if aims is None
+                else list(dict.fromkeys(aims[place] for place in places if not pd.isna(aims[place]))),
+                len(places) - len(there),
+            )
+        )
+    return found
+
+
+def _labels(column: pd.Series) -> list[str | None]:
+    return [None if gone else str(label) for label, gone in zip(column.tolist(), column.isna(), strict=True)]
 
 
 def _chosen(table: Any, named: Sequence[str]) -> pd.DataFrame:
@@ -73,36 +115,28 @@ def _chosen(table: Any, named: Sequence[str]) -> pd.DataFrame:
     return chosen if isinstance(chosen, pd.DataFrame) else chosen.compute()
 
 
-def _in_words(key: tuple[Any, ...]) -> str:
-    return ", ".join(map(str, key))
-
-
 def _free_name(name: Hashable) -> Hashable:
     return f"{name} (sample)" if name in COLUMNS else name
 
 
-def _with_target(
-    question: Question, targets: Mapping[Any, Any] | str | None, key: Any, group: pd.DataFrame
-) -> Question:
+def _with_target(question: Question, targets: Mapping[Any, Any] | str | None, key: Any, sample: _Sample) -> Question:
     if targets is None:
         return question
     if isinstance(targets, str):
-        found = group[targets].dropna().unique()
-        if len(found) != 1:
-            raise QuestionComplaint(f'it has {len(found)} targets in column "{targets}"; it needs one.', "target")
-        return replace(question, target=found[0])
+        if len(sample.targets) != 1:
+            count = len(sample.targets)
+            raise QuestionComplaint(f'it has {count} targets in column "{targets}"; it needs one.', "target")
+        return replace(question, target=sample.targets[0])
     if key not in targets:
         raise QuestionComplaint("it has no target; give each sample its own.", "target")
     return replace(question, target=targets[key])
 
 
-def _row(group: pd.DataFrame, value: str, preparation: str | None, question: Question) -> tuple[Any, ...]:
-    blank = group[value].isna() | (group[value].astype(str).str.strip() == "")
-    present, missing = group[~blank], int(blank.sum())
-    flags = [f"{missing} missing"] if missing else []
-    if present.empty:
+def _row(sample: _Sample, question: Question) -> tuple[Any, ...]:
+    flags = [f"{sample.missing} missing"] if sample.missing else []
+    if not sample.entries:
         return (0, *[None] * 8, None, "not testable", "; ".join([*flags, "no reading"]))
-    found = decide(_readings(present, value, preparation), question)
+    found = decide(_reading_set(sample), question)
     units, test, route = found.units, found.test, found.route
     scatter = None if units.sample is None else units.sample
     flags += [route.reasons[0]] if test is None else []
@@ -124,18 +158,18 @@ def _row(group: pd.DataFrame, value: str, preparation: str | None, question: Que
     )
 
 
-def _readings(group: pd.DataFrame, value: str, preparation: str | None) -> ReadingSet:
+def _reading_set(sample: _Sample) -> ReadingSet:
     values, censored = [], []
-    for place, entry in enumerate(group[value].tolist()):
+    for place, entry in enumerate(sample.entries):
         text = entry.strip() if isinstance(entry, str) else ""
         if text[:1] in LIMIT_SIGNS and text:
             limit = text.lstrip("<>≤≥=").strip()
             censored.append({"index": place, "kind": LIMIT_SIGNS[text[0]], "limit": limit or None, "typed": text})
         else:
             values.append(entry)
-    if preparation is not None and group[preparation].isna().any():
-        raise ReadingsComplaint(f'a reading has no label in column "{preparation}".', "preparations")
-    labels = None if preparation is None else tuple(map(str, group[preparation]))
+    if sample.preparations is not None and None in sample.preparations:
+        raise ReadingsComplaint("a reading has no preparation label; give each reading one.", "preparations")
+    labels = None if sample.preparations is None else tuple(sample.preparations)
     return ReadingSet(tuple(values), preparations=labels, censored=tuple(censored))  # type: ignore[arg-type]
 
 

@@ -115,6 +115,10 @@ def test_a_complaint_names_the_sample():
         analyse_many(table, "x", "batch", Question("1"))
     with pytest.raises(Complaint, match='Sample "B": it has no target'):
         analyse_many(table.assign(x=1.0), "x", "batch", Question("1"), {"A": 1})
+    with pytest.raises(Complaint, match='Sample "B": it has 2 targets in column "aim"; it needs one'):
+        analyse_many(table.assign(x=1.0, aim=[1, None, 2, 3]), "x", "batch", Question("1"), "aim")
+    with pytest.raises(Complaint, match='Sample "A": a reading has no preparation label'):
+        analyse_many(table.assign(x=1.0, prep=["a", None, "c", "d"]), "x", "batch", Question("1"), preparation="prep")
     with pytest.raises(Complaint, match='no column "lot" in the table; it has batch, x'):
         analyse_many(table, "x", "lot", Question("1"))
     doubled = pd.DataFrame([["A", 1.0, 2.0]], columns=["batch", "x", "x"])
@@ -136,6 +140,14 @@ def test_a_table_in_pieces_is_gathered():
 
     found = analyse_many(InPieces(), "x", "batch", Question("2"))
     assert_row_is(found.iloc[0], analyse([1.0, 2.0, 4.0, 3.0], Question("2")))
+
+
+def test_samples_without_a_label_are_one_sample():
+    """Rows whose sample label is missing are kept together and keep their place in the order."""
+    table = pd.DataFrame({"batch": ["z", None, "a", None, "z", "a"], "x": [1.0, 2.0, 3.0, 4.0, 5.0, 6.0]})
+    found = analyse_many(table, "x", "batch", Question("2"))
+    assert found["batch"].isna().tolist() == [False, True, False]
+    assert found["mean"].tolist() == [3.0, 3.0, 4.5]
 
 
 def test_progress_is_told_and_no_row_gives_no_result():
