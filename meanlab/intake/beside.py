@@ -63,7 +63,7 @@ def _qualifier_column(picked: Picked, roles: Sequence[Role]) -> None:
     picked.qualifier = min(near, key=lambda i: abs(i - column))
     heading = picked.block.heading_text(picked.qualifier) or f"column {picked.qualifier + 1}"
     picked.warnings.append(
-        f'The signs under "{shown(heading)}" were taken for qualifiers of the readings: "<" and ">" make limits of them.'
+        f'The signs under "{shown(heading)}" were taken for qualifiers of the readings: "<" and ">" make limits.'
     )
 
 
@@ -78,6 +78,6 @@ def _preparation_column(picked: Picked, roles: Sequence[Role]) -> None:
                 picked.preparation = index
                 heading = shown(picked.block.heading_text(index))
                 picked.notes.append(
-                    f'"{heading}" names {len(counts)} preparations: readings of one preparation are no independent units.'
+                    f'"{heading}" names {len(counts)} preparations; readings of one preparation are not independent.'
                 )
                 return

@@ -6,12 +6,13 @@ from typing import Any
 
 from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.beside import with_what_stands_beside
+from meanlab.intake.blocks import Block
 from meanlab.intake.characters import one_spelling, shown
 from meanlab.intake.picked import Picked
 from meanlab.intake.remaining import remaining
 from meanlab.intake.roles import listed, roles_of, sample_of
 from meanlab.intake.separators import ChoiceNeeded
-from meanlab.intake.table import Block, filled_width
+from meanlab.intake.table import filled_width
 
 MOST_NAMED = 12
 _MARKS = {",": "comma", ";": "semicolon", "\t": "tab", " ": "blank"}
@@ -154,7 +155,8 @@ def _refuse_misaligned(block: Block, rows: Sequence[int]) -> None:
         return
     row, mark = longer[0], _MARKS[table.separator]
     why = " The comma may be both the separator and the decimal sign." if mark == "comma" else ""
+    count = filled_width(table.rows[row])
     raise IntakeComplaint(
-        f"The heading names {headings} columns, but {table.place(row, 0)} has {filled_width(table.rows[row])} fields parted by a "
-        f"{mark}, so no reading can be told for sure.{why} Export it again with tabs or semicolons."
+        f"The heading names {headings} columns, but {table.place(row, 0)} has {count} fields parted by a {mark}, "
+        f"so no reading can be told for sure.{why} Export it again with tabs or semicolons."
     )

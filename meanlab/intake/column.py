@@ -11,7 +11,7 @@ from meanlab.core.complaints import ReadingsComplaint
 from meanlab.core.numbers import exact, looks_computed
 from meanlab.intake import sayings
 from meanlab.intake.characters import one_spelling
-from meanlab.intake.entry import Parsed, parse
+from meanlab.intake.entry import Kind, Parsed, parse
 from meanlab.intake.found import Special
 from meanlab.intake.long_column import ODD_BY_COMMA, ODD_BY_POINT
 from meanlab.intake.numerals import FARTHEST, DecimalSign, Sign, decimal_sign, leaning, under
@@ -20,6 +20,8 @@ from meanlab.intake.units import same_unit
 
 _SURE_COMMA = re.compile(r",(?!\d{3}$)|^[+-]?(?:0|\d{4,}),", re.ASCII | re.MULTILINE)
 _SURE_POINT = re.compile(r"\.(?!\d{3}$)|^[+-]?(?:0|\d{4,})\.", re.ASCII | re.MULTILINE)
+_BELOW_MARKS = ("<", "<=", "=<", "≤", "u", "nd")
+_ABOVE_MARKS = (">", ">=", "=>", "≥")
 _CODES = frozenset({"-9", "-99", "-999", "-9999", "-99999", "-999.9", "-999.99", "9999", "99999", "-999.0", "-9999.0"})
 
 
@@ -89,7 +91,9 @@ def _read_plain(given: Given) -> Read | None:
 
 def _plain_sign(texts: Sequence[str], sign: Sign) -> DecimalSign:
     sure = next((text for text in texts[:1000] if leaning(text.lstrip("+-")) == sign), "")
-    return DecimalSign(sign, f'decimal {"comma" if sign == "," else "point"}: "{sure}" cannot be read otherwise' if sure else "")
+    return DecimalSign(
+        sign, f'decimal {"comma" if sign == "," else "point"}: "{sure}" cannot be read otherwise' if sure else ""
+    )
 
 
 def _read_any(given: Given) -> Read:
@@ -177,12 +181,10 @@ def _qualified(each: list[Parsed], given: Given) -> list[Parsed]:
     """Entries whose "<" or ">" stands in a column of its own."""
     if given.qualifiers is None:
         return each
-    kinds = {"<": "below", "<=": "below", "=<": "below", "≤": "below", "u": "below", "nd": "below"}
-    kinds |= {">": "above", ">=": "above", "=>": "above", "≥": "above"}
     found = []
     for one, mark in zip(each, given.qualifiers, strict=True):
         word = one_spelling(mark).strip().casefold()
-        kind = kinds.get(word)
+        kind: Kind | None = "below" if word in _BELOW_MARKS else "above" if word in _ABOVE_MARKS else None
         if not word or word == "=" or one.kind != "reading":
             found.append(one)
         elif kind:
@@ -200,7 +202,9 @@ def _collect(found: Read, each: list[Parsed], numbers: list[str | None], given: 
         one, number = each[i], numbers[i] or ""
         limit = sayings.as_written(number, found.sign.sign)
         found.special[i] = Special(one.kind, number, sayings.role(one, limit))
-    found.computed = bool(given.computed) or any(looks_computed(exact(number)) for number in found.numbers if len(number) > 12)
+    found.computed = bool(given.computed) or any(
+        looks_computed(exact(number)) for number in found.numbers if len(number) > 12
+    )
 
 
 def _units(found: Read, each: list[Parsed], given: Given) -> str:

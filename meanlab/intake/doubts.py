@@ -1,11 +1,10 @@
 """What must be seen about a column as a whole: rows left out, odd lengths, a first or last number unlike the others."""
 
-from collections.abc import Sequence
-
+from meanlab.intake.blocks import Block
 from meanlab.intake.characters import shown
 from meanlab.intake.choosing import Picked
 from meanlab.intake.column import Given, Read
-from meanlab.intake.table import Block, filled_width
+from meanlab.intake.table import filled_width
 
 MOST_ROWS = 20_000
 
@@ -28,7 +27,7 @@ def doubts_about(picked: Picked, given: Given, found: Read) -> tuple[list[str], 
         notes.append(f"Above the heading {_counted(above, 'line was', 'lines were')} not read.")
     if block.table.labels:
         count = len(set(block.table.labels.values()) - {""})
-        notes.append(f"{count} lines name preparations: readings of one preparation are no independent units.")
+        notes.append(f"{count} lines name preparations; readings of one preparation are not independent.")
     return list(dict.fromkeys(warnings)), list(dict.fromkeys(notes))
 
 

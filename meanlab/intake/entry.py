@@ -15,7 +15,17 @@ from typing import Literal
 
 from meanlab.intake.numerals import NUMERAL
 from meanlab.intake.units import is_unit
-from meanlab.intake.words import ABOVE, BELOW, ERROR_CELLS, FLAGS, INFINITE, LIMIT_NAMES, UNCLEAR, is_missing_mark, plain_word
+from meanlab.intake.words import (
+    ABOVE,
+    BELOW,
+    ERROR_CELLS,
+    FLAGS,
+    INFINITE,
+    LIMIT_NAMES,
+    UNCLEAR,
+    is_missing_mark,
+    plain_word,
+)
 
 Kind = Literal["reading", "below", "above", "missing", "unread"]
 
@@ -26,11 +36,18 @@ POWER = (
 _READING = re.compile(rf"(?P<sign>[+-](?P<gap>\s*))?(?P<numeral>{NUMERAL})(?:{POWER})?", re.ASCII)
 _LOST_POWER = re.compile(rf"[+-]?(?:{NUMERAL})\s?[x×*·⋅]\s?10\d{{1,2}}(?!\d)", re.ASCII)
 _ERROR_CODE = re.compile(r"err(?:or)?[ -]?\d{0,4}|e\d{2,3}", re.IGNORECASE | re.ASCII)
-_RANGE = re.compile(rf"[<>≤≥~]?\s*[+-]?(?:{NUMERAL})\s*(?:-|\.\.+|…|\bto\b|\bbis\b)\s*(?:{NUMERAL})(?:\s?\D*)", re.ASCII)
+_RANGE = re.compile(
+    rf"[<>≤≥~]?\s*[+-]?(?:{NUMERAL})\s*(?:-|\.\.+|…|\bto\b|\bbis\b)\s*(?:{NUMERAL})(?:\s?\D*)", re.ASCII
+)
 _IN_BRACKETS = re.compile(rf"\([+-]?(?:{NUMERAL})\)", re.ASCII)
 _UNIT_IN_BRACKETS = re.compile(r"[(\[]([^()\[\]]{2,})[)\]]")
-_WORD_AND_LIMIT = re.compile(rf"(?P<word><?\s?[^\W\d][^\d(<≤:=]*?)\s*[(<≤:=]*\s*(?P<number>{NUMERAL}[^()]*)\)?", re.ASCII)
-_ABOUT = re.compile(r"(?:~|≈|≅|∼|ca\.?(?=[\s\d])|circa\b|about\b|approx(?:\.|imately)?(?=\s)|around\b|etwa\b|roughly\b)\s*", re.IGNORECASE)
+_WORD_AND_LIMIT = re.compile(
+    rf"(?P<word><?\s?[^\W\d][^\d(<≤:=]*?)\s*[(<≤:=]*\s*(?P<number>{NUMERAL}[^()]*)\)?", re.ASCII
+)
+_ABOUT = re.compile(
+    r"(?:~|≈|≅|∼|ca\.?(?=[\s\d])|circa\b|about\b|approx(?:\.|imately)?(?=\s)|around\b|etwa\b|roughly\b)\s*",
+    re.IGNORECASE,
+)
 _QUOTES = "'\"“”„‘’‚«»"
 _BARE_POWER = re.compile(r"(?P<sign>[+-])?10\^(?P<exponent>[+-]?\d{1,4})", re.ASCII)
 _LIMIT = re.compile(
@@ -38,7 +55,9 @@ _LIMIT = re.compile(
     r"|(?P<above>>=|=>|>|≥|≫|(?:more|greater|higher|larger) than\b|above\b|over\b|über\b|größer(?: als)?\b)\s*",
     re.IGNORECASE,
 )
-_UNCERTAINTY = re.compile(rf"\(?\s*(?:±|\+\s?/\s?-|\+-|-/\+)\s*(?:{NUMERAL})(?:[eE][+-]?\d+)?\s*(?P<unit>.*?)\)?", re.ASCII)
+_UNCERTAINTY = re.compile(
+    rf"\(?\s*(?:±|\+\s?/\s?-|\+-|-/\+)\s*(?:{NUMERAL})(?:[eE][+-]?\d+)?\s*(?P<unit>.*?)\)?", re.ASCII
+)
 _LAST_DIGITS = re.compile(r"\(\d{1,4}\)", re.ASCII)
 _MONTH = (
     r"(?:jan|feb|mar|apr|may|jun|jul|aug|sep|sept|oct|nov|dec|mär|mai|okt|dez|january|february|march|april|june|july|"
@@ -205,7 +224,7 @@ def _with_rest(rest: str, as_reading: Callable[..., Parsed], signed: bool) -> Pa
         return as_reading()
     if rest == "-" and not signed:
         return as_reading(remark="-", sort="trailing minus", negative=True)
-    if rest[0] in ".,'0123456789_:" or rest in ("e", "E") or rest[0] == "/" and _DIGIT.match(rest[1:2]):
+    if rest[0] in ".,'0123456789_:" or rest in ("e", "E") or (rest[0] == "/" and _DIGIT.match(rest[1:2])):
         return None
     if _LAST_DIGITS.match(rest):
         tail = rest[rest.index(")") + 1 :].strip()
@@ -217,7 +236,9 @@ def _with_rest(rest: str, as_reading: Callable[..., Parsed], signed: bool) -> Pa
     bracketed = _UNIT_IN_BRACKETS.fullmatch(body)
     if bracketed and is_unit(bracketed[1].strip()):
         return as_reading(bracketed[1].strip())
-    if is_unit(body) and not (rest[0] != " " and body.casefold() in FLAGS and len(body) == 1 and body not in "gLlVAKNCs"):
+    if is_unit(body) and not (
+        rest[0] != " " and body.casefold() in FLAGS and len(body) == 1 and body not in "gLlVAKNCs"
+    ):
         return as_reading(body)
     return _with_unit_and_remark(rest, body, as_reading)
 

@@ -117,7 +117,7 @@ class Intake:
     @cached_property
     def exact_values(self) -> tuple[Decimal, ...]:
         """The readings as exact decimals with their trailing zeros."""
-        return tuple(abs(value) if not value else value for value in map(Decimal, self.numbers))
+        return tuple(value if value else abs(value) for value in map(Decimal, self.numbers))
 
     @cached_property
     def positions(self) -> tuple[int, ...]:

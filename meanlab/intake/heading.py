@@ -98,7 +98,9 @@ def _behind_a_mark(text: str) -> tuple[str, str] | None:
     if unit.startswith("(") and unit.endswith(")"):
         unit = unit[1:-1].strip()
     letters = sum(map(str.isalpha, found[1]))
-    return (found[1], unit) if is_qualified_unit(unit) and (len(unit) > 1 or not unit.isalpha() or letters > 2) else None
+    return (
+        (found[1], unit) if is_qualified_unit(unit) and (len(unit) > 1 or not unit.isalpha() or letters > 2) else None
+    )
 
 
 def _whole(text: str) -> tuple[str, str] | None:

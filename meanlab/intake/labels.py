@@ -3,6 +3,7 @@
 import re
 from collections.abc import Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 from meanlab.intake.entry import STAMP, Parsed, parse
 from meanlab.intake.words import is_summary
@@ -64,7 +65,7 @@ def _by_label(line: str) -> list[Labelled]:
         if not _is_label(bare) or len(bare) > MOST_LABEL:
             continue
         parsed = parse(rest)
-        if parsed.numeral and (is_clean(parsed) or parsed.sort == "flag") or parsed.kind == "missing":
+        if (parsed.numeral and (is_clean(parsed) or parsed.sort == "flag")) or parsed.kind == "missing":
             return [Labelled("summary" if is_summary(bare) else "label", bare, rest, parsed)]
     return []
 
@@ -72,7 +73,7 @@ def _by_label(line: str) -> list[Labelled]:
 def _is_label(text: str) -> bool:
     if not text or _DECIMALS.search(text) or any(mark in text for mark in "±<>≤≥"):
         return False
-    return text[0].isalpha() or bool(re.match(r"\d+[-/A-Za-z]", text)) and not parse(text).numeral
+    return text[0].isalpha() or (bool(re.match(r"\d+[-/A-Za-z]", text)) and not parse(text).numeral)
 
 
 def common_style(lines: Sequence[list[Labelled]], plain: int) -> str:
@@ -86,7 +87,7 @@ def common_style(lines: Sequence[list[Labelled]], plain: int) -> str:
             if way.sort != "summary":
                 counts.setdefault(way.sort, []).append(way.label)
     numbers = [int(found[0]) for label in counts.get("number", ()) if (found := re.search(r"\d+", label))]
-    if any(b <= a for a, b in zip(numbers, numbers[1:], strict=False)) or (len(numbers) == 1 and numbers[0] > 1):
+    if any(b <= a for a, b in pairwise(numbers)) or (len(numbers) == 1 and numbers[0] > 1):
         del counts["number"]
     best = max(counts, key=lambda sort: len(counts[sort]), default="")
     most = len(counts[best]) if best else 0

@@ -108,14 +108,18 @@ def _by_size(either: list[str], whole: list[str]) -> DecimalSign:
         return DecimalSign(".", "a point and a comma both stand before three digits", open=True)
     other: Sign = "," if mark == "." else "."
     if whole and _thousands_by_size(either, whole, mark):
-        return DecimalSign(other, f'"{mark}" is a thousands mark: "{whole[0]}" is of the same size then', thousands=True)
+        return DecimalSign(
+            other, f'"{mark}" is a thousands mark: "{whole[0]}" is of the same size then', thousands=True
+        )
     if mark == "," or whole:
-        return DecimalSign(",", f'"{either[0]}" can be read with a decimal {_NAMES[mark]} or a thousands mark', open=True)
+        return DecimalSign(
+            ",", f'"{either[0]}" can be read with a decimal {_NAMES[mark]} or a thousands mark', open=True
+        )
     return DecimalSign(".", f'decimal point: in "{either[0]}" it was not taken for a thousands mark')
 
 
 def _thousands_by_size(either: list[str], whole: list[str], mark: str) -> bool:
-    """Tell whether whole numbers beside them show a thousands mark: 1,234 and 987 are of one size, 1.234 and 987 not."""
+    """Tell whether whole numbers beside show a thousands mark: 1,234 and 987 are of one size, 1.234 and 987 not."""
     plain = [float(under(numeral, mark) or 0) for numeral in whole]
     beside = [value for value in plain if value]
     if not beside:

@@ -4,7 +4,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass, field
 
 from meanlab.core.complaints import IntakeComplaint
-from meanlab.intake.table import Block
+from meanlab.intake.blocks import Block
 
 
 class NothingToRead(IntakeComplaint):

@@ -5,24 +5,23 @@ from dataclasses import replace
 from typing import Any
 
 from meanlab.core.complaints import IntakeComplaint
+from meanlab.intake.blocks import Block, blocks_of
 from meanlab.intake.characters import shown
 from meanlab.intake.choosing import pick
 from meanlab.intake.column import Given, Read, read_column
 from meanlab.intake.doubts import doubts_about
 from meanlab.intake.found import Column, Intake
-from meanlab.intake.picked import NothingToRead, Picked
-from meanlab.intake.separators import ChoiceNeeded
 from meanlab.intake.long_column import OneColumn
 from meanlab.intake.numerals import Sign, decimal_sign
+from meanlab.intake.picked import NothingToRead, Picked
 from meanlab.intake.roles import listed, roles_of, sample_of
+from meanlab.intake.separators import ChoiceNeeded
 from meanlab.intake.sources import tables_of
-from meanlab.intake.table import Block, Table, blocks_of, parsed
+from meanlab.intake.table import Table, parsed
 from meanlab.intake.words import is_summary
 
 FEW_UNREAD = 3
-_KEYS = frozenset(
-    ("sheet", "column", "column_index", "columns", "where", "qualifier_column", "decimal", "preparation")
-)
+_KEYS = frozenset(("sheet", "column", "column_index", "columns", "where", "qualifier_column", "decimal", "preparation"))
 
 
 def read(source: str | bytes, filename: str | None = None, selection: Mapping[str, Any] | None = None) -> Intake:
@@ -129,7 +128,9 @@ def _nothing(tables: Sequence[Table]) -> Intake:
         if figures:
             named = shown(" ".join(figures[0]))
             return Intake(refused=True, reason=f'Only computed figures were found ("{named}"), no readings.')
-        places = [(row, column) for row, cells in enumerate(table.rows[:200]) for column, text in enumerate(cells) if text]
+        places = [
+            (row, column) for row, cells in enumerate(table.rows[:200]) for column, text in enumerate(cells) if text
+        ]
         if places:
             found = _entries(table, places[:50])
             read_back = read_column(found)

@@ -4,12 +4,13 @@ from collections import Counter
 from collections.abc import Sequence
 from typing import Any
 
+from meanlab.intake.blocks import Block
 from meanlab.intake.characters import shown
 from meanlab.intake.numerals import under
 from meanlab.intake.picked import NothingToRead, Picked
 from meanlab.intake.roles import Role, is_count, listed, replicates, sample_of
 from meanlab.intake.separators import ChoiceNeeded
-from meanlab.intake.table import Block, parsed, sort_of
+from meanlab.intake.table import parsed, sort_of
 
 MOST_CHOICES = 200
 MOST_POOLED = 400
@@ -58,7 +59,12 @@ def _last_resort(block: Block, roles: list[Role], filled: list[int]) -> list[int
 def _is_pool(block: Block, rows: Sequence[int], readings: list[int], filled: list[int]) -> bool:
     """Tell whether bare numbers of one kind were typed into a few lines, to be read line by line."""
     table = block.table
-    if block.heading is not None or readings != filled or table.sheet is not None or table.separator not in (" ", ",", ";"):
+    if (
+        block.heading is not None
+        or readings != filled
+        or table.sheet is not None
+        or table.separator not in (" ", ",", ";")
+    ):
         return False
     cells = [(column, table.text(row, column)) for row in rows for column in readings if table.text(row, column)]
     if not 1 < len(readings) <= len(cells) <= MOST_POOLED:
@@ -69,7 +75,9 @@ def _is_pool(block: Block, rows: Sequence[int], readings: list[int], filled: lis
     places = {len(one.numeral.replace(",", ".").partition(".")[2]) for _, one in found}
     middles = []
     for column in readings:
-        sizes = sorted(float(under(one.numeral, ".") or under(one.numeral, ",") or 0) for c, one in found if c == column)
+        sizes = sorted(
+            float(under(one.numeral, ".") or under(one.numeral, ",") or 0) for c, one in found if c == column
+        )
         middles.append(sizes[len(sizes) // 2])
     whole = places == {0} and table.separator != " "
     padded = any(one.numeral[0] == "0" and one.numeral[1:2].isdigit() for _, one in found)
@@ -113,9 +121,7 @@ def _question(
     )
 
 
-def _choices_across(
-    block: Block, rows: Sequence[int], roles: list[Role], across: list[int]
-) -> list[dict[str, Any]]:
+def _choices_across(block: Block, rows: Sequence[int], roles: list[Role], across: list[int]) -> list[dict[str, Any]]:
     """Replicates across the row: one choice for each row, by its label."""
     label = next((i for i, role in enumerate(roles) if role.role in ("label", "text", "analyte", "counter")), None)
     if not across or label is None:

@@ -1,43 +1,47 @@
-"""What the columns of a block are: readings, or counters, times, labels, units, which are never proposed as readings."""
+"""What the columns of a block are: readings, or counters, times, labels and units, which are never proposed."""
 
 import re
 from collections import Counter
 from collections.abc import Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
+from meanlab.intake.blocks import Block
 from meanlab.intake.characters import one_spelling
 from meanlab.intake.found import Column
-from meanlab.intake.table import FIRST_ROWS, Block, sort_of
+from meanlab.intake.table import FIRST_ROWS, sort_of
 from meanlab.intake.units import is_unit, is_unmistakable
-from meanlab.intake.words import is_summary, plain_word
+from meanlab.intake.words import is_summary, plain_word, word_set
 
-_COUNTER = frozenset(
-    "no nr # run runno runnr rep repno replicate replicateno reading readingno index idx seq seqno sequence line lineno row "
-    "rowno position pos vial vialno lfdnr lfnr nummer number num injection injectionno inj point measurement messung "
-    "messungnr wiederholung spot shot scan cycle step count# i serialno item".split()
+_COUNTER = word_set(
+    "no nr # run runno runnr rep repno replicate replicateno reading readingno index idx seq seqno sequence line "
+    "lineno row rowno position pos vial vialno lfdnr lfnr nummer number num injection injectionno inj point "
+    "measurement messung messungnr wiederholung spot shot scan cycle step count# i serialno item"
 )
-_LABEL = frozenset(
-    "sample sampleno samplenumber samplenr sampleid sampleidentifier samplecode samplename samplelabel probe probennr "
-    "probenr probenummer probenname probenid proben specimen specimenno id code barcode labno labnumber labid order "
-    "orderno auftrag auftragsnr batch batchno lot lotno charge chargennr label name type typ matrix material group "
-    "product article well plate jobno job échantillon muestra site station location part partno teil teilnr".split()
+_LABEL = word_set(
+    "sample sampleno samplenumber samplenr sampleid sampleidentifier samplecode samplename samplelabel probe "
+    "probennr probenr probenummer probenname probenid proben specimen specimenno id code barcode labno labnumber "
+    "labid order orderno auftrag auftragsnr batch batchno lot lotno charge chargennr label name type typ matrix "
+    "material group product article well plate jobno job échantillon muestra site station location part partno "
+    "teil teilnr"
 )
-_TIME = frozenset(
-    "time date datetime timestamp zeit datum uhrzeit elapsed elapsedtime runtime start startzeit end clock clocktime "
-    "acquired measuredat measuredon day tag stunde hour dateandtime datetimeutc timeutc fecha hora heure jour".split()
+_TIME = word_set(
+    "time date datetime timestamp zeit datum uhrzeit elapsed elapsedtime runtime start startzeit end clock "
+    "clocktime acquired measuredat measuredon day tag stunde hour dateandtime datetimeutc timeutc fecha hora "
+    "heure jour"
 )
-PREPARATIONS = frozenset(
-    "prep preparation preparationno prepno prepid vial flask bottle aliquot digest digestion extract extraction weighing "
-    "weighingno portion testportion ansatz einwaage aufschluss aufarbeitung probenvorbereitung subsample".split()
+PREPARATIONS = word_set(
+    "prep preparation preparationno prepno prepid vial flask bottle aliquot digest digestion extract extraction "
+    "weighing weighingno portion testportion ansatz einwaage aufschluss aufarbeitung probenvorbereitung subsample"
 )
-_UNIT = frozenset("unit units einheit einheiten unité unidad uom".split())
-_OTHER = frozenset(
-    "operator analyst user remark remarks comment comments note notes bemerkung bearbeiter instrument method gerät "
-    "methode flag flags status initials checkedby".split()
+_UNIT = word_set("unit units einheit einheiten unité unidad uom")
+_OTHER = word_set(
+    "operator analyst user remark remarks comment comments note notes bemerkung bearbeiter instrument method "
+    "gerät methode flag flags status initials checkedby"
 )
-_ANALYTE = frozenset("parameter analyte test compound element component quantity messgröße determinand type typ".split())
-_QUALIFIER = frozenset("qualifier qual operatorsign sign vorzeichen symbol modifier relation lessthan <>".split())
-_MARKS = frozenset("< > <= >= =< => ≤ ≥ = ~".split())
+_ANALYTE = word_set("parameter analyte test compound element component quantity messgröße determinand type typ")
+_QUALIFIER = word_set("qualifier qual operatorsign sign vorzeichen symbol modifier relation lessthan <>")
+_MARKS = word_set("< > <= >= =< => ≤ ≥ = ~")
 _RUNNING = re.compile(r"(.*?)[\s_.#-]*(\d{1,3}|[a-hA-H]|[ivx]{1,4})", re.DOTALL)
 _WHOLE = re.compile(r"\d{1,12}(?:\.0+)?", re.ASCII)
 MOST_COLUMNS = 5000
@@ -118,7 +122,7 @@ def is_label_word(word: str) -> bool:
 def is_count(texts: Sequence[str]) -> bool:
     """Tell whether whole numbers count up by one: 1, 2, 3."""
     numbers = [int(float(text)) for text in texts[:FIRST_ROWS]]
-    steps = [b - a for a, b in zip(numbers, numbers[1:], strict=False)]
+    steps = [b - a for a, b in pairwise(numbers)]
     return len(numbers) > 1 and all(step == 1 for step in steps)
 
 

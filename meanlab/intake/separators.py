@@ -79,9 +79,7 @@ def _are_fields(filled: list[str], many: list[str]) -> bool:
 def _of_one_width(many: list[str]) -> bool:
     words = Counter(len(line.split()) for line in many)
     gaps = Counter(len(GAPS.split(line)) for line in many)
-    return words.most_common(1)[0][1] * 2 > len(many) or (
-        max(gaps) > 1 and gaps.most_common(1)[0][1] * 2 > len(many)
-    )
+    return words.most_common(1)[0][1] * 2 > len(many) or (max(gaps) > 1 and gaps.most_common(1)[0][1] * 2 > len(many))
 
 
 def _end_in_numbers(many: list[str]) -> bool:

@@ -48,10 +48,8 @@ def _objection(found: Parsed, sign: str | None) -> str:
         return "is not a number alone: type the number without the remark."
     mark = "," if "," in found.numeral else "."
     if leaning(found.numeral) == "either" and not found.power and (sign or ".") != mark:
-        return (
-            f"is not a number that can be told for sure: {under(found.numeral, mark)} or {under(found.numeral, _OTHER[mark])}? "
-            "Type it without a thousands mark and with the decimal sign of the readings."
-        )
+        one, other = under(found.numeral, mark), under(found.numeral, _OTHER[mark])
+        return f"is not a number that can be told for sure: {one} or {other}? Type it without a thousands mark."
     return ""
 
 

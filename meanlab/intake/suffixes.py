@@ -13,9 +13,7 @@ from meanlab.intake.words import FLAGS
 _OPEN_UNIT = re.compile(r"[^\W\d_][^\s()\d]{0,11}|[€£¥¢]")
 
 
-def settled(
-    known: Mapping[Hashable, Parsed], counts: Counter[Any], heading_unit: str | None
-) -> dict[Hashable, Parsed]:
+def settled(known: Mapping[Hashable, Parsed], counts: Counter[Any], heading_unit: str | None) -> dict[Hashable, Parsed]:
     """Return the different entries of a column, each key once, with what stands behind their numbers settled.
 
     ``counts`` tells how often each stands in the column. A word that no list knows is a unit where every reading

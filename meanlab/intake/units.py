@@ -2,12 +2,15 @@
 
 import re
 import unicodedata
-from collections.abc import Mapping
+
+from meanlab.intake.words import word_set
 
 # Symbols of the SI brochure (BIPM, 9th edition) that take prefixes, and the usual ones beside them.
-_BASES = "m g L l mol M A V W J N Pa bar Hz s K F H T S Sv Gy Bq Ω lm lx cd kat eV Da eq Eq osmol Osm cal IU U AU Abs OD"
+_BASES = (
+    "m g L l mol M A V W J N Pa bar Hz s K F H T S Sv Gy Bq Ω lm lx cd kat eV Da eq Eq osmol Osm cal IU U AU Abs OD"
+)
 _PREFIXED = {
-    "k M G m µ μ u n p": _BASES + " cps S/m P St t Ah Wh Torr psi val ohm Ohm B b",
+    "k M G m µ μ u n p": _BASES + " cps P St t Ah Wh Torr psi val ohm Ohm B b",
     "c": "m g L l P St Gy N Poise",
     "d": "m g L l B eq",
     "h": "Pa L l",
@@ -16,31 +19,31 @@ _PREFIXED = {
     "T": "Hz Bq Ω",
     "mc": "g L l mol",
 }
-_ALONE = (
-    "% ‰ ‱ \" ppm ppb ppt ppmv ppbv ppmw °C °F °K °dH °fH °e °Bx °Brix °P °Bé °Z ° ′ ″ °Oe °SR Brix "
+_ALONE = word_set(
+    '% ‰ ‱ " ppm ppb ppt ppmv ppbv ppmw °C °F °K °dH °fH °Bx °Brix °P °Bé °Z ° ′ ″ °Oe °SR Brix '
     "min h d wk yr mo hr hrs sec NTU FNU FTU FAU FBU JTU EBC SRM CFU cfu KBE KbE KBE MPN PFU pfu GE copies cells "
     "IU U U.I. I.U. IE AU mAU RU RFU RLU LU FU Ct Cq cts counts count rpm min⁻¹ RPM G xg px dpi pH pX dB dBA "
     "mmHg inHg mmH2O cmH2O atm at psi psig psia in ft yd mil oz lb lbs gal HV HB HRC HRB HK ShA ShD Shore cP cSt mPas "
-    "TCU Hazen APHA PCU Pt-Co mgPt mgPt/L PSU psu S.U. SU dtex den tex gsm ha Å amu kDa Da MPa log log10 lg "
+    "TCU Hazen APHA PCU Pt-Co mgPt PSU psu S.U. SU dtex den tex gsm ha Å amu kDa Da MPa log log10 lg "
     "Vol.-% Vol-% vol% vol-% v/v% %v/v %vol wt% wt.-% wt-% w/w% %w/w %w/v w% m% m-% mol% mol-% at% at.-% at-% "
     "Mol-% Gew.-% Gew-% Ma.-% M-% percent pct per cent percentage mg% g% grad gon rad sr deg degC degF degK "
     "ct carat pc pcs spots colonies units plaques ions events pixel pixels Zellen Keime Kolonien Stk Stück "
     "gram grams gramme grammes milligram milligrams kilogram kilograms litre litres liter liters minute minutes "
     "second seconds hour hours day days metre metres meter meters volt volts degree degrees"
-).split()
+)
 _WITH_PREFIX = frozenset(
     prefix + base for prefixes, bases in _PREFIXED.items() for prefix in prefixes.split() for base in bases.split()
 )
-_SYMBOLS = _WITH_PREFIX | frozenset([*_ALONE, *_BASES.split(), "C", "t", "B", "P", "St", "ohm", "Ohm", "Torr", "psi"])
-_LITRE = frozenset("l Ml kl hl dl cl ml µl μl ul nl pl fl mcl".split())
-_RAISED: Mapping[int, str] = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻", "0123456789+-")
-_TERM = re.compile(r"([^\W\d_]+[₀-₉]*|[%‰‱°′″Å][A-Za-zé]*|\d+(?:\.\d+)?)(?:\^?\(?([+-]?\d{1,2})\)?)?", re.UNICODE)
-_LENGTHS = frozenset("m dm cm mm µm μm um nm km in ft s h".split())
+_SYMBOLS = _WITH_PREFIX | _ALONE | word_set(_BASES + " C t B P St ohm Ohm Torr psi")
+_LITRE = word_set("l Ml kl hl dl cl ml µl μl ul nl pl fl mcl")
+_RAISED = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻", "0123456789+-")
+_TERM = re.compile(r"([^\W\d_]+[₀-₉]*|[%‰‱°′″Å][A-Za-zé]*|\d+(?:\.\d+)?)(?:\^?\(?([+-]?\d{1,2})\)?)?")
+_LENGTHS = word_set("m dm cm mm µm μm um nm km in ft s h")
 _BETWEEN = re.compile(r"\s*(/|per\b|[·⋅*×.•]|\s)\s*")
 _QUALIFIED = re.compile(r"(.*\S)\s+(?:as\s+)?\(?((?:[A-Z][a-z]?\d{0,2}){1,6}(?:[-–][NPSC])?)\)?")
 _BASIS = re.compile(r"\s*\(?\b(w/w|m/m|v/v|w/v|m/v|n/n|mol/mol|dry|wet|DM|TS|i\. ?Tr\.|FS)\)?$")
-_WORDS = frozenset(
-    "pH pX Abs abs day min max log in at mol count counts cells units copies events Count RU Ct LU SU GE IE HK".split()
+_WORDS = word_set(
+    "pH pX Abs abs day min max log in at mol count counts cells units copies events Count RU Ct LU SU GE IE HK"
 )
 MOST_CHARACTERS = 24
 

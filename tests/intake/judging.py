@@ -17,12 +17,20 @@ def problems(expected: Mapping[str, Any], found: Mapping[str, Any]) -> list[str]
         wanting.append(f"none of {any_of} is said")
     if expected.get("ambiguous"):
         asks = found["refused"] or found["needs_choice"]
-        return wanting + ([] if asks or any(_same(found["values"], one) for one in expected["values_any_of"]) else [f"values {found['values']}"])
+        return wanting + (
+            []
+            if asks or any(_same(found["values"], one) for one in expected["values_any_of"])
+            else [f"values {found['values']}"]
+        )
     if expected.get("needs_choice"):
         wanting += [] if found["needs_choice"] else ["no choice is asked for"]
-        return wanting + [f"no choice {word!r}" for word in expected.get("choices_include", ()) if not _said(found, [word])]
+        return wanting + [
+            f"no choice {word!r}" for word in expected.get("choices_include", ()) if not _said(found, [word])
+        ]
     if expected.get("refused"):
-        return wanting + ([] if found["refused"] or (found["needs_choice"] and not found["values"]) else ["not refused"])
+        return wanting + (
+            [] if found["refused"] or (found["needs_choice"] and not found["values"]) else ["not refused"]
+        )
     if found["refused"] or found["needs_choice"]:
         return [f"refused or asked: {found['reason']}"]
     return wanting + _fields(expected, found)

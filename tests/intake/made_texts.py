@@ -1,29 +1,52 @@
 """Texts made up from a drawn number: what laboratories write, mixed, damaged and misplaced.
 
-    text = made_text(random.Random(7))
+text = made_text(random.Random(7))
 """
 
 import random
 
-NUMBERS = (
-    "5.02 5,02 0.412 1,234 1.234 1,234.5 1.234,5 1'234.5 1\u2009234.5 1 234,5 12000 -0.05 −0.05 –0.12 +0.12 0.12- .5 5. 5,0,1 "
-    "5..04 1e5 1.2E-03 1,2E-03 1.2×10⁻³ 1.2x10^-3 10^5 1e400 1e-400 0x1F 1_000 007 5.10 ５．０２ ٥٫٠٢ 1.2e 12,3O l2.3 "
-    "0.30000000000000004 99999999999999999999999999999999999999999999 2026 -999 5.2. 1/2 5-6 5:02 192.168.0.1 ½ (0.05)"
-).split(" ")
-UNITS = "mg/L mg/l µg/L μg/L % °C NTU CFU/mL MPN/100\u00a0mL g g/100\u00a0g mg·L⁻¹ ppm ‰ foo mm² \" € mg\u202fL-1 as\u00a0N".split(" ")
-MARKS = "* ** † (a) a H J U outlier? rejected 👍 (<LOQ) // ? ± +/- (3) ±\u00a00.03 #note [x] ^ ~".split(" ")
-WORDS = (
+
+def _words(text: str) -> list[str]:
+    """Words parted by blanks; "␣" stands for a blank inside a word."""
+    return [word.replace("␣", " ") for word in text.split(" ")]
+
+
+NUMBERS = _words(
+    "5.02 5,02 0.412 1,234 1.234 1,234.5 1.234,5 1'234.5 1\u2009234.5 1␣234,5 12000 -0.05 −0.05 –0.12 +0.12 0.12- .5 "
+    "5. 5,0,1 5..04 1e5 1.2E-03 1,2E-03 1.2×10⁻³ 1.2x10^-3 "
+    "10^5 1e400 1e-400 0x1F 1_000 007 5.10 ５．０２ ٥٫٠٢ 1.2e 12,3O "
+    "l2.3 0.30000000000000004 99999999999999999999999999999999999999999999 2026 -999 5.2. 1/2 5-6 5:02 "
+    "192.168.0.1 ½ (0.05)"
+)
+UNITS = _words('mg/L mg/l µg/L μg/L % °C NTU CFU/mL MPN/100␣mL g g/100␣g mg·L⁻¹ ppm ‰ foo mm² " € mg\u202fL-1 as␣N')
+MARKS = _words("* ** † (a) a H J U outlier? rejected 👍 (<LOQ) // ? ± +/- (3) ±␣0.03 #note [x] ^ ~")
+WORDS = _words(
     "NA N/A - -- — . n.d. ND BDL <LOQ < > <0.05 >100 ≤0,5 =>2.0 OVER OL inf -inf NaN #N/A #DIV/0! #### TRUE 12:30 "
-    "2026-03-04 04.03.2026 5-Feb 3/4/2026 9:12 AM =A1*2 =cmd|'/C'!A0 @SUM(A1) http://x.y/1 <b>1</b> <script> "
-    "Nitrate Nitrat Run Sample Time Date Mean SD n Mittelwert Unit Qualifier Prep A Vial QC-1 A-101 Rep spot no. pH 😀 "
-    "not measured broken vial Dear colleague x̄ s = 1. 2) #1 (3) a) • | || |---| ;; ,, \t\t $5 \\frac{1}{2} **bold** $x$ "
-    "nan(1) ∞ 0 00 -0 1E+ \u200b5.04 \ufeff \u202e5 \x0c \x85 \u2028 \x1c \x0b \ud7ff \U0010ffff ¼ Ⅷ ⁵ ٣ 一"
-).split(" ")
+    "2026-03-04 04.03.2026 5-Feb 3/4/2026 9:12␣AM =A1*2 =cmd|'/C'!A0 @SUM(A1) http://x.y/1 <b>1</b> <script> "
+    "Nitrate Nitrat Run Sample Time Date Mean SD n Mittelwert Unit Qualifier Prep␣A Vial QC-1 A-101 Rep spot no. pH 😀 "
+    "not␣measured broken␣vial Dear␣colleague x̄ s = 1. 2) #1 (3) a) • | || |---| ;; ,, \t\t $5 \\frac{1}{2} **bold** "
+    "$x$ nan(1) ∞ 0 00 -0 1E+ \u200b5.04 \ufeff \u202e5 \x0c \x85 \u2028 \x1c \x0b \ud7ff \U0010ffff ¼ Ⅷ ⁵ ٣ 一"
+)
 HEADINGS = (
-    "Nitrate (mg/L)|Nitrat [mg/l]|Nitrate, mg/L|Thickness / µm|pH|Line 2|2026|mg/L|T/°C|E. coli (MPN/100 mL)|# Nitrate (mg/L)|"
-    "Run,Nitrate (mg/L)|Run;Nitrat|Sample\tNitrate (mg/L)\tpH|A,B,C|Nitrate\nmg/L|Worksheet,WS-1\nDate,2026-03-04|"
-    "| Rep | pH |\n|---|---|"
-).split("|", 15)
+    "Nitrate (mg/L)",
+    "Nitrat [mg/l]",
+    "Nitrate, mg/L",
+    "Thickness / µm",
+    "pH",
+    "Line 2",
+    "2026",
+    "mg/L",
+    "T/°C",
+    "E. coli (MPN/100 mL)",
+    "# Nitrate (mg/L)",
+    "Run,Nitrate (mg/L)",
+    "Run;Nitrat",
+    "Sample\tNitrate (mg/L)\tpH",
+    "A,B,C",
+    "Nitrate\nmg/L",
+    "Worksheet,WS-1\nDate,2026-03-04",
+    "| Rep | pH |\n|---|---|",
+)
 SEPARATORS = ("\n", "\n", "\n", "\r\n", "\r", "\t", ";", ",", ", ", " ", "  ", "|", "\n\n", "\u2028", "; ", " / ")
 
 
@@ -82,7 +105,8 @@ def damaged(text: str, draw: random.Random) -> str:
     """A text with one piece taken out, doubled, moved, quoted, or replaced by a drawn character."""
     first, last = sorted((draw.randint(0, len(text)), draw.randint(0, len(text))))
     piece = text[first:last]
-    odd = chr(draw.choice((draw.randrange(32), draw.randrange(32, 127), draw.randrange(0xD7FF), 0x10000 + draw.randrange(0xFFFF))))
+    places = (draw.randrange(32), draw.randrange(32, 127), draw.randrange(0xD7FF), 0x10000 + draw.randrange(0xFFFF))
+    odd = chr(draw.choice(places))
     return draw.choice(
         (
             text[:first] + text[last:],

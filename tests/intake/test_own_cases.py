@@ -127,7 +127,10 @@ BEFORE = [
     (lines("5. 02", "5. 04"), {"refused": True, "must_mention": ["5.02"]}),
 ]
 KEPT_APART = [
-    (lines("<0.05", "≤ 0.1", ">9", "≥ 9.5"), {"values": [], "censored": [below(0, 0.05), below(1, 0.1), above(2, 9.0), above(3, 9.5)]}),
+    (
+        lines("<0.05", "≤ 0.1", ">9", "≥ 9.5"),
+        {"values": [], "censored": [below(0, 0.05), below(1, 0.1), above(2, 9.0), above(3, 9.5)]},
+    ),
     (lines("&lt;0.05", "0.12"), column(0.12, censored=[below(0, 0.05)])),
     (lines("< 0,05 mg/l", "0,12 mg/l"), column(0.12, censored=[below(0, 0.05)], unit="mg/l")),
     (lines("less than 0.05", "0.12"), column(0.12, censored=[below(0, 0.05)])),
@@ -176,13 +179,22 @@ TABLES = [
     (lines("1 234", "2 241", "3 228"), column(234.0, 241.0, 228.0)),
     (lines("12 345", "12 410"), column(12345.0, 12410.0, warnings_any_of=["blank"])),
     (lines("Sample\tNitrate", "QC-1\t5.1", "QC-2\t5.2"), column(5.1, 5.2, name="Nitrate")),
-    (lines("Sample\tNitrate", "QC-1\t5.1", "QC-1\t5.2", "QC-2\t9.1"), {"needs_choice": True, "choices_include": ["QC-2"]}),
+    (
+        lines("Sample\tNitrate", "QC-1\t5.1", "QC-1\t5.2", "QC-2\t9.1"),
+        {"needs_choice": True, "choices_include": ["QC-2"]},
+    ),
     (lines("Time (min),Turbidity (NTU)", "0,0.41", "5,0.43"), column(0.41, 0.43, name="Turbidity", unit="NTU")),
-    (lines("Nitrate\t5.1\t5.2\t5.3", "Chloride\t24.1\t24.2\t24.3"), {"needs_choice": True, "choices_include": ["Chloride"]}),
+    (
+        lines("Nitrate\t5.1\t5.2\t5.3", "Chloride\t24.1\t24.2\t24.3"),
+        {"needs_choice": True, "choices_include": ["Chloride"]},
+    ),
     (lines("Nitrate (mg/L)", "5.1", "5.2", "", "Chloride (mg/L)", "24.1", "24.2"), {"needs_choice": True}),
     (lines("5.1", "5.2", "Mean", "5.15", "SD", "0.07"), column(5.1, 5.2, warnings_any_of=["mean"])),
     (lines("5.1", "5.2", "n = 2", "x̄ = 5.15"), column(5.1, 5.2, warnings_any_of=["mean"])),
-    (lines("5.10", "5.20", "5.30", "5.20", "5.200"), {"values": [5.1, 5.2, 5.3, 5.2, 5.2], "warnings_any_of": ["mean"]}),
+    (
+        lines("5.10", "5.20", "5.30", "5.20", "5.200"),
+        {"values": [5.1, 5.2, 5.3, 5.2, 5.2], "warnings_any_of": ["mean"]},
+    ),
     (lines("Nitrate", "5.1", "Nitrate", "5.2"), column(5.1, 5.2, warnings_any_of=["heading comes again"])),
     (lines("5.1", "", "broken vial", "5.2"), {"values": [5.1, 5.2], "rejected": 1, "must_mention": ["Line 3"]}),
     (lines("Nitrate  Chloride", "5.1  24.1", "5.2  24.2"), {"needs_choice": True, "choices_include": ["Chloride"]}),
@@ -223,10 +235,18 @@ FILES = [
     ("Time,Turbidity\ns,NTU\n0,0.41\n1,0.43\n", {}, column(0.41, 0.43, name="Turbidity", unit="NTU")),
     ("Parameter,Result\nNitrate,5.1\nChloride,24\n", {}, {"needs_choice": True, "choices_include": ["Chloride"]}),
     ("Parameter,Result\nNitrate,5.1\nChloride,24\n", {"where": {"Parameter": "nitrate"}}, column(5.1)),
-    ("Parameter,Result\nNitrate,5.1\n", {"where": {"Parameter": "Iron"}}, {"refused": True, "must_mention": ["Iron", "Nitrate"]}),
+    (
+        "Parameter,Result\nNitrate,5.1\n",
+        {"where": {"Parameter": "Iron"}},
+        {"refused": True, "must_mention": ["Iron", "Nitrate"]},
+    ),
     ("Run,Nitrate\n1,5.1\n", {"column": "Iron"}, {"refused": True, "must_mention": ["Iron", "Nitrate"]}),
     ("Run,Nitrate\n1,5.1\n", {"column_index": 9}, {"refused": True, "must_mention": ["9"]}),
-    ("S,rep1,rep2\nA,5.1,5.2\nB,6.1,\n", {"columns": ["rep1", "rep2"], "where": {"S": "B"}}, {"values": [6.1], "missing": 1}),
+    (
+        "S,rep1,rep2\nA,5.1,5.2\nB,6.1,\n",
+        {"columns": ["rep1", "rep2"], "where": {"S": "B"}},
+        {"values": [6.1], "missing": 1},
+    ),
     ("S,rep1,rep2\nA,5.1,5.2\nB,6.1,6.2\n", {}, {"needs_choice": True, "choices_include": ["rep1", "B"]}),
     ("5.1;5.2\n", {"sheet": "R"}, {"refused": True, "must_mention": ["sheet"]}),
     ("1.234\n1.241\n", {"decimal": ","}, column(1234.0, 1241.0)),
