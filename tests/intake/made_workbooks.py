@@ -4,7 +4,12 @@ import io
 import struct
 import zipfile
 from collections.abc import Mapping
+from pathlib import Path
 
+from meanlab.intake.grid import Sheet
+from meanlab.intake.workbooks import sheets_of
+
+FILES = Path(__file__).parent / "files"
 MAIN = 'xmlns="http://schemas.openxmlformats.org/spreadsheetml/2006/main"'
 RELATIONS = "http://schemas.openxmlformats.org/officeDocument/2006/relationships"
 PACKAGE = "http://schemas.openxmlformats.org/package/2006"
@@ -44,6 +49,13 @@ def xlsx(*sheets: str) -> bytes:
     return zipped(xlsx_parts(*sheets))
 
 
+def with_part(name: str, content: bytes | str, relation: str = "") -> bytes:
+    """A workbook with one reading and one part more, or another in its place."""
+    parts = xlsx_parts(rows("<c><v>5.02</v></c>"), more_relations=relation)
+    parts[name] = content
+    return zipped(parts)
+
+
 def rows(*contents: str) -> str:
     """The <sheetData> of rows with these cells."""
     return "<sheetData>" + "".join(f"<row>{content}</row>" for content in contents) + "</sheetData>"
@@ -79,8 +91,8 @@ def ods(tables: str, styles: str = "") -> bytes:
     )
 
 
-def xlsb(numbers: list[float]) -> bytes:
-    """A binary workbook with one sheet and one column of numbers ([MS-XLSB] §2.2.1 records, §2.5.97 strings)."""
+def xlsb(numbers: list[float], first_row: int = 0, column: int = 0) -> bytes:
+    """A binary workbook with one sheet and one column of numbers ([MS-XLSB] §2.1.4 records, §2.5.168 strings)."""
 
     def record(kind: int, content: bytes = b"") -> bytes:
         coded = bytes([kind]) if kind < 128 else bytes([kind & 0x7F | 0x80, kind >> 7])
@@ -95,11 +107,12 @@ def xlsb(numbers: list[float]) -> bytes:
             record(144), record(132),
         ]
     )  # fmt: skip
-    last = max(len(numbers) - 1, 0)
-    sheet = record(129) + record(148, struct.pack("<4I", 0, last, 0, 0)) + record(145)
-    for row, number in enumerate(numbers):
+    last = first_row + len(numbers) - 1
+    sheet = record(129) + record(148, struct.pack("<4I", 0, last, 0, column)) + record(145)
+    sheet += record(0, struct.pack("<IIHBBBI", 0, 0, 300, 0, 0, 0, 0)) + record(5, struct.pack("<IId", 0, 0, 0.5))
+    for row, number in enumerate(numbers, first_row):
         sheet += record(0, struct.pack("<IIHBBBI", row, 0, 300, 0, 0, 0, 0))
-        sheet += record(5, struct.pack("<IIBd", 0, 0, 0, number)[:8] + struct.pack("<d", number))
+        sheet += record(5, struct.pack("<IId", column, 0, number))
     sheet += record(146) + record(130)
     parts = xlsx_parts()
     del parts["xl/workbook.xml"], parts["xl/_rels/workbook.xml.rels"]
@@ -155,3 +168,23 @@ def xls_stream(sheet_records: bytes, before: bytes = b"", version: int = 0x600) 
 def biff(kind: int, content: bytes = b"") -> bytes:
     """One record."""
     return struct.pack("<HH", kind, len(content)) + content
+
+
+def texts(sheet: Sheet) -> list[list[str]]:
+    """The texts of all cells, row by row."""
+    return [[cell.text for cell in row] for row in sheet.rows]
+
+
+def column(sheet: Sheet, place: int) -> list[str]:
+    """The texts of one column, "" where a row is shorter."""
+    return [row[place].text if place < len(row) else "" for row in sheet.rows]
+
+
+def kinds(sheet: Sheet, place: int) -> list[str]:
+    """The kinds of the cells of one column."""
+    return [row[place].kind if place < len(row) else "text" for row in sheet.rows]
+
+
+def file(name: str) -> tuple[Sheet, ...]:
+    """The sheets of one of the files kept beside the tests."""
+    return sheets_of((FILES / name).read_bytes(), name)
