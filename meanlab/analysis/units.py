@@ -48,7 +48,7 @@ class Units:
     @cached_property
     def censored(self) -> int:
         """How many units are known only to lie between bounds."""
-        return int(np.sum(self.spans.lows != self.spans.highs))
+        return 0 if self.spans.plain else int(np.sum(self.spans.lows != self.spans.highs))
 
     @property
     def one_preparation(self) -> bool:
@@ -95,7 +95,7 @@ def units_of(readings: ReadingSet, question: Question) -> Units:
         spans=spans,
         sample=Sample(spans.lows, scaled_target, exponent, divisor) if plain else None,
         limit=None if limit is None else scaled(limit, exponent) * divisor,
-        places=tuple(group.places for group in groups) or tuple((place,) for place in _entry_places(kept)),
+        places=tuple(group.places for group in groups) or tuple(zip(_entry_places(kept), strict=True)),
         resolution=None if step is None else step / fewest,
         preparations=lines,
         s_within=_pooled(lines) if plain else None,
@@ -183,14 +183,21 @@ def _step(kept: ReadingSet, question: Question, whole: list[int], exponent: int)
         return None
     typed = 10 ** max(0, -kept.decimals - exponent)
     if len(whole) >= FEWEST_FOR_STEP:
-        typed = max(typed, reduce(gcd, (b - a for a, b in pairwise(whole))))
+        typed = max(typed, _grid(whole_array(whole)))
     return quotient(typed, 1, exponent)
+
+
+def _grid(whole: np.ndarray) -> int:
+    """Return the greatest common divisor of the differences; 0 where there are none."""
+    if whole.dtype == object:
+        return reduce(gcd, (b - a for a, b in pairwise(whole)))
+    return int(np.gcd.reduce(np.diff(whole)))
 
 
 def summary_of(units: Units, readings: ReadingSet) -> Summary:
     """Return the readings in figures; what a censored unit makes unknown is None."""
     sample, spans = units.sample, units.spans
-    lows, highs = (np.sort(side) for side in (spans.lows, spans.highs))
+    lows, highs = spans.rising
     n = units.n
 
     def known(place: int, other: int) -> float | None:

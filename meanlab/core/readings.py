@@ -7,10 +7,8 @@ from functools import cached_property
 from typing import Any, Literal
 
 from meanlab.core.complaints import ReadingsComplaint
-from meanlab.core.numbers import as_typed, exact, finest_places, looks_computed, places, scaled
+from meanlab.core.numbers import as_typed, exact, finest_places, looks_computed, scaled_all
 from meanlab.core.plain import plain
-
-MOST_SMALL = -10_000
 
 
 @dataclass(frozen=True)
@@ -136,22 +134,22 @@ class ReadingSet:
 
     @cached_property
     def decimals(self) -> int:
-        """The most decimal places any reading was written with, at least 0."""
+        """The most decimal places any reading was written with; negative where all were written in whole tens."""
         return finest_places(self.values)
 
     @cached_property
     def extremes(self) -> tuple[Decimal, ...]:
-        """The value written with the most places and the one of the greatest size; none without values."""
+        """A number written with the most places, and the value of the greatest size; none without values."""
         if not self.values:
             return ()
-        greatest = max(self.values, key=lambda value: value.adjusted() if value else MOST_SMALL)
-        return max(self.values, key=places), greatest
+        return Decimal((0, (0,), -self.decimals)), max(
+            filter(None, self.values), key=Decimal.adjusted, default=Decimal()
+        )
 
     @cached_property
     def whole(self) -> tuple[int, tuple[int, ...]]:
         """The finest power of ten among the values, and the values as whole numbers in units of it."""
-        finest = -places(self.extremes[0]) if self.values else 0
-        return finest, tuple(scaled(value, finest) for value in self.values)
+        return -self.decimals, tuple(scaled_all(self.values, -self.decimals))
 
     def whole_at(self, exponent: int) -> list[int]:
         """Return the values as whole numbers in units of 10**exponent, which must not be coarser than any of them."""
