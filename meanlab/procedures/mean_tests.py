@@ -1,18 +1,20 @@
 """z, Student's t and guarded t: what they share is a statistic on the scale of the standard uncertainty.
 
 The critical values (lower, upper) on that scale give the interval [x̄ − upper·u, x̄ − lower·u], so that the target lies
-outside it exactly where p < α.
+outside it exactly where p < α. The figures are computed for one sample (floats) and for many at once (arrays, samples
+along the first axis) by the same functions.
 """
 
 from dataclasses import dataclass
+from functools import reduce
 from math import hypot, inf, isfinite, sqrt
-from typing import Any
+from typing import Any, Protocol
 
 import numpy as np
 
 from meanlab.core.results import Component, Interval, Test
 from meanlab.procedures.decision import one_sided, p_value, rejecting_sides, tail
-from meanlab.procedures.distributions import normal_upper, t_critical, t_upper
+from meanlab.procedures.distributions import t_critical, t_upper
 from meanlab.procedures.sample import Sample
 
 
@@ -33,18 +35,72 @@ class Further:
 NONE_FURTHER = Further()
 
 
-def effective_df(components: list[tuple[float, float]]) -> float:
+class Moments(Protocol):
+    """What the tests of the mean look at: of one sample as numbers, of many of equal n as arrays of shape (samples,)."""
+
+    @property
+    def n(self) -> int:
+        """How many independent units in each sample."""
+
+    @property
+    def mean(self) -> Any:
+        """x̄."""
+
+    @property
+    def difference(self) -> Any:
+        """x̄ − μ₀."""
+
+    @property
+    def standard_error(self) -> Any:
+        """s/√n."""
+
+    @property
+    def ratio(self) -> Any:
+        """(x̄ − μ₀)/(s/√n)."""
+
+    @property
+    def skewness(self) -> Any:
+        """g₁."""
+
+
+@dataclass(frozen=True)
+class Figures:
+    """What a test of the mean comes to: numbers for one sample, arrays of shape (samples,) for many.
+
+    u is the standard uncertainty of the difference, lower and upper are critical values on its scale, df infinite for
+    the normal distribution, skew_term a = g₁/(3√n) of the guarded t.
+    """
+
+    statistic: Any
+    u: Any
+    df: Any
+    p_greater: Any
+    p_less: Any
+    lower: Any
+    upper: Any
+    skew_term: Any = None
+
+    def ends(self, centre: Any, alternative: str) -> tuple[Any, Any]:
+        """Return the ends of the interval around the mean or the difference; None for one that there is not."""
+        return one_sided(alternative, centre - self.upper * self.u, centre - self.lower * self.u)
+
+
+def effective_df(components: list[tuple[Any, float]]) -> Any:
     """Return the effective degrees of freedom ν = (Σu²)²/Σ(u⁴/ν) of components (u, ν); infinite where every ν is.
+
+    Each u is a number, or an array of one shape.
 
     Source: Welch–Satterthwaite, JCGM 100:2008 G.4.1.
 
-    >>> round(effective_df([(5.8, 24), (3.9, 5), (6.7, 8)]), 3)
+    >>> round(float(effective_df([(5.8, 24), (3.9, 5), (6.7, 8)])), 3)
     25.447
     """
-    largest = max(u for u, _ in components)
-    squares = [(u / largest) ** 2 for u, _ in components]
-    spread = sum(square**2 / df for square, (_, df) in zip(squares, components, strict=True))
-    return sum(squares) ** 2 / spread if spread > 0 else inf
+    largest = reduce(np.maximum, (u for u, _ in components))
+    squares = [(u / largest) * (u / largest) for u, _ in components]
+    spread = sum(square * square / df for square, (_, df) in zip(squares, components, strict=True))
+    total = sum(squares)
+    with np.errstate(divide="ignore"):
+        return np.where(spread > 0, total * total / spread, inf)[()]
 
 
 def components_of(scatter_u: float, scatter_df: float, further: Further, scatter: str = "scatter") -> list[Component]:
@@ -96,6 +152,39 @@ def guarded_critical(a: Any, df: Any, each_tail: float) -> tuple[Any, Any]:
     return np.minimum(-q, unguard(-q, a)), np.maximum(q, unguard(q, a))
 
 
+def z_figures(
+    units: Moments, sigma: float, sigma_df: float, alternative: str, alpha: float, further: Further
+) -> Figures:
+    """Return the figures of the z test, z = (x̄ − μ₀)/√(σ²/n + u₀² + u_B²); see `known_sigma`."""
+    scatter_u = sigma / sqrt(units.n)
+    u = hypot(scatter_u, further.u)
+    df = effective_df([(scatter_u, sigma_df), (further.target_u, further.target_df), (further.own_u, inf)])
+    return _by_t(units.difference / u, u, df, alternative, alpha)
+
+
+def t_figures(units: Moments, alternative: str, alpha: float, further: Further = NONE_FURTHER) -> Figures:
+    """Return the figures of Student's t, t = (x̄ − μ₀)/√(s²/n + u₀² + u_B²); see `students_t`."""
+    if further.u == 0:
+        return _by_t(units.ratio, units.standard_error, units.n - 1, alternative, alpha)
+    scatter_u = units.standard_error
+    u = np.hypot(scatter_u, further.u)
+    parts = [(scatter_u, units.n - 1.0), (further.target_u, further.target_df), (further.own_u, inf)]
+    return _by_t(units.difference / u, u, effective_df(parts), alternative, alpha)
+
+
+def guarded_figures(units: Moments, alternative: str, alpha: float) -> Figures:
+    """Return the figures of the guarded t; see `guarded_t`."""
+    a, df = units.skewness / (3 * sqrt(units.n)), units.n - 1
+    tails = guarded_tails(units.ratio, a, df)
+    critical = guarded_critical(a, df, tail(alternative, alpha))
+    return Figures(units.ratio, units.standard_error, df, *tails, *critical, a)
+
+
+def _by_t(statistic: Any, u: Any, df: Any, alternative: str, alpha: float) -> Figures:
+    q = t_critical(tail(alternative, alpha), df)
+    return Figures(statistic, u, df, *t_tails(statistic, df), -q, q)
+
+
 def known_sigma(
     sample: Sample, sigma: float, sigma_df: float, alternative: str, alpha: float, further: Further
 ) -> Test:
@@ -104,10 +193,7 @@ def known_sigma(
     z = (x̄ − μ₀)/√(σ²/n + u₀² + u_B²), standard normal; with degrees of freedom of σ or u₀ given, t(ν) by
     Welch–Satterthwaite. Never with s in place of σ.
     """
-    scatter_u = sigma / sqrt(sample.n)
-    u = hypot(scatter_u, further.u)
-    df = effective_df([(scatter_u, sigma_df), (further.target_u, further.target_df), (further.own_u, inf)])
-    return _mean_test("z", sample, sample.difference / u, u, df, alternative, alpha)
+    return _test("z", sample, z_figures(sample, sigma, sigma_df, alternative, alpha, further), alternative, alpha)
 
 
 def students_t(sample: Sample, alternative: str, alpha: float, further: Further = NONE_FURTHER) -> Test:
@@ -116,12 +202,7 @@ def students_t(sample: Sample, alternative: str, alpha: float, further: Further 
     df = n − 1, or with further components the effective degrees of freedom (Welch–Satterthwaite, GUM G.4).
     Source: Student 1908; JCGM 100:2008.
     """
-    if further.u == 0:
-        return _mean_test("t", sample, sample.ratio, sample.standard_error, sample.n - 1, alternative, alpha)
-    scatter_u = sample.standard_error
-    u = hypot(scatter_u, further.u)
-    parts = [(scatter_u, sample.n - 1.0), (further.target_u, further.target_df), (further.own_u, inf)]
-    return _mean_test("t", sample, sample.difference / u, u, effective_df(parts), alternative, alpha)
+    return _test("t", sample, t_figures(sample, alternative, alpha, further), alternative, alpha)
 
 
 def guarded_t(sample: Sample, alternative: str, alpha: float) -> Test:
@@ -130,39 +211,16 @@ def guarded_t(sample: Sample, alternative: str, alpha: float) -> Test:
     Use it where readings are skewed; it needs n ≥ 3 and s > 0, and takes no further uncertainty in.
     Source: Hall 1992 (from memory) for the cubic; the rule and its behaviour in DEVELOPERS.md.
     """
-    a, df = sample.skewness / (3 * sqrt(sample.n)), sample.n - 1
-    tails = guarded_tails(sample.ratio, a, df)
-    critical = guarded_critical(a, df, tail(alternative, alpha))
-    return _assemble(
-        "guarded_t", sample, sample.ratio, sample.standard_error, df, tails, critical, alternative, alpha, a
-    )
+    return _test("guarded_t", sample, guarded_figures(sample, alternative, alpha), alternative, alpha)
 
 
-def _mean_test(
-    name: str, sample: Sample, statistic: float, u: float, df: float, alternative: str, alpha: float
-) -> Test:
-    tails = t_tails(statistic, df) if isfinite(df) else (normal_upper(statistic), normal_upper(-statistic))
-    q = float(t_critical(tail(alternative, alpha), df))
-    return _assemble(name, sample, statistic, u, df, tails, (-q, q), alternative, alpha)
-
-
-def _assemble(
-    name: str,
-    sample: Sample,
-    statistic: float,
-    u: float,
-    df: float,
-    tails: tuple[Any, Any],
-    critical: tuple[Any, Any],
-    alternative: str,
-    alpha: float,
-    skew_term: float | None = None,
-) -> Test:
-    p_greater, p_less = map(float, tails)
+def _test(name: str, sample: Sample, found: Figures, alternative: str, alpha: float) -> Test:
+    """Return the test of one sample."""
+    p_greater, p_less = float(found.p_greater), float(found.p_less)
     p = float(p_value(alternative, p_greater, p_less))
-    lower, upper = map(float, critical)
-    low, high = one_sided(alternative, sample.mean - upper * u, sample.mean - lower * u)
     below, above = rejecting_sides(alternative)
+    low, high = map(_or_none, found.ends(sample.mean, alternative))
+    from_target = map(_or_none, found.ends(sample.difference, alternative))
     return Test(
         procedure=name,
         parameter="mean",
@@ -170,20 +228,28 @@ def _assemble(
         significance=alpha,
         n=sample.n,
         n_used=sample.n,
-        statistic=statistic,
-        df=df if isfinite(df) else None,
+        statistic=float(found.statistic),
+        df=_degrees(found.df),
         p_value=p,
         p_greater=p_greater,
         p_less=p_less,
-        critical=(lower if below else None, upper if above else None),
+        critical=(float(found.lower) if below else None, float(found.upper) if above else None),
         reject=p < alpha,
         estimate=sample.mean,
-        standard_error=u,
+        standard_error=float(found.u),
         interval=Interval(low, high, 1 - alpha, 1 - alpha),
-        offsets=(
-            sample.difference,
-            *one_sided(alternative, sample.difference - upper * u, sample.difference - lower * u),
-        ),
+        offsets=(sample.difference, *from_target),
         smallest_p=0.0,
-        skew_term=skew_term,
+        skew_term=None if found.skew_term is None else float(found.skew_term),
     )
+
+
+def _or_none(end: Any) -> float | None:
+    return None if end is None else float(end)
+
+
+def _degrees(df: Any) -> float | None:
+    """A whole number of degrees of freedom stays one; infinite ones are none."""
+    if isinstance(df, int):
+        return df
+    return float(df) if isfinite(df) else None
