@@ -78,6 +78,12 @@ class WorkingStates(Database):
         with self._reading() as connection:
             return connection.execute(query).scalar()
 
+    def find_file(self, digest: str) -> bytes | None:
+        """Return the bytes of a file that any page of this bench still keeps, by its SHA-256; None where none does."""
+        query = select(WORKING_FILE.c.content).where(WORKING_FILE.c.digest == digest).limit(1)
+        with self._reading() as connection:
+            return connection.execute(query).scalar()
+
     def latest_key(self) -> str | None:
         """Return the key of the state that was kept last, None where nothing is kept."""
         query = select(WORKING_STATE.c.notebook).order_by(WORKING_STATE.c.saved.desc()).limit(1)

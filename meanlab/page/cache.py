@@ -14,7 +14,7 @@ from meanlab.core.question import Question
 from meanlab.core.readings import ReadingSet
 from meanlab.core.results import Analysis, Plan
 from meanlab.intake import Column, Intake
-from meanlab.notebook import WorkingStates
+from meanlab.notebook import Notebook, WorkingStates
 from meanlab.notebook.place import database_url
 from meanlab.records.panel import panel_png
 from meanlab.wording import PanelTexts, panel_texts
@@ -63,6 +63,16 @@ def working_states() -> WorkingStates:
 @st.cache_resource(show_spinner=False, max_entries=4)
 def _states_at(url: str) -> WorkingStates:
     return WorkingStates(url)
+
+
+def notebook() -> Notebook:
+    """Return the notebook of this bench; raises NotebookComplaint where it cannot be opened."""
+    return _notebook_at(database_url())
+
+
+@st.cache_resource(show_spinner=False, max_entries=4)
+def _notebook_at(url: str) -> Notebook:
+    return Notebook(url)
 
 
 @lru_cache(maxsize=16)

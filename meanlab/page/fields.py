@@ -43,6 +43,12 @@ FIELDS: Mapping[str, Any] = MappingProxyType(
         "parameter": "mean",
         "resolution": "",
         "fixed_before": False,
+        # what is written about the result
+        "written_title": "",
+        "written_by": "",
+        "written_note": "",
+        "written_instrument": "",
+        "written_method": "",
         # below the panel
         "part": "What was read",
         "plan_kind": "a difference that matters",
@@ -66,3 +72,16 @@ READINGS_FIELDS = (
     "labels_name_preparations",
 )
 PICKS = READINGS_FIELDS[1:]
+WRITTEN = ("title", "by", "note", "instrument", "method")  # each with a field written_…
+# Fields that a new page begins with as they were at the last entry, by the name of the bench default.
+BENCH_FIELDS: Mapping[str, str] = MappingProxyType(
+    {
+        "unit": "unit",
+        "significance": "significance",
+        "by": "written_by",
+        "instrument": "written_instrument",
+        "method": "written_method",
+    }
+)
+# Fields that no sample set and no opened entry changes.
+STAYING = ("part", "written_by", "written_instrument", "written_method")

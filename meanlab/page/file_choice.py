@@ -24,7 +24,7 @@ def source() -> cache.Source | None:
         return None
     name = None if now.file is None else now.file["name"]
     by_preparation = fields["preparation"] is not None or fields["labels_name_preparations"]
-    return cache.Source(content, name, _selection(fields), by_preparation)
+    return cache.Source(content, name, selection_of(fields), by_preparation)
 
 
 def draw() -> None:
@@ -118,7 +118,8 @@ def _forget_unless(key: str, known: Any) -> None:
         state.put(key, None)
 
 
-def _selection(fields: Mapping[str, Any]) -> tuple[tuple[str, Any], ...]:
+def selection_of(fields: Mapping[str, Any]) -> tuple[tuple[str, Any], ...]:
+    """Return what the fields choose in a file or a pasted table."""
     chosen: dict[str, Any] = {}
     if fields["decimal_sign"] in SIGNS:
         chosen["decimal"] = SIGNS[fields["decimal_sign"]]

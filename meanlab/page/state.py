@@ -5,15 +5,28 @@ The only file that says session_state. Widgets take their value from here: their
 
 from collections.abc import Mapping
 from copy import deepcopy
+from datetime import UTC, datetime
 from hashlib import sha256
 from typing import Any
 
 import streamlit as st
 
 from meanlab.core.complaints import NotebookComplaint
+from meanlab.notebook import Entry
 from meanlab.page import cache
-from meanlab.page.fields import FIELDS, PICKS, READINGS_FIELDS
-from meanlab.page.working import Working, alike, digests, empty, nothing_typed, replaced
+from meanlab.page.fields import BENCH_FIELDS, FIELDS, PICKS, READINGS_FIELDS, STAYING
+from meanlab.page.question_times import LEFT_OUT, READINGS, from_words
+from meanlab.page.working import (
+    Reopened,
+    Working,
+    alike,
+    digests,
+    empty,
+    note_times,
+    nothing_typed,
+    replaced,
+    times_stand,
+)
 
 MOST_COMPARED = 1_000  # entries looked at to tell a further look from other readings
 MOST_KEPT_CHARACTERS = 10_000_000
@@ -33,6 +46,7 @@ def begin() -> Working:
             _take_in(now, name, st.session_state[name])
         else:
             st.session_state[name] = now.fields[name]
+    note_times(now, datetime.now(UTC))
     keep()
     return now
 
@@ -60,6 +74,13 @@ def note(key: str, given: Any) -> None:
     st.session_state[key] = given
 
 
+def taken(key: str) -> bool:
+    """Tell whether a callback asked for something, and forget that it did."""
+    asked_for = bool(st.session_state.get(key))
+    st.session_state[key] = False
+    return asked_for
+
+
 def file_bytes() -> bytes | None:
     """Return the content of the file in use, None where the readings are typed."""
     file = working().file
@@ -69,12 +90,10 @@ def file_bytes() -> bytes | None:
 def use_file(name: str, content: bytes) -> None:
     """Take the readings from a file from now on."""
     _set_aside("a file was opened")
-    digest = sha256(content).hexdigest()
-    st.session_state[_FILES][digest] = content
     for pick in PICKS:
         put(pick, deepcopy(FIELDS[pick]))
     put("readings_text", "")
-    working().file = {"name": name, "digest": digest}
+    _take_file(name, content)
     _forget_looks()
 
 
@@ -94,12 +113,33 @@ def open_set(name: str, fields: Mapping[str, Any], file: tuple[str, bytes] | Non
     _set_aside(f'the sample set "{name}" was opened', with_question=True)
     _empty_readings()
     for key, default in FIELDS.items():
-        if key != "part":
+        if key not in STAYING:
             put(key, deepcopy(fields.get(key, default)))
     if file is not None:
-        digest = sha256(file[1]).hexdigest()
-        st.session_state[_FILES][digest] = file[1]
-        working().file = {"name": file[0], "digest": digest}
+        _take_file(*file)
+
+
+def open_entry(entry: Entry, again: Reopened) -> None:
+    """Bring readings and question of an entry back in place of everything on the page; nothing is said to be new."""
+    open_set("", again.fields, again.file)
+    now = working()
+    if now.previous is not None:
+        now.previous["cause"] = f"entry {entry.number} was opened"
+    now.left_out = {place: dict(said) for place, said in again.left_out.items()}
+    marks = [_mark(text) for text in again.entries[:MOST_COMPARED]]
+    now.first, now.looks = {"parts": dict(again.first_parts), "entries": marks}, entry.analysis.question.look
+    now.notice = again.notice
+    times_stand(now, from_words(entry.set_times))
+
+
+def saved_as(entry: Entry) -> None:
+    """Note as which entry the result was saved; title and note are written, and the fields are free again."""
+    now = working()
+    fingerprint = entry.analysis.provenance.fingerprint
+    now.entry = {"number": entry.number, "key": entry.key, "time": entry.time, "fingerprint": fingerprint}
+    for name in ("written_title", "written_note"):
+        now.fields[name] = ""
+        st.session_state[name] = ""
 
 
 def put_back() -> None:
@@ -114,6 +154,10 @@ def put_back() -> None:
             put(name, given)
     now.file, now.left_out = before["file"], before["left_out"]
     now.first, now.looks = before.get("first"), before.get("looks", 1)
+    times = before.get("set_times", {})
+    if not before["with_question"]:
+        times = now.set_times | {name: times[name] for name in (READINGS, LEFT_OUT) if name in times}
+    times_stand(now, times)
 
 
 def leave_out(place: int, text: str, cause: str) -> None:
@@ -130,9 +174,9 @@ def start_afresh() -> None:
     """Begin an empty page under an address of its own; the one before stays under its address."""
     st.query_params.pop(ADDRESS, None)
     st.session_state[_FILES] = {}
-    st.session_state[_WORKING] = empty()
-    for name, default in FIELDS.items():
-        put(name, deepcopy(default))
+    now = st.session_state[_WORKING] = empty(_bench())
+    for name in FIELDS:
+        put(name, now.fields[name])
 
 
 def saw_result(parts: Mapping[str, Any], entries: tuple[str, ...]) -> Working:
@@ -141,7 +185,7 @@ def saw_result(parts: Mapping[str, Any], entries: tuple[str, ...]) -> Working:
     Other readings begin a new count; a correction does not; readings added to the ones before are a further look.
     """
     now = working()
-    marks = [sha256(entry.encode()).hexdigest()[:12] for entry in entries]
+    marks = [_mark(entry) for entry in entries]
     before = None if now.first is None else now.first["entries"]
     if before is None or not alike(before, marks):
         now.first, now.looks = {"parts": dict(parts), "entries": marks}, 1
@@ -168,6 +212,8 @@ def keep() -> None:
         "previous": now.previous,
         "first": now.first,
         "looks": now.looks,
+        "set_times": now.set_times,
+        "entry": now.entry,
     }
     mark = sha256(repr(content).encode()).hexdigest()
     if mark == now.last_kept or (not now.key and nothing_typed(now)):
@@ -188,7 +234,7 @@ def keep() -> None:
 
 def _brought_back() -> Working:
     key = st.query_params.get(ADDRESS, "")
-    now = empty()
+    now = empty() if key else empty(_bench())
     if not key or not cache.kept_on_this_address():
         return now
     try:
@@ -196,6 +242,7 @@ def _brought_back() -> Working:
         kept = states.load(key)
         if kept is None:
             st.query_params.pop(ADDRESS, None)
+            now = empty(_bench())
             now.notice = "Nothing is kept under this address; this is an empty page."
             return now
         now.fields |= {name: given for name, given in kept.state["fields"].items() if name in FIELDS}
@@ -203,6 +250,11 @@ def _brought_back() -> Working:
         now.previous = kept.state["previous"]
         now.first, now.looks = kept.state.get("first"), kept.state.get("looks", 1)
         now.key, now.saved = key, kept.saved
+        now.entry = kept.state.get("entry")
+        if "set_times" in kept.state:
+            times_stand(now, kept.state["set_times"])
+        else:
+            note_times(now, kept.saved)
         for digest in digests(now):
             content = states.load_file(key, digest)
             if content is not None:
@@ -233,13 +285,14 @@ def _take_in(now: Working, name: str, given: Any) -> None:
 
 def _set_aside(cause: str, with_question: bool = False) -> None:
     now = working()
+    now.notice = ""
     if now.fields["readings_text"].strip() or now.file is not None:
         now.previous = _snapshot(cause, with_question)
 
 
 def _snapshot(cause: str, with_question: bool) -> dict[str, Any]:
     now = working()
-    names = [name for name in FIELDS if name != "part"] if with_question else READINGS_FIELDS
+    names = [name for name in FIELDS if name not in STAYING] if with_question else READINGS_FIELDS
     return {
         "cause": cause,
         "with_question": with_question,
@@ -248,6 +301,7 @@ def _snapshot(cause: str, with_question: bool) -> dict[str, Any]:
         "left_out": dict(now.left_out),
         "first": now.first,
         "looks": now.looks,
+        "set_times": dict(now.set_times),
     }
 
 
@@ -257,6 +311,27 @@ def _empty_readings() -> None:
     now = working()
     now.file, now.left_out = None, {}
     _forget_looks()
+
+
+def _take_file(name: str, content: bytes) -> None:
+    digest = sha256(content).hexdigest()
+    st.session_state[_FILES][digest] = content
+    working().file = {"name": name, "digest": digest}
+
+
+def _bench() -> dict[str, str]:
+    """Return the fields that a new page begins with as they were at the last entry."""
+    if not cache.kept_on_this_address():
+        return {}
+    try:
+        kept = cache.notebook().bench_defaults()
+    except NotebookComplaint:  # said where the page is to be kept
+        return {}
+    return {field: kept[name] for name, field in BENCH_FIELDS.items() if kept[name]}
+
+
+def _mark(text: str) -> str:
+    return sha256(text.encode("utf-8", "surrogatepass")).hexdigest()[:12]
 
 
 def _forget_looks() -> None:

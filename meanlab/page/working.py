@@ -6,6 +6,7 @@ from dataclasses import dataclass, field
 from datetime import datetime
 from typing import Any
 
+from meanlab.page import question_times
 from meanlab.page.fields import FIELDS
 
 
@@ -18,6 +19,10 @@ class Working:
     previous  what a clear, a replace or an opened sample set took away, None where nothing was
     first     the parts of the question as they stood when these readings first had a result
     looks     how many results these readings had while they grew
+    set_times when each part of the question was set (UTC, ISO 8601)
+    looked_at what stood in each of these parts when the page was last looked at
+    entry     number, key, time and fingerprint of the entry as which the result was saved, None where it was not
+    begun     the fields as the page began
     """
 
     fields: dict[str, Any]
@@ -26,6 +31,10 @@ class Working:
     previous: dict[str, Any] | None = None
     first: dict[str, Any] | None = None
     looks: int = 1
+    set_times: dict[str, str] = field(default_factory=dict)
+    looked_at: dict[str, Any] = field(default_factory=dict)
+    entry: dict[str, Any] | None = None
+    begun: dict[str, Any] = field(default_factory=dict)
     key: str = ""
     saved: datetime | None = None
     trouble: str = ""
@@ -38,14 +47,48 @@ class Working:
         return {} if self.first is None else self.first["parts"]
 
 
-def empty() -> Working:
-    """Return a page on which nothing was typed."""
-    return Working(fields=deepcopy(dict(FIELDS)))
+@dataclass(frozen=True)
+class Reopened:
+    """What the page shows of an entry that is opened again.
+
+    fields       readings and question, by the names of the fields
+    file         name and bytes where the readings came from a file that is still at hand
+    left_out     {place of the entry: {"text": as typed, "cause": why}}
+    entries      the text of every entry that is read
+    first_parts  the parts of the question at the first result; those set afterwards stay set afterwards
+    notice       what the technician should know; "" for nothing
+    """
+
+    fields: Mapping[str, Any]
+    file: tuple[str, bytes] | None
+    left_out: Mapping[str, Mapping[str, str]]
+    entries: tuple[str, ...]
+    first_parts: Mapping[str, Any] = field(default_factory=dict)
+    notice: str = ""
+
+
+def empty(bench: Mapping[str, str] | None = None) -> Working:
+    """Return a page on which nothing was typed; ``bench`` holds fields that begin otherwise than by default."""
+    fields = deepcopy(dict(FIELDS)) | dict(bench or {})
+    return Working(fields=fields, begun=deepcopy(fields))
+
+
+def note_times(now: Working, moment: datetime) -> None:
+    """Note when each part of the question was set."""
+    parts = question_times.parts_of(now.fields, now.file, now.left_out)
+    now.set_times = question_times.noted(now.set_times, now.looked_at, parts, moment.isoformat(timespec="seconds"))
+    now.looked_at = parts
+
+
+def times_stand(now: Working, times: Mapping[str, str]) -> None:
+    """Take the times of parts that were brought back, not set anew."""
+    now.set_times = dict(times)
+    now.looked_at = question_times.parts_of(now.fields, now.file, now.left_out)
 
 
 def nothing_typed(now: Working) -> bool:
     """Tell whether a page is as it was when it was opened."""
-    return now.fields == dict(FIELDS) and now.file is None and now.previous is None
+    return now.fields == now.begun and now.file is None and now.previous is None
 
 
 def digests(now: Working) -> tuple[str, ...]:
