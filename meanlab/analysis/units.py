@@ -9,6 +9,7 @@ from typing import Any
 
 import numpy as np
 
+from meanlab.checks.facts import OwnPlaces
 from meanlab.core.complaints import ReadingsComplaint
 from meanlab.core.numbers import common_exponent, quotient, scaled
 from meanlab.core.question import Question
@@ -35,7 +36,7 @@ class Units:
     spans: Spans
     sample: Sample | None
     limit: int | None
-    places: tuple[tuple[int, ...], ...]
+    places: Sequence[tuple[int, ...]]
     resolution: float | None
     preparations: tuple[Preparation, ...] = ()
     s_within: float | None = None
@@ -95,15 +96,15 @@ def units_of(readings: ReadingSet, question: Question) -> Units:
         spans=spans,
         sample=Sample(spans.lows, scaled_target, exponent, divisor) if plain else None,
         limit=None if limit is None else scaled(limit, exponent) * divisor,
-        places=tuple(group.places for group in groups) or tuple(zip(_entry_places(kept), strict=True)),
+        places=tuple(group.places for group in groups) or OwnPlaces(_entry_places(kept)),
         resolution=None if step is None else step / fewest,
         preparations=lines,
         s_within=_pooled(lines) if plain else None,
     )
 
 
-def _entry_places(kept: ReadingSet) -> list[int]:
-    return sorted([*kept.positions, *(entry.index for entry in kept.censored)]) if kept.censored else [*kept.positions]
+def _entry_places(kept: ReadingSet) -> Sequence[int]:
+    return sorted([*kept.positions, *(entry.index for entry in kept.censored)]) if kept.censored else kept.positions
 
 
 def _groups(kept: ReadingSet, whole: list[int]) -> list[_Group]:

@@ -1,14 +1,28 @@
 """What the checks are told beside the readings themselves."""
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from functools import cached_property
+from typing import Any
 
 from meanlab.core.question import Question
 from meanlab.wording.names import counted
 from meanlab.wording.numbers import decimal_text, level_text, number_text, p_text, significant, unit_text
 
 CHECK_LEVEL = 0.05
+
+
+@dataclass(frozen=True)
+class OwnPlaces(Sequence[tuple[int, ...]]):
+    """The places of units that are one reading each, made when asked for: a million of them would take a while."""
+
+    positions: Sequence[int]
+
+    def __len__(self) -> int:
+        return len(self.positions)
+
+    def __getitem__(self, unit: Any) -> Any:
+        return (self.positions[unit],)
 
 
 @dataclass(frozen=True)
@@ -27,7 +41,7 @@ class Facts:
     n: int
     s: float | None
     resolution: float | None
-    places: tuple[tuple[int, ...], ...]
+    places: Sequence[tuple[int, ...]]
     decimal_sign: str
     unit: str
     smallest_p: float | None
@@ -45,7 +59,7 @@ class Facts:
     @cached_property
     def nested(self) -> bool:
         """Whether any unit is a preparation of several readings."""
-        return sum(map(len, self.places)) > len(self.places)
+        return not isinstance(self.places, OwnPlaces) and any(len(places) > 1 for places in self.places)
 
     @property
     def noun(self) -> str:

@@ -93,6 +93,8 @@ def finest_places(values: Sequence[Decimal]) -> int:
             break
         first = left[0]
         found.append(places(first))
+        if all(map(first.same_quantum, left)):
+            return max(found)
         left = [value for value in left if not first.same_quantum(value)]
     return max([*found, *map(places, left)], default=0)
 

@@ -21,6 +21,10 @@ def doubled_midranks(differences: np.ndarray) -> np.ndarray:
     [2, 5, 5, 8]
     """
     sizes = np.abs(differences)
+    if sizes.dtype != object and int(sizes.max()) < len(sizes):  # many on a short scale are counted, not sorted
+        counts = np.bincount(sizes)
+        up_to = np.cumsum(counts)
+        return (2 * up_to - counts + 1)[sizes]
     order = np.argsort(sizes, kind="stable")
     ordered = sizes[order]
     starts = np.flatnonzero(np.concatenate(([True], ordered[1:] != ordered[:-1])))
