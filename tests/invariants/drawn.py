@@ -17,8 +17,8 @@ MIRROR = {"two-sided": "two-sided", "greater": "less", "less": "greater"}
 
 # the same examples at every run; a larger number in the environment looks for others, at random
 EXAMPLES = int(os.environ.get("MEANLAB_EXAMPLES", "0"))
-STEADY = settings(max_examples=EXAMPLES or 100, deadline=None, derandomize=not EXAMPLES, database=None)
-FEWER = settings(STEADY, max_examples=EXAMPLES or 50)
+STEADY = settings(max_examples=EXAMPLES or 80, deadline=None, derandomize=not EXAMPLES, database=None)
+FEWER = settings(STEADY, max_examples=EXAMPLES or 40)
 
 
 @dataclass(frozen=True)

@@ -108,17 +108,22 @@ def test_several_sample_columns_and_a_column_of_targets():
     assert_row_is(found.iloc[1], analyse(["4.0", "4.1", "4.5"], Question("4.2")))
 
 
-def test_a_complaint_names_the_sample():
-    """What cannot be read, or has no target, is complained of with the sample it belongs to."""
-    table = pd.DataFrame({"batch": ["A", "A", "B", "B"], "x": ["1", "2", "3", "4,5,6"]})
-    with pytest.raises(Complaint, match='Sample "B": Reading 2: "4,5,6" is not a number'):
-        analyse_many(table, "x", "batch", Question("1"))
-    with pytest.raises(Complaint, match='Sample "B": it has no target'):
-        analyse_many(table.assign(x=1.0), "x", "batch", Question("1"), {"A": 1})
-    with pytest.raises(Complaint, match='Sample "B": it has 2 targets in column "aim"; it needs one'):
-        analyse_many(table.assign(x=1.0, aim=[1, None, 2, 3]), "x", "batch", Question("1"), "aim")
-    with pytest.raises(Complaint, match='Sample "A": a reading has no preparation label'):
-        analyse_many(table.assign(x=1.0, prep=["a", None, "c", "d"]), "x", "batch", Question("1"), preparation="prep")
+def test_a_sample_that_cannot_be_tested_keeps_its_row_with_the_reason():
+    """What cannot be read, a sample without a target or without a reading: the others are judged all the same."""
+    table = pd.DataFrame({"batch": ["A", "A", "B", "B", "C", "D", "D"], "x": ["1", "2", "3", "4,5,6", "", "7", "7"]})
+    found = analyse_many(table, "x", "batch", Question("1")).set_index("batch")
+    assert found["verdict"].tolist() == ["cannot tell", *["not testable"] * 3]
+    assert found.loc["A", "flags"] == ""
+    assert '"4,5,6" could not be read' in found.loc["B", "flags"]
+    assert found.loc["C", "flags"] == "1 missing; no reading"
+    assert found.loc["D", "flags"] == "the 2 readings are identical: they do not scatter at their resolution"
+    found = analyse_many(table[:2], "x", "batch", Question("1"), {"B": 1})
+    assert found["flags"].tolist() == ["it has no target; give each sample its own."]
+
+
+def test_columns_that_are_not_there_are_complained_of():
+    """A column that the table does not have, or has twice, ends in a complaint with what there is."""
+    table = pd.DataFrame({"batch": ["A", "A"], "x": ["1", "2"]})
     with pytest.raises(Complaint, match='no column "lot" in the table; it has batch, x'):
         analyse_many(table, "x", "lot", Question("1"))
     doubled = pd.DataFrame([["A", 1.0, 2.0]], columns=["batch", "x", "x"])
@@ -151,11 +156,11 @@ def test_samples_without_a_label_are_one_sample():
 
 
 def test_progress_is_told_and_no_row_gives_no_result():
-    """``progress`` hears (done, all) after each sample; an empty table gives an empty result with all columns."""
+    """``progress`` hears (done, all) up to the last sample; an empty table gives an empty result with all columns."""
     heard = []
     table = pd.DataFrame({"batch": list("aabb"), "x": [1.0, 2.0, 3.0, 4.0]})
     analyse_many(table, "x", "batch", Question("2"), progress=lambda done, total: heard.append((done, total)))
-    assert heard == [(1, 2), (2, 2)]
+    assert heard[-1] == (2, 2)
     empty = analyse_many(table[:0], "x", "batch", Question("2"))
     assert empty.columns.tolist() == ["batch", *COLUMNS]
     assert len(empty) == 0
