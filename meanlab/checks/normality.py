@@ -52,7 +52,7 @@ def shapiro_wilk(x: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
     weights = shapiro_wilk_weights(n)
     centred = np.sort(x, axis=1) - x.mean(axis=1, keepdims=True)
     length = np.sqrt(np.einsum("ij,ij->i", centred, centred))
-    along = (centred / length[:, np.newaxis]) @ weights
+    along = np.einsum("ij,j->i", centred / length[:, np.newaxis], weights)  # alike for one sample and many
     lost = np.clip((1 - along) * (1 + along), 0.0, None)
     return 1 - lost, _shapiro_wilk_p(lost, n)
 
