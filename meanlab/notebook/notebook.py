@@ -94,9 +94,16 @@ class Notebook(Database):
             length, last = extent_of(connection)
         return EntryList(self._ask, length, last)
 
-    def search(self, text: str) -> list[Listed]:
-        """Return the entries in whose title, names, note, material, sentence, … every word of a text is found."""
-        return [listed(row) for row in self._ask(matching(text))]
+    def search(self, text: str, latest: int | None = None) -> list[Listed]:
+        """Return the entries in whose title, names, note, material, sentence, … every word of a text is found.
+
+        They stand in order, the oldest first; with ``latest`` at most so many, the last ones.
+        """
+        query = matching(text)
+        if latest is None:
+            return [listed(row) for row in self._ask(query)]
+        last = query.order_by(None).order_by(ENTRY.c.number.desc()).limit(latest)
+        return [listed(row) for row in reversed(self._ask(last))]
 
     def entry(self, key: str) -> Entry:
         """Return the entry of a key; raises NotebookComplaint where there is none or it cannot be read."""

@@ -28,3 +28,15 @@ def saved_text(saved: datetime, zone: tzinfo, now: datetime) -> str:
     local = saved.astimezone(zone)
     day = "" if local.date() == now.astimezone(zone).date() else f"{local:%Y-%m-%d} "
     return f"Saved {day}{local:%H:%M}"
+
+
+def moment_text(time: str, zone: tzinfo) -> str:
+    """Return a time (ISO 8601) as the clock of a zone shows it; a text that is none stays as it is.
+
+    >>> moment_text("2026-12-01T13:02:11.5+00:00", timezone(timedelta(hours=1)))
+    '2026-12-01 14:02'
+    """
+    try:
+        return f"{datetime.fromisoformat(time).astimezone(zone):%Y-%m-%d %H:%M}"
+    except (ValueError, OverflowError):
+        return time

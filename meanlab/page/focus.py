@@ -1,6 +1,8 @@
-"""The box has the focus at the start: a paste needs no click."""
+"""Where the page looks: the box has the focus at the start; the lower part comes into view when it is called for."""
 
 import streamlit as st
+
+from meanlab.page import state
 
 _JS = """
 export default function (component) {
@@ -9,16 +11,26 @@ export default function (component) {
     box.focus();
   }
   window.meanlabFocused = true;
+  if (component.data.jumps > (window.meanlabJumps ?? 0)) {
+    document.querySelector(".st-key-part")?.scrollIntoView({ block: "start" });
+  }
+  window.meanlabJumps = component.data.jumps;
 }
 """
 _HTML = """
 <span></span>
 """
+_JUMPS = "jumps"
 
 _focus = st.components.v2.component("meanlab_focus", html=_HTML, js=_JS)
 
 
+def jump() -> None:
+    """Bring the part below the panel into view, in a callback."""
+    state.note(_JUMPS, (state.widget(_JUMPS) or 0) + 1)
+
+
 def draw() -> None:
-    """Put the focus into the readings box of a page that was just opened and is empty."""
+    """Put the focus into the readings box of a page that was just opened and is empty; go where a callback asked to."""
     with st.container(key="focus"):
-        _focus(key="focus_once")
+        _focus(key="focus_once", data={"jumps": state.widget(_JUMPS) or 0})

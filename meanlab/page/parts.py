@@ -10,6 +10,7 @@ from meanlab.page import (
     checks_part,
     enough_part,
     entries_part,
+    notebook_part,
     others_part,
     state,
     uncertainty_part,
@@ -25,6 +26,7 @@ PARTS: Mapping[str, Callable[[Outcome | None], None]] = MappingProxyType(
         "Enough readings?": enough_part.draw,
         "Uncertainty": uncertainty_part.draw,
         "Agreement": agreement_part.draw,
+        "Notebook": notebook_part.draw,
     }
 )
 

@@ -73,6 +73,8 @@ def _save(found: Outcome) -> None:
     try:
         state.saved_as(_added(found))
         state.note(OPENER, False)
+        for field in ("written_title", "written_note"):
+            state.put(field, "")
         remember_bench()
     except NotebookComplaint as complaint:
         state.note(TROUBLE, str(complaint))

@@ -87,6 +87,12 @@ def file_bytes() -> bytes | None:
     return None if file is None else st.session_state[_FILES].get(file["digest"])
 
 
+def find_file(digest: str) -> bytes | None:
+    """Return a file that this page, or any page of the bench, still keeps; by its SHA-256."""
+    here: bytes | None = st.session_state[_FILES].get(digest)
+    return cache.working_states().find_file(digest) if here is None else here
+
+
 def use_file(name: str, content: bytes) -> None:
     """Take the readings from a file from now on."""
     _set_aside("a file was opened")
@@ -133,13 +139,10 @@ def open_entry(entry: Entry, again: Reopened) -> None:
 
 
 def saved_as(entry: Entry) -> None:
-    """Note as which entry the result was saved; title and note are written, and the fields are free again."""
+    """Note as which entry the result of the page was saved."""
     now = working()
     fingerprint = entry.analysis.provenance.fingerprint
     now.entry = {"number": entry.number, "key": entry.key, "time": entry.time, "fingerprint": fingerprint}
-    for name in ("written_title", "written_note"):
-        now.fields[name] = ""
-        st.session_state[name] = ""
 
 
 def put_back() -> None:
