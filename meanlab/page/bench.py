@@ -18,7 +18,7 @@ def draw() -> None:
 
 def _show_entries() -> None:
     state.put("part", "Notebook")
-    focus.jump()
+    focus.jump("part")
 
 
 def _where() -> str:

@@ -43,6 +43,7 @@ th { text-align: left; font-weight: 600; position: sticky; top: 0; background: v
 th, td { padding: 4px 16px 4px 0; vertical-align: top; }
 td { overflow-wrap: anywhere; }
 td:nth-child(2), td:nth-child(5) { white-space: nowrap; }
+td:nth-child(3) { min-width: 180px; }
 tbody tr { border-top: 1px solid var(--st-border-color); cursor: pointer; }
 tbody tr:hover { background: var(--st-secondary-background-color); }
 button {

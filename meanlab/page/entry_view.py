@@ -8,7 +8,7 @@ import streamlit as st
 from meanlab.core.complaints import Complaint, NotebookComplaint
 from meanlab.notebook import Changed, Entry, Notebook, recompute
 from meanlab.notebook.entry import digest_of
-from meanlab.page import cache, clock, record_files, reopening, saving, state, tables
+from meanlab.page import cache, clock, focus, record_files, reopening, saving, state, tables
 from meanlab.page.cache import Outcome
 from meanlab.page.guard import say
 from meanlab.page.record_files import Recorded
@@ -41,9 +41,9 @@ def draw(book: Notebook, key: str, found: Outcome | None, own: bool) -> None:
     tables.sentences([f"{texts.title}: {texts.verdict_word}.", texts.sentence])
     say(_comes_out(looked_at), "notice" if looked_at.changed or not looked_at.sealed else "status")
     with st.container(key="entry_row", horizontal=True, gap="small"):
-        st.button("Open", key="entry_open", on_click=_open, args=(entry,), help="Bring readings and question back.")
-        recorded = Recorded(entry.analysis, lambda: entry.source, lambda: entry.written)
-        record_files.draw(recorded, f"entry-{entry.number}", key="entry_files")
+        st.button("Open", key="entry_open", type="primary", on_click=_open, args=(entry,))
+        recorded = Recorded(entry.analysis, lambda: entry.source, entry.written)
+        record_files.draw(recorded, f"entry-{entry.number}", key="entry_file")
     if state.widget("entry_trouble"):
         say(state.widget("entry_trouble"))
     left, right = st.columns(2, gap="medium")
@@ -89,6 +89,7 @@ def _open(entry: Entry) -> None:
     state.note("entry_trouble", "")
     try:
         state.open_entry(entry, reopening.reopened(entry, state.find_file))
+        focus.jump("panel")
     except Complaint as complaint:
         state.note("entry_trouble", str(complaint))
 

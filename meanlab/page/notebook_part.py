@@ -14,6 +14,11 @@ CHOSEN, EARLIER = "entry_chosen", "entries_before"
 
 def draw(found: Outcome | None) -> None:
     """Draw the notebook; on an address that other computers reach, the reason why it is off."""
+    with st.container(key="notebook_part"):
+        _draw(found)
+
+
+def _draw(found: Outcome | None) -> None:
     if not cache.kept_on_this_address():
         tables.sentences([saving.OFF])
         return
@@ -30,6 +35,7 @@ def draw(found: Outcome | None) -> None:
         return
     _list(book)
     notebook_care.draw(book)
+    record_opened.ask()
     tables.sentences([_who_sees_it(book)])
 
 

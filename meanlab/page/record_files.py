@@ -21,7 +21,11 @@ class Recorded:
 
     analysis: Analysis
     source: Callable[[], Source]
-    written: Callable[[], Written]  # called while the opener is drawn, as what is written may change on the page
+    written: Written
+
+    def facts(self) -> tuple[Analysis, Source, Written]:
+        """Return all three."""
+        return self.analysis, self.source(), self.written
 
 
 @dataclass(frozen=True)
@@ -31,43 +35,28 @@ class Kind:
     label: str
     ending: str
     media_type: str
-    make: Callable[[Analysis, Callable[[], Source], Written], bytes | str]
+    make: Callable[[Recorded], bytes | str]
 
 
 KINDS = (
-    Kind("Picture (PNG)", ".png", "image/png", lambda found, _source, _written: records.panel_png(found)),
-    Kind("Picture (SVG)", ".svg", "image/svg+xml", lambda found, _source, _written: records.panel_svg(found)),
-    Kind("Picture (PDF)", ".pdf", "application/pdf", lambda found, _source, _written: records.panel_pdf(found)),
-    Kind(
-        "Written record (DOCX)",
-        ".docx",
-        DOCX,
-        lambda found, source, written: records.written_record(found, source(), written),
-    ),
-    Kind(
-        "Record file (JSON)",
-        SUFFIX,
-        "application/json",
-        lambda found, source, written: records.result_file(found, source(), written),
-    ),
-    Kind("Numbers (CSV)", ".csv", "text/csv", lambda found, source, _written: records.numbers_csv(found, source())),
+    Kind("PNG", ".png", "image/png", lambda one: records.panel_png(one.analysis)),
+    Kind("SVG", ".svg", "image/svg+xml", lambda one: records.panel_svg(one.analysis)),
+    Kind("PDF", ".pdf", "application/pdf", lambda one: records.panel_pdf(one.analysis)),
+    Kind("Written record (DOCX)", ".docx", DOCX, lambda one: records.written_record(*one.facts())),
+    Kind("Record file (JSON)", SUFFIX, "application/json", lambda one: records.result_file(*one.facts())),
+    Kind("Numbers (CSV)", ".csv", "text/csv", lambda one: records.numbers_csv(one.analysis, one.source())),
 )
 
 
 def draw(recorded: Recorded, stem: str, key: str) -> None:
-    """Draw the opener of the files of a result; ``stem`` begins their names."""
-    opener = st.popover("Files", key=key, on_change="rerun")
-    if not opener.open:
-        return
-    written = recorded.written()
-    with opener, st.container(key=f"{key}_list", gap="small"):
+    """Draw a button for each file of a result; ``stem`` begins their names."""
+    with st.container(key=f"{key}_row", horizontal=True, gap="small"):
         for kind in KINDS:
             st.download_button(
                 kind.label,
-                data=partial(kind.make, recorded.analysis, recorded.source, written),
+                data=partial(kind.make, recorded),
                 file_name=f"{stem}{kind.ending}",
                 mime=kind.media_type,
                 on_click="ignore",
                 key=f"{key}{kind.ending}",
-                width="stretch",
             )

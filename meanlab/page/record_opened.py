@@ -27,10 +27,9 @@ class OpenedRecord:
 
 
 def draw(found: Outcome | None) -> bool:
-    """Draw the record file that is open, and tell whether one is; else the place to open one."""
+    """Draw the record file that is open, and tell whether one is."""
     opened = state.widget(_OPENED)
     if opened is None:
-        _ask()
         return False
     st.button("Close the record file", key="record_close", on_click=_close)
     tables.heading(f"Record file {opened.name}, opened to read")
@@ -48,7 +47,8 @@ def draw(found: Outcome | None) -> bool:
     return True
 
 
-def _ask() -> None:
+def ask() -> None:
+    """Draw the place to open a record file."""
     trouble = state.widget(_TROUBLE)
     st.file_uploader("Open a record file", key="record_file", on_change=_open, max_upload_size=LARGEST)
     if trouble:

@@ -1,8 +1,9 @@
 """Save entry: the result with its readings, its question and what is written about it, kept in the notebook."""
 
 import html
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from datetime import UTC, datetime
+from types import MappingProxyType
 
 import streamlit as st
 
@@ -15,27 +16,50 @@ from meanlab.page.cache import Outcome
 from meanlab.page.fields import BENCH_FIELDS, WRITTEN
 from meanlab.page.guard import say
 
-OPENER = "save_entry"
-WANTED, TROUBLE = "save_entry_wanted", "save_entry_trouble"
+WANTED, TROUBLE, OPEN = "save_entry_wanted", "save_entry_trouble", "open_under_panel"
+HINTS: Mapping[str, str] = MappingProxyType(
+    {
+        "title": "e.g. control, morning run",
+        "by": "e.g. A. Keller",
+        "instrument": "",
+        "method": "",
+        "note": "",
+    }
+)
 OFF = (
     "The notebook is off: this page is open to other computers, and nothing is kept on the server. "
     "Take the record file (JSON) under Files, or start meanlab on this computer with python -m meanlab."
 )
 
 
-def draw(found: Outcome) -> None:
-    """Save where it was asked for; draw the opener with what can be written about the result."""
-    if state.taken(WANTED) and saved_entry(found) is None:
+def save_where_asked(found: Outcome | None) -> None:
+    """Save the result where a click asked for it; a result that is saved already is no second entry."""
+    if state.taken(WANTED) and found is not None and saved_entry(found) is None:
         _save(found)
-    opener = st.popover("Save entry", key=OPENER, on_change="rerun")
-    if opener.open:
-        with opener:
-            _within(found)
+
+
+def draw(found: Outcome) -> None:
+    """Draw what can be written about the result, and the button that saves it."""
+    if not cache.kept_on_this_address():
+        say(OFF, "status")
+        return
+    entry = saved_entry(found)
+    if entry is not None:
+        say(f"This result is entry {entry['number']}. Another title or note: amend it under Notebook, below.", "status")
+        return
+    widths = [26, 15, 15, 15, 22, 8]
+    places = st.columns(widths, gap="small", vertical_alignment="bottom")
+    for place, (name, hint) in zip(places, HINTS.items(), strict=False):
+        place.text_input(name.capitalize(), key=f"written_{name}", placeholder=hint)
+    places[-1].button("Save", key="save_now", type="primary", on_click=state.note, args=(WANTED, True))
+    trouble = state.widget(TROUBLE)
+    if trouble:
+        say(trouble)
 
 
 def say_saved(found: Outcome) -> None:
     """Draw as which entry the result was saved, and when."""
-    st.html(f'<span class="ml-saved" role="status">{html.escape(_said(found))}</span>')
+    st.html(f'<span class="ml-entry" role="status">{html.escape(_said(found))}</span>')
 
 
 def saved_entry(found: Outcome) -> dict[str, str] | None:
@@ -72,7 +96,7 @@ def _save(found: Outcome) -> None:
     state.note(TROUBLE, "")
     try:
         state.saved_as(_added(found))
-        state.note(OPENER, False)
+        state.note(OPEN, "")
         for field in ("written_title", "written_note"):
             state.put(field, "")
         remember_bench()
@@ -92,27 +116,6 @@ def _added(found: Outcome) -> Entry:
         method=written.method,
         set_times=written.set_times,
     )
-
-
-def _within(found: Outcome) -> None:
-    if not cache.kept_on_this_address():
-        say(OFF, "status")
-        return
-    entry = saved_entry(found)
-    if entry is not None:
-        say(f"This result is entry {entry['number']}. Another title or note: amend it under Notebook, below.", "status")
-        return
-    with st.container(key="entry_fields"):
-        st.text_input("Title", key="written_title", placeholder="e.g. control solution, morning run")
-        left, right = st.columns(2, gap="small")
-        left.text_input("By", key="written_by")
-        right.text_input("Instrument", key="written_instrument")
-        st.text_input("Method", key="written_method")
-        st.text_area("Note", key="written_note", height=70)
-        st.button("Save", key="save_entry_now", type="primary", on_click=state.note, args=(WANTED, True))
-        trouble = state.widget(TROUBLE)
-        if trouble:
-            say(trouble)
 
 
 def _said(found: Outcome) -> str:
