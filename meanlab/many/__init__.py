@@ -1,6 +1,6 @@
 """A table of samples → a table of results: samples of equal size are judged together, each as one analysis would be."""
 
-from collections.abc import Callable, Hashable, Mapping, Sequence
+from collections.abc import Callable, Hashable, Mapping
 from typing import Any
 
 import numpy as np

@@ -4,6 +4,7 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field, replace
 from datetime import date, time
 from decimal import Decimal
+from functools import cached_property
 from numbers import Number
 from typing import Any
 
@@ -18,7 +19,7 @@ from meanlab.intake.found import Special
 
 MOST_PLACES = 15
 MOST_DIGITS = 15  # that a double always carries
-PLAIN, MISSING, ODD = 0, 1, 2
+PLAIN, MISSING, LONG, ODD = 0, 1, 2, 3
 WIDE = 99
 
 
@@ -26,9 +27,9 @@ WIDE = 99
 class Cells:
     """The entries of a table, one after the other.
 
-    kind      PLAIN for a number of at most 15 significant digits, MISSING, or ODD for everything else
-    numbers   the plain numbers as doubles; what the others hold has no meaning
-    places    decimal places of each plain number
+    kind      PLAIN for a number of at most 15 significant digits, LONG for one of more, MISSING, or ODD for all else
+    numbers   the plain and long numbers as doubles; what the others hold has no meaning
+    places    decimal places of each plain number, WIDE for a long one
     computed  True for a stored number with more digits than an instrument shows
     given     the entries as they stand in the table
     special   what the texts are that are no plain numbers; ``texts`` the plain decimal text of those that are numbers
@@ -45,6 +46,10 @@ class Cells:
     texts: dict[int, str] = field(default_factory=dict)
     sign: str = "."
     remarks: tuple[str, ...] = ()
+
+    def decimal(self, place: int) -> Decimal:
+        """Return a plain or long number exactly."""
+        return Decimal(self.texts.get(place) or repr(float(self.numbers[place])))
 
     def reading(self, place: int) -> Decimal | Censored:
         """Return one entry that is not missing; raises ReadingsComplaint, with the entry, where it is no reading."""
@@ -83,13 +88,15 @@ def _stored(doubles: Sequence[np.ndarray], columns: Sequence[pd.Series]) -> Cell
     missing = np.isnan(numbers)
     places, whole = decimal_places(np.where(missing, 0.0, numbers))
     whole_numbers = all(pd.api.types.is_integer_dtype(column.dtype) for column in columns)
-    kind = np.where(missing, MISSING, np.where(places == WIDE, ODD, PLAIN)).astype(np.int8)
+    long = ODD if whole_numbers else LONG  # a double cannot hold a long whole number
+    kind = np.where(missing, MISSING, np.where(places == WIDE, long, PLAIN)).astype(np.int8)
+    kind[np.isinf(numbers)] = ODD
     computed = np.zeros(len(numbers), dtype=bool) if whole_numbers else _computed(whole, places)
     return Cells(kind, numbers, places, computed, _Across(columns))
 
 
 class _Across(Sequence[Any]):
-    """The cells of several columns, row by row; a cell is fetched when it is looked at."""
+    """The cells of several columns, row by row; they are fetched when one is looked at."""
 
     def __init__(self, columns: Sequence[pd.Series]) -> None:
         self._columns = columns
@@ -99,8 +106,11 @@ class _Across(Sequence[Any]):
 
     def __getitem__(self, place: Any) -> Any:
         row, column = divmod(place, len(self._columns))
-        entry = self._columns[column].iloc[row]
-        return entry if isinstance(entry, np.float32) else entry.item() if hasattr(entry, "item") else entry
+        return self._entries[column][row]
+
+    @cached_property
+    def _entries(self) -> list[list[Any]]:
+        return [list(one.to_numpy()) if one.dtype == np.float32 else one.tolist() for one in self._columns]
 
 
 def decimal_places(numbers: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
@@ -172,7 +182,7 @@ def _from_read(entries: list[Any], texts: Sequence[str], kinds: Sequence[str], f
     for place in long:
         if places[place] != WIDE and sum(map(str.isdigit, texts[place])) > MOST_DIGITS:
             places[place] = WIDE
-    kind[(kind == PLAIN) & (places == WIDE)] = ODD
+    kind[(kind == PLAIN) & (places == WIDE)] = LONG
     stored = np.array([one == "number" for one in kinds], dtype=bool)
     computed = _computed(whole, places) & stored & np.array([isinstance(one, float) for one in entries], dtype=bool)
     plain_texts = dict(zip(readings.tolist(), found.numbers, strict=True))

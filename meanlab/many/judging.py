@@ -73,7 +73,7 @@ def _tested(
     else:
         figures = _figures(name, group, question)
         p, decided = p_value(alternative, figures.p_greater, figures.p_less), np.ones(len(group), dtype=bool)
-        low, high = (np.nan if end is None else end for end in figures.ends(group.mean, alternative))
+        low, high = (np.asarray(np.nan if end is None else end) for end in figures.ends(group.mean, alternative))
         degrees = np.where(np.isfinite(figures.df), figures.df, np.nan)
         found = {"statistic": figures.statistic, "df": degrees, "p": p, "low": low, "high": high}
     if not covers_target(name, question):

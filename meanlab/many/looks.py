@@ -16,7 +16,7 @@ from meanlab.route import RULE, Look, cannot_run
 
 @dataclass(frozen=True)
 class Looks:
-    """Samples of plain units before the rule; ``step_known`` tells of each whether the step of its readings is known."""
+    """Samples of plain units before the rule; ``step_known`` tells whether the step of the readings is known."""
 
     question: Question
     group: Group

@@ -34,7 +34,7 @@ class Samples:
     counts: np.ndarray
     missing: np.ndarray
     odd: np.ndarray
-    preparations: Sequence[Any] | None
+    preparations: np.ndarray | None
 
     def __len__(self) -> int:
         return len(self.counts)

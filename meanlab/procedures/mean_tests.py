@@ -36,7 +36,7 @@ NONE_FURTHER = Further()
 
 
 class Moments(Protocol):
-    """What the tests of the mean look at: of one sample as numbers, of many of equal n as arrays of shape (samples,)."""
+    """What the tests of the mean look at: numbers of one sample, or arrays of shape (samples,) for many."""
 
     @property
     def n(self) -> int:
@@ -220,7 +220,7 @@ def _test(name: str, sample: Sample, found: Figures, alternative: str, alpha: fl
     p = float(p_value(alternative, p_greater, p_less))
     below, above = rejecting_sides(alternative)
     low, high = map(_or_none, found.ends(sample.mean, alternative))
-    from_target = map(_or_none, found.ends(sample.difference, alternative))
+    below_target, above_target = map(_or_none, found.ends(sample.difference, alternative))
     return Test(
         procedure=name,
         parameter="mean",
@@ -238,7 +238,7 @@ def _test(name: str, sample: Sample, found: Figures, alternative: str, alpha: fl
         estimate=sample.mean,
         standard_error=float(found.u),
         interval=Interval(low, high, 1 - alpha, 1 - alpha),
-        offsets=(sample.difference, *from_target),
+        offsets=(sample.difference, below_target, above_target),
         smallest_p=0.0,
         skew_term=None if found.skew_term is None else float(found.skew_term),
     )
