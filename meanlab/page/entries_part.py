@@ -37,7 +37,7 @@ def _rows(found: Intake) -> list[tuple[str, ...]]:
     out = dict(readings.left_out(found))
     entries = found.entries
     notable = sorted({*found.special, *out})[:MOST_ROWS]
-    rows = []
+    rows: list[tuple[str, ...]] = []
     for place in sorted({*notable, *range(min(MOST_ROWS, len(entries)))}):
         entry, cause = entries[place], out.get(place)
         role = entry.role if cause is None else f"left out: {cause}"
