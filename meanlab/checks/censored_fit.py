@@ -23,7 +23,9 @@ MOST_STEPS = 200
 CLOSE = 1e-15
 QUADRATIC = 1e-5
 ROUNDING = 1e-13
-FARTHEST_TARGET = 1e100
+FARTHEST_TARGET = 10**100
+FAR_BELOW = -1e3
+WIDEST_LIMITS = 10**12
 
 
 @dataclass(frozen=True)
@@ -39,7 +41,8 @@ def censored_fit_of(readings: ReadingSet, question: Question) -> CensoredFit | N
     """Return the normal model fitted by maximum likelihood, with the profile-likelihood interval of the mean.
 
     None with fewer than 10 entries, fewer than half of them known, known ones all equal, or an entry without a limit:
-    the estimate would be almost all model. The p-value is that of the likelihood ratio, χ² on 1 degree of freedom.
+    the estimate would be almost all model. None too with a limit so far off that beside it the readings are one point.
+    The p-value is that of the likelihood ratio, χ² on 1 degree of freedom.
     Source: Cohen 1959, 1961; Tobin 1958.
     """
     limits = [entry.limit for entry in readings.censored if entry.limit is not None]
@@ -50,11 +53,17 @@ def censored_fit_of(readings: ReadingSet, question: Question) -> CensoredFit | N
     whole = [scaled(value, exponent) for value in (*readings.values, *limits)]
     origin = whole[0]
     widest = max(abs(value - origin) for value in whole)
+    if widest > WIDEST_LIMITS * max(abs(value - origin) for value in whole[:known]):
+        return None
     x = np.array([(value - origin) / widest for value in whole])
     sides = np.array([1.0 if entry.kind == "below" else -1.0 for entry in readings.censored])
     entries = Entries(x[:known], x[known:], sides)
     away = scaled(question.exact_target, exponent) - origin
-    target = away / widest if abs(away) < FARTHEST_TARGET * widest else FARTHEST_TARGET * (1 if away > 0 else -1)
+    target = (
+        away / widest
+        if abs(away) < FARTHEST_TARGET * widest
+        else float(FARTHEST_TARGET if away > 0 else -FARTHEST_TARGET)
+    )
     mean, s, top = fit(entries)
     low, high = profile_interval(entries, mean, s, top, question.alpha)
 
@@ -111,9 +120,11 @@ def _newton_step(entries: Entries, gamma: float, theta: float) -> np.ndarray:
 
 
 def _mills(w: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
-    """Return m = φ(w)/Φ(w) and −m′ = m(w + m)."""
-    mills = np.exp(-w * w / 2 - special.log_ndtr(w)) / sqrt(2 * pi)
-    return mills, mills * (w + mills)
+    """Return m = φ(w)/Φ(w) and −m′ = m(w + m), far below 0 by its series 1 − 1/w²."""
+    far = w < FAR_BELOW
+    with np.errstate(over="ignore"):
+        mills = sqrt(2 / pi) / special.erfcx(-w / sqrt(2))
+    return mills, np.where(far, 1 - 1 / np.where(far, w, 1.0) ** 2, mills * (w + mills))
 
 
 def _log_likelihood(entries: Entries, place: np.ndarray) -> float:

@@ -17,6 +17,7 @@ Alternative = Literal["two-sided", "greater", "less"]
 ALTERNATIVES = ("two-sided", "greater", "less")
 PROCEDURES = ("z", "t", "guarded_t", "signed_rank", "sign")
 PARAMETERS = ("mean", "median")
+MOST_DEGREES = 1e9  # above, t and the normal distribution are the same to nine digits
 TARGET_KINDS = ("certified value", "nominal value", "upper limit", "lower limit", "historical level", "zero (blank)")
 MIRROR: Mapping[str, Alternative] = {"two-sided": "two-sided", "greater": "less", "less": "greater"}
 AFTERTHOUGHTS = ("alternative", "target", "equivalence limit", "difference that matters", "left-out readings")
@@ -91,8 +92,10 @@ class Question:
             self._require(field, name, above_zero=False)
         for field in ("sigma_df", "target_uncertainty_df"):
             degrees = getattr(self, field)
-            if isinstance(degrees, str) or isnan(degrees) or degrees <= 0:
-                raise QuestionComplaint(f"Degrees of freedom must be more than 0, not {degrees}.", field)
+            if isinstance(degrees, str) or isnan(degrees) or degrees < 1:
+                raise QuestionComplaint(f"Degrees of freedom must be at least 1, not {degrees}.", field)
+            if degrees > MOST_DEGREES:
+                object.__setattr__(self, field, inf)
         if self.sigma is not None and not self.sigma_origin.strip():
             raise QuestionComplaint(
                 "A known σ needs its origin (records of how many results, which period): write where it comes from.",

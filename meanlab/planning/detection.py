@@ -147,7 +147,7 @@ def critical_distance(r: Any, scatter: float, df: float, further: Further, each_
     spread = seen**2 / df + target**2 / further.target_df
     with np.errstate(divide="ignore", over="ignore", invalid="ignore"):
         effective = np.where(spread > 0, total**2 / spread, inf)
-    return t_critical(each_tail, effective) * np.sqrt(total) * largest
+        return t_critical(each_tail, effective) * np.sqrt(total) * largest
 
 
 def _sign_power(n: int, design: Design) -> Callable[[float], float]:

@@ -31,7 +31,7 @@ def ratio_panels(
     spread = REACH / sqrt(2 * df)
     low, high = max(0.0, 1 - spread), min(1 + spread, upto)
     low = min(low, high)
-    panels = max(PANELS, min(MOST_PANELS, int(steps * (high - low) / 4) + 1))
+    panels = int(max(PANELS, min(MOST_PANELS, steps * (high - low) / 4 + 1)))
     edges = np.linspace(low, high, panels + 1)
     if isfinite(width):
         around = np.clip(middle + width * AROUND, low, high)

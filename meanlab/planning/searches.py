@@ -21,6 +21,7 @@ from meanlab.procedures.distributions import normal_critical, normal_upper, t_cr
 MOST_READINGS = 10_000
 FEW = 6
 MOST_DOUBLINGS = 60
+MOST_HALVINGS = 2000
 FIRST_CHUNK = 64
 
 
@@ -59,7 +60,19 @@ def _where_it_reaches(
         high *= 2
     else:
         return None
-    return float(brentq(lambda size: found(side * size * scale) - power, 0.0, high, xtol=1e-14, rtol=1e-13)) * scale
+    return (
+        float(
+            brentq(
+                lambda size: found(side * size * scale) - power,
+                0.0,
+                high,
+                xtol=1e-14,
+                rtol=1e-13,
+                maxiter=MOST_HALVINGS,
+            )
+        )
+        * scale
+    )
 
 
 def readings_needed(difference: float, power: float, design: Design) -> int | None:

@@ -56,16 +56,21 @@ def t_upper(t: Any, df: Any) -> Any:
 
 
 def t_critical(tail: Any, df: Any) -> Any:
-    """Return the value that Student's t with ``df`` degrees of freedom exceeds with probability ``tail``.
+    """Return the value that Student's t with ``df`` degrees of freedom exceeds with probability ``tail`` < ½.
+
+    Where the library's inverse gives up (tails below 1e-250), the leading term of the tail is turned round.
 
     >>> round(float(t_critical(0.025, 9)), 12)
     2.262157162798
     """
     df = np.asarray(df, dtype=float)
-    if np.all(np.isfinite(df)):
-        return -special.stdtrit(df, tail)
-    finite = np.where(np.isfinite(df), df, 1.0)
-    return np.where(np.isfinite(df), -special.stdtrit(finite, tail), -special.ndtri(tail))
+    all_finite = bool(np.isfinite(df).all())
+    finite = df if all_finite else np.where(np.isfinite(df), df, 1.0)
+    q = -special.stdtrit(finite, tail)
+    lost = q <= 0
+    if lost.any():
+        q = np.where(lost, np.sqrt(finite) * (tail * finite * special.beta(finite / 2, 0.5)) ** (-1 / finite), q)
+    return q if all_finite else np.where(np.isfinite(df), q, -special.ndtri(tail))
 
 
 def t_density(t: Any, df: Any) -> Any:

@@ -82,7 +82,8 @@ class Figures:
 
     def ends(self, centre: Any, alternative: str) -> tuple[Any, Any]:
         """Return the ends of the interval around the mean or the difference; None for one that there is not."""
-        return one_sided(alternative, centre - self.upper * self.u, centre - self.lower * self.u)
+        with np.errstate(over="ignore"):
+            return one_sided(alternative, centre - self.upper * self.u, centre - self.lower * self.u)
 
 
 def effective_df(components: list[tuple[Any, float]]) -> Any:
@@ -99,7 +100,7 @@ def effective_df(components: list[tuple[Any, float]]) -> Any:
     squares = [(u / largest) * (u / largest) for u, _ in components]
     spread = sum(square * square / df for square, (_, df) in zip(squares, components, strict=True))
     total = sum(squares)
-    with np.errstate(divide="ignore"):
+    with np.errstate(divide="ignore", over="ignore"):
         return np.where(spread > 0, total * total / spread, inf)[()]
 
 
@@ -159,7 +160,8 @@ def z_figures(
     scatter_u = sigma / sqrt(units.n)
     u = hypot(scatter_u, further.u)
     df = effective_df([(scatter_u, sigma_df), (further.target_u, further.target_df), (further.own_u, inf)])
-    return _by_t(units.difference / u, u, df, alternative, alpha)
+    with np.errstate(over="ignore"):
+        return _by_t(units.difference / u, u, df, alternative, alpha)
 
 
 def t_figures(units: Moments, alternative: str, alpha: float, further: Further = NONE_FURTHER) -> Figures:
@@ -169,7 +171,8 @@ def t_figures(units: Moments, alternative: str, alpha: float, further: Further =
     scatter_u = units.standard_error
     u = np.hypot(scatter_u, further.u)
     parts = [(scatter_u, units.n - 1.0), (further.target_u, further.target_df), (further.own_u, inf)]
-    return _by_t(units.difference / u, u, effective_df(parts), alternative, alpha)
+    with np.errstate(over="ignore"):
+        return _by_t(units.difference / u, u, effective_df(parts), alternative, alpha)
 
 
 def guarded_figures(units: Moments, alternative: str, alpha: float) -> Figures:

@@ -71,6 +71,11 @@ def test_the_density_of_t_keeps_twelve_digits(df):
         assert relative_error(t_density(t, df), t_density_by_mpmath(t, df)) < TWELVE_DIGITS, (t, df)
 
 
+def test_a_tail_that_the_library_gives_up_has_a_critical_value():
+    """Five degrees of freedom and a tail of 1e-299: the critical value leaves that tail."""
+    assert relative_error(1e-299, t_tail_by_mpmath(float(t_critical(1e-299, 5)), 5)) < TWELVE_DIGITS
+
+
 def test_a_statistic_whose_square_overflows_has_a_tail():
     """With one degree of freedom the tail is arctan(1/t)/π (Cauchy), also where t² is no double."""
     for t in (1e149, 1e151, 1e200, 1e280):
