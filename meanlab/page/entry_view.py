@@ -41,7 +41,7 @@ def draw(book: Notebook, key: str, found: Outcome | None, own: bool) -> None:
     tables.sentences([f"{texts.title}: {texts.verdict_word}.", texts.sentence])
     say(_comes_out(looked_at), "notice" if looked_at.changed or not looked_at.sealed else "status")
     with st.container(key="entry_row", horizontal=True, gap="small"):
-        st.button("Open", key="entry_open", type="primary", on_click=_open, args=(entry,))
+        st.button("Open", key="entry_open", type="primary", on_click=_open, args=(entry, own))
         recorded = Recorded(entry.analysis, lambda: entry.source, entry.written)
         record_files.draw(recorded, f"entry-{entry.number}", key="entry_file")
     if state.widget("entry_trouble"):
@@ -85,10 +85,10 @@ def _comes_out(looked_at: LookedAt) -> str:
     return f"{said}Recomputed now, {len(looked_at.changed)} figures or texts differ: {parts}{ending}."
 
 
-def _open(entry: Entry) -> None:
+def _open(entry: Entry, own: bool) -> None:
     state.note("entry_trouble", "")
     try:
-        state.open_entry(entry, reopening.reopened(entry, state.find_file))
+        state.open_entry(entry, reopening.reopened(entry, state.find_file), own)
         focus.jump("panel")
     except Complaint as complaint:
         state.note("entry_trouble", str(complaint))

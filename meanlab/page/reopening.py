@@ -7,9 +7,10 @@ from typing import Any
 
 from meanlab.core.complaints import Complaint
 from meanlab.core.numbers import as_typed
-from meanlab.core.question import Question
+from meanlab.core.question import TARGET_KINDS, Question
 from meanlab.core.readings import ReadingSet
 from meanlab.core.source import Source
+from meanlab.intake import Intake
 from meanlab.notebook import Entry
 from meanlab.page import asked, cache
 from meanlab.page.fields import FIELDS
@@ -17,31 +18,32 @@ from meanlab.page.file_choice import SIGNS, selection_of
 from meanlab.page.working import Reopened
 
 SIGN_NAMES = {sign: name for name, sign in SIGNS.items()}
-JOIN, IS = "; ", " = "
+JOIN, IS, PREPARATION = "; ", " = ", "Preparation"
 
 
 def reopened(entry: Entry, find_file: Callable[[str], bytes | None]) -> Reopened:
     """Return what the page shows of an entry; ``find_file`` looks for a file by its SHA-256."""
     readings, source = entry.analysis.readings, entry.source
-    sign = readings.decimal_sign
-    question = question_fields(entry.analysis.question, sign)
+    asks = question_fields(entry.analysis.question, readings.decimal_sign)
     content = source.text or (find_file(source.checksum) if source.checksum else None)
     if content:
         file = None if isinstance(content, str) else (source.file_name, content)
         text = content if isinstance(content, str) else ""
-        fields = question | {"readings_text": text} | picks(source, readings)
-        found = _read_again(fields, file, readings)
-        if found is not None:
+        fields = asks | {"readings_text": text} | picks(source, readings)
+        found = _read(fields, file)
+        if found is not None and _same(found, readings):
             return _with(fields, file, readings.left_out, found, entry)
-    text, left_out = as_text(readings)
-    labelled = readings.preparations is not None
-    fields = question | {
-        "readings_text": text,
-        "decimal_sign": SIGN_NAMES[sign],
-        "labels_name_preparations": labelled,
+    fields = asks | {
+        "readings_text": as_text(readings),
+        "decimal_sign": SIGN_NAMES[readings.decimal_sign],
+        "unit": asks["unit"] or readings.unit,
+        "quantity": asks["quantity"] or readings.name,
     }
-    entries = tuple(text.splitlines())
-    return _with(fields, None, left_out, entries, entry, _not_at_hand(source))
+    if readings.preparations is not None:
+        fields |= {"preparation": PREPARATION, "column": 1}
+    order = sorted([*readings.positions, *(one.index for one in readings.censored)])
+    causes = {order.index(place): why for place, why in readings.left_out.items()}
+    return _with(fields, None, causes, _read(fields, None), entry, _not_at_hand(source))
 
 
 def question_fields(question: Question, sign: str) -> dict[str, Any]:
@@ -56,7 +58,7 @@ def question_fields(question: Question, sign: str) -> dict[str, Any]:
     return {
         "target": question.target_as_typed,
         "unit": question.unit,
-        "target_kind": question.target_kind,
+        "target_kind": question.target_kind if question.target_kind in TARGET_KINDS else FIELDS["target_kind"],
         "significance": f"{_typed(Decimal(str(question.significance)) * 100, sign)} %",
         "alternative": question.alternative,
         "quantity": question.quantity,
@@ -93,47 +95,56 @@ def picks(source: Source, readings: ReadingSet) -> dict[str, Any]:
     }
 
 
-def as_text(readings: ReadingSet) -> tuple[str, dict[int, str]]:
-    """Return readings as lines to paste, each with its preparation, and the left-out ones by their new place.
+def as_text(readings: ReadingSet) -> str:
+    """Return readings as lines to paste, in their order, each with its preparation.
 
-    >>> as_text(ReadingSet(["5.02", "5.04"], left_out={1: "air bubble"}))
-    ('5.02\\n5.04', {1: 'air bubble'})
+    >>> as_text(ReadingSet(["5.02", "5.04"]))
+    '5.02\\n5.04'
+    >>> as_text(ReadingSet(["5.02", "5.04"], preparations=["A", "B"]))
+    'Preparation\\tReading\\nA\\t5.02\\nB\\t5.04'
     """
     labels = readings.preparations or ("",) * len(readings.values)
     lines = list(zip(readings.positions, labels, readings.typed, strict=True))
     lines += [(one.index, one.preparation or "", _limit_text(one)) for one in readings.censored]
     lines.sort()
-    text = "\n".join(f"{label}\t{typed}" if label else typed for _, label, typed in lines)
-    causes = {new: readings.left_out[line[0]] for new, line in enumerate(lines) if line[0] in readings.left_out}
-    return text, causes
+    if readings.preparations is None:
+        return "\n".join(typed for _, _, typed in lines)
+    return "\n".join([f"{PREPARATION}\tReading", *(f"{label}\t{typed}" for _, label, typed in lines)])
 
 
 def _with(
     fields: Mapping[str, Any],
     file: tuple[str, bytes] | None,
     causes: Mapping[int, str],
-    entries: tuple[str, ...],
+    found: Intake | None,
     entry: Entry,
     notice: str = "",
 ) -> Reopened:
-    left_out = {str(at): {"text": entries[at], "cause": why} for at, why in causes.items() if at < len(entries)}
-    with_defaults = dict(FIELDS) | dict(fields)
-    parts = asked.parts_set(with_defaults, list(left_out))
+    texts = () if found is None else tuple(one.text for one in found.entries)
+    left_out = {str(at): {"text": texts[at], "cause": why} for at, why in causes.items() if at < len(texts)}
+    parts = asked.parts_set(dict(FIELDS) | dict(fields), list(left_out))
     parts |= dict.fromkeys(entry.analysis.question.set_after)
-    return Reopened(fields, file, left_out, entries, parts, notice)
+    return Reopened(fields, file, left_out, texts, parts, notice)
 
 
-def _read_again(fields: Mapping[str, Any], file: tuple[str, bytes] | None, kept: ReadingSet) -> tuple[str, ...] | None:
-    """Return the texts of all entries where a source still gives the kept readings, None where it does not."""
+def _read(fields: Mapping[str, Any], file: tuple[str, bytes] | None) -> Intake | None:
+    """Return what is read from the source that the fields name, None where it cannot be read."""
     content, name = (fields["readings_text"], None) if file is None else (file[1], file[0])
-    by_preparation = kept.preparations is not None
+    every = dict(FIELDS) | dict(fields)
+    by_preparation = every["preparation"] is not None or every["labels_name_preparations"]
     try:
-        found = cache.read(cache.Source(content, name, selection_of(dict(FIELDS) | dict(fields)), by_preparation))
-        now = found.reading_set({}, found.preparations if by_preparation else None)
+        return cache.read(cache.Source(content, name, selection_of(every), by_preparation))
     except (Complaint, TypeError, KeyError):
         return None
-    same = (now.typed, now.positions, now.censored) == (kept.typed, kept.positions, kept.censored)
-    return tuple(entry.text for entry in found.entries) if same else None
+
+
+def _same(found: Intake, kept: ReadingSet) -> bool:
+    """Tell whether what is read now are the kept readings."""
+    try:
+        now = found.reading_set({}, found.preparations if kept.preparations is not None else None)
+    except Complaint:
+        return False
+    return all(getattr(now, part) == getattr(kept, part) for part in ("typed", "positions", "censored", "preparations"))
 
 
 def _not_at_hand(source: Source) -> str:

@@ -125,8 +125,11 @@ def open_set(name: str, fields: Mapping[str, Any], file: tuple[str, bytes] | Non
         _take_file(*file)
 
 
-def open_entry(entry: Entry, again: Reopened) -> None:
-    """Bring readings and question of an entry back in place of everything on the page; nothing is said to be new."""
+def open_entry(entry: Entry, again: Reopened, own: bool) -> None:
+    """Bring readings and question of an entry back in place of everything on the page.
+
+    The parts of the question were set when the entry says so; ``own`` tells that it stands in this bench's notebook.
+    """
     open_set("", again.fields, again.file)
     now = working()
     if now.previous is not None:
@@ -136,6 +139,8 @@ def open_entry(entry: Entry, again: Reopened) -> None:
     now.first, now.looks = {"parts": dict(again.first_parts), "entries": marks}, entry.analysis.question.look
     now.notice = again.notice
     times_stand(now, from_words(entry.set_times))
+    if own:
+        saved_as(entry)
 
 
 def saved_as(entry: Entry) -> None:
