@@ -14,11 +14,12 @@ from meanlab.checks.normality import shapiro_wilk, skewness_test
 from meanlab.core.question import Question
 from meanlab.core.results import Route
 from meanlab.procedures.sample import Sample
-from meanlab.wording.names import PROCEDURE_NAMES
+from meanlab.wording.names import IN_TWO_UNITS, PROCEDURE_NAMES
 from meanlab.wording.numbers import decimal_text, p_text
 
 PRETEST = 0.05
 MOST_FOR_SHAPIRO_WILK = 5000
+ONE_PREPARATION = -1  # with IN_TWO_UNITS before the rows of the rule: nothing can be compared
 PARAMETERS = {"z": "mean", "t": "mean", "guarded_t": "mean", "signed_rank": "centre of symmetry", "sign": "median"}
 
 
@@ -31,6 +32,8 @@ class Look:
     censored   how many of them are below- or above-limit units
     resolution step r of the units in their unit, None where unknown
     one_preparation  True where all readings come from a single preparation
+    noun       what a unit is called: "readings" or "preparations"
+    in_two_units  unit of the readings and unit of the target where they are not the same, else None
     """
 
     question: Question
@@ -40,6 +43,8 @@ class Look:
     resolution: float | None
     one_preparation: bool = False
     decimal_sign: str = "."
+    noun: str = "readings"
+    in_two_units: tuple[str, str] | None = None
 
     @property
     def s(self) -> float:
@@ -130,7 +135,7 @@ RULE: tuple[Row, ...] = (
     Row(7, lambda look: look.n <= 7, _pick("t"), lambda look: _says_few(look)),
     Row(8, lambda look: look.coarse, _pick("t"), lambda look: _says_coarse(look)),
     Row(9, lambda look: look.n <= MOST_FOR_SHAPIRO_WILK and look.shapiro_wilk[1] > PRETEST, _pick("t"),
-        lambda look: f"{look.n} readings, no evidence against normality ({_says_w(look)})"),
+        lambda look: f"{look.n} {look.noun}, no evidence against normality ({_says_w(look)})"),
     Row(10, lambda look: look.n >= look.needed, _pick("t"), lambda look: _says_large(look)),
     Row(11, lambda look: look.skewness_p > PRETEST,
         lambda look: _or_t("signed_rank")(look) if look.signed_rank_can_reject else "t",
@@ -145,9 +150,13 @@ def route_of(look: Look) -> Route:
     Row 1: a procedure fixed by the written method is used where it can run; where it cannot, nothing is tested and
     the reason names the rule's own choice.
     """
+    if look.in_two_units is not None:
+        of_readings, of_target = look.in_two_units
+        reason = f'the readings are in "{of_readings}" and the target in "{of_target}": bring both to one unit'
+        return Route(None, PARAMETERS.get(look.question.procedure, "mean"), (reason,), False, IN_TWO_UNITS)
     if look.one_preparation:
         reason = "all readings come from one preparation: the scatter between preparations is unknown"
-        return Route(None, PARAMETERS.get(look.question.procedure, "mean"), (reason,), False, -1)
+        return Route(None, PARAMETERS.get(look.question.procedure, "mean"), (reason,), False, ONE_PREPARATION)
     chosen = by_rule(look)
     fixed = look.question.procedure
     if fixed == "rule":
@@ -172,6 +181,13 @@ def by_rule(look: Look) -> Route:
     elif row.number == 11 and procedure == "t":
         reasons.append("t, because with so few readings the signed rank cannot reject at this level")
     return Route(procedure, parameter, tuple(reasons), False, row.number, _looked_at(look, row.number))
+
+
+def nothing_compares(look: Look) -> str:
+    """Return why no procedure at all can compare these units with the target, "" where one might."""
+    if look.in_two_units is not None:
+        return "readings and target are in different units"
+    return "the readings come from one preparation" if look.one_preparation else ""
 
 
 def cannot_run(procedure: str, look: Look) -> str:
@@ -222,12 +238,12 @@ def _says_sigma(look: Look) -> str:
 
 
 def _says_identical(look: Look) -> str:
-    return f"the {look.n} readings are identical: they do not scatter at their resolution"
+    return f"the {look.n} {look.noun} are identical: they do not scatter at their resolution"
 
 
 def _says_few(look: Look) -> str:
     return (
-        f"{look.n} readings: normality cannot be verified with so few; "
+        f"{look.n} {look.noun}: normality cannot be verified with so few; "
         "for skewed readings a risk of 5 % can really be 11 to 12 %"
     )
 
@@ -235,7 +251,8 @@ def _says_few(look: Look) -> str:
 def _says_coarse(look: Look) -> str:
     ratio = look.text((look.resolution or 0) / look.s)
     return (
-        f"{look.n} readings with a step of {ratio} s: rounding makes a test of normality meaningless, while t is fine"
+        f"{look.n} {look.noun} with a step of {ratio} s: rounding makes a test of normality meaningless, while t is "
+        "fine"
     )
 
 
@@ -246,8 +263,8 @@ def _says_w(look: Look) -> str:
 
 def _says_shape(look: Look) -> str:
     if look.n > MOST_FOR_SHAPIRO_WILK:
-        return f"{look.n:,} readings (Shapiro–Wilk is not computed above {MOST_FOR_SHAPIRO_WILK:,})"
-    return f"{look.n} readings, not normal ({_says_w(look)})"
+        return f"{look.n} {look.noun} (Shapiro–Wilk is not computed above {MOST_FOR_SHAPIRO_WILK})"
+    return f"{look.n} {look.noun}, not normal ({_says_w(look)})"
 
 
 def _says_large(look: Look) -> str:

@@ -11,6 +11,7 @@ from meanlab.analysis.uncertainty import uncertainty_of
 from meanlab.analysis.units import Units, summary_of, units_of
 from meanlab.checks import Facts, all_checks
 from meanlab.checks.censored_fit import censored_fit_of
+from meanlab.checks.units import units_that_differ
 from meanlab.core.complaints import IntakeComplaint
 from meanlab.core.question import Question
 from meanlab.core.readings import ReadingSet
@@ -54,7 +55,7 @@ def analyse(readings: Intake | ReadingSet | Iterable[Any], question: Question) -
         route=decided.route,
         summary=summary_of(units, given),
         test=test,
-        difference=_difference(test, units, question),
+        difference=_difference(decided, question),
         others=other_procedures(decided.route.procedure, units.spans, sample, question, decided.look),
         checks=checks,
         equivalence=decided.equivalence,
@@ -109,6 +110,8 @@ def decide(readings: ReadingSet, question: Question) -> Decided:
         resolution=units.resolution,
         one_preparation=units.one_preparation,
         decimal_sign=readings.decimal_sign,
+        noun="preparations" if units.preparations else "readings",
+        in_two_units=units_that_differ(readings.unit, question.unit),
     )
     route = route_of(look)
     test = None
@@ -130,9 +133,11 @@ def _left_open(route: Route, test: Test) -> Route:
     return replace(route, procedure=None, reasons=(reason, *route.reasons))
 
 
-def _difference(test: Test | None, units: Units, question: Question) -> Difference | None:
+def _difference(decided: Decided, question: Question) -> Difference | None:
     """Return estimate − target; without a test the difference of the mean is shown, without an interval."""
-    sample = units.sample
+    test, sample = decided.test, decided.units.sample
+    if decided.look.in_two_units is not None:
+        return None
     value, low, high = (sample.difference if sample else None, None, None) if test is None else test.offsets
     target = abs(float(question.exact_target))
     if value is None:

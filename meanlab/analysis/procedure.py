@@ -9,7 +9,7 @@ from meanlab.procedures.sample import Sample, Spans
 from meanlab.procedures.sign import count_sides, sign_test
 from meanlab.procedures.sign import tails as sign_tails
 from meanlab.procedures.signed_rank import Null, signed_rank
-from meanlab.route import Look, cannot_run
+from meanlab.route import Look, cannot_run, nothing_compares
 
 TAKES_FURTHER = ("z", "t")
 
@@ -70,7 +70,7 @@ def other_procedures(
     for procedure in PROCEDURES:
         if procedure == chosen:
             continue
-        obstacle = "the readings come from one preparation" if look.one_preparation else cannot_run(procedure, look)
+        obstacle = nothing_compares(look) or cannot_run(procedure, look)
         found.append(NotApplicable(procedure, obstacle) if obstacle else run(procedure, spans, sample, question))
     return tuple(found)
 

@@ -4,20 +4,19 @@ import re
 
 from meanlab.checks.facts import Facts
 from meanlab.core.results import Check
+from meanlab.intake.units import same_unit
 from meanlab.wording.numbers import plain_words
 
-_LITRE = re.compile(r"(?<![A-Za-zµ])([mµndckh]?)l(?![A-Za-z])")
 _OF_ONE = re.compile(r"\b(of|on|from) (one|the same) (preparation|portion)\b")
-_SAME = str.maketrans({"μ": "µ", "⋅": "·", "∙": "·", "−": "-", "–": "-"})
 
 
 def units_check(facts: Facts) -> Check:
     """Return what is known about the units; "stop" where target and readings are in different units."""
-    of_readings, of_target = plain_words(facts.unit), plain_words(facts.question.unit)
-    if of_readings and of_target and not same_unit(of_readings, of_target):
+    two = units_that_differ(facts.unit, facts.question.unit)
+    if two is not None:
         said = (
-            f'The readings are in "{of_readings}" and the target in "{of_target}": bring both to one unit before '
-            "anything is compared."
+            f'The readings are in "{two[0]}" and the target in "{two[1]}": bring both to one unit before anything is '
+            "compared."
         )
         return Check("units", "stop", None, None, said)
     described = plain_words(facts.question.units_are)
@@ -26,19 +25,19 @@ def units_check(facts: Facts) -> Check:
         said = (
             f"It is not said what one {facts.noun} is a replicate of (the same solution, new preparations, other "
             "days): s holds only what varied between them, and nine injections of three preparations taken as nine "
-            f"readings raise {facts.percent(0.329)} false alarms."
+            f"readings raise the false alarms to {facts.percent(0.329)}."
         )
         return Check("units", "note", None, None, said)
     if _OF_ONE.search(described) and not facts.nested:
         said = (
-            f"Stated of the {facts.noun}s: {described}; repeats of one preparation are no independent units, so the "
+            f"Stated of the readings: {described}; repeats of one preparation are no independent units, so the "
             "statement speaks of this one preparation and not of the material."
         )
         return Check("units", "caution", None, None, said)
-    said = f"Stated of the {facts.noun}s: {described}."
+    said = f"Stated of the readings: {described}."
     if "conditions" not in described:
         said = (
-            f"Stated of the {facts.noun}s: {described}; whether s is a repeatability or an intermediate precision "
+            f"Stated of the readings: {described}; whether s is a repeatability or an intermediate precision "
             "depends on what was changed between them."
         )
     if unequal:
@@ -49,19 +48,11 @@ def units_check(facts: Facts) -> Check:
     return Check("units", "note" if unequal else "clear", None, None, said)
 
 
-def same_unit(one: str, other: str) -> bool:
-    """Return whether two texts write the same unit, whatever its spelling.
+def units_that_differ(of_readings: str, of_target: str) -> tuple[str, str] | None:
+    """Return the two units where readings and target are not in the same one, None where they are or one is not said.
 
-    >>> same_unit("mg / l", "mg/L"), same_unit("mg/L", "µg/L")
-    (True, False)
+    >>> units_that_differ("mg / l", "mg/L"), units_that_differ("mg/L", "µg/L")
+    (None, ('mg/L', 'µg/L'))
     """
-    return _spelling(plain_words(one)) == _spelling(plain_words(other))
-
-
-def _spelling(unit: str) -> str:
-    """Return a unit in one spelling: no blanks, one micro sign, litre as L.
-
-    >>> _spelling("μg / l") == _spelling("µg/L"), _spelling("mol") == _spelling("moL")
-    (True, False)
-    """
-    return _LITRE.sub(r"\1L", "".join(unit.split()).translate(_SAME))
+    one, other = plain_words(of_readings), plain_words(of_target)
+    return (one, other) if one and other and not same_unit(one, other) else None

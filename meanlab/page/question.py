@@ -2,7 +2,7 @@
 
 import streamlit as st
 
-from meanlab.checks.units import same_unit
+from meanlab.checks.units import units_that_differ
 from meanlab.core.question import TARGET_KINDS
 from meanlab.page import asked, readings, state
 from meanlab.page.guard import say
@@ -35,7 +35,7 @@ def draw() -> None:
     left, right = st.columns([3, 2], gap="small")
     left.text_input("Target", key="target", placeholder="e.g. 5.000")
     right.text_input("Unit", key="unit", placeholder=unit or "e.g. mg/L")
-    if unit and state.value("unit").strip() and not same_unit(unit, state.value("unit")):
+    if units_that_differ(unit, state.value("unit")):
         say(f'The heading gives the readings in "{unit}": write the target in that unit; nothing is converted.')
     left, right = st.columns([3, 2], gap="small")
     left.selectbox("The target is a", TARGET_KINDS, key="target_kind", on_change=_side_follows_kind)

@@ -5,10 +5,12 @@ from math import sqrt
 from meanlab.core.results import Analysis, Test
 from meanlab.wording.names import PROCEDURE_NAMES, target_noun
 from meanlab.wording.numbers import plain_words
-from meanlab.wording.phrases import INCLUDES_FURTHER, WITH_UNCERTAINTY
+from meanlab.wording.phrases import WITH_UNCERTAINTY
+from meanlab.wording.shown import INCLUDES_FURTHER
 
 FEW = 8
 FEW_FOR_ONE_SIDE = 15
+SYMBOLS = "nstzpk"  # a sentence may begin with one of these, which stays small
 FAR_END = 5.0  # critical value, in standard errors, from which an interval is said to be wide
 
 FURTHER_NAMES = {
@@ -136,4 +138,5 @@ def _sentence(text: str) -> str:
     text = plain_words(text)
     if not text:
         return ""
-    return text[0].upper() + text[1:] + ("" if text[-1] in ".!?" else ".")
+    symbol = len(text) > 1 and text[1] == " " and text[0] in SYMBOLS
+    return (text if symbol else text[0].upper() + text[1:]) + ("" if text[-1] in ".!?" else ".")

@@ -5,6 +5,7 @@ from collections.abc import Mapping
 from meanlab.core.results import Analysis
 from meanlab.wording.numbers import plain_words
 
+IN_TWO_UNITS = -2  # the row of a route where readings and target are in different units
 PROCEDURE_NAMES: Mapping[str, str] = {
     "z": "z (known σ)",
     "t": "Student's t",
@@ -79,7 +80,9 @@ def short_noun(kind: str) -> str:
 
 
 def unit_of(analysis: Analysis) -> str:
-    """Return the unit of the readings on one line: the question's, else the heading's."""
+    """Return the unit of the readings on one line: as the question writes it, else the heading."""
+    if analysis.route.row == IN_TWO_UNITS:
+        return plain_words(analysis.readings.unit)
     return plain_words(analysis.question.unit) or plain_words(analysis.readings.unit)
 
 

@@ -1,7 +1,8 @@
 """Numbers as text: rounded once, exactly, with the decimal sign that the readings used.
 
-Rounding is half to even of the exact value (of a double: its exact binary value), the minus is the minus sign, and
-powers of ten are written only below 0.0001 and from 10,000,000 on.
+Rounding is half to even (ISO 80000-1, Annex B, rule A) of the shortest decimal that gives the double, the one a reader
+would write down, so that a mean and its difference from the target round alike. The minus is the minus sign, and powers
+of ten are written only below 0.0001 and from 10,000,000 on.
 """
 
 from decimal import ROUND_HALF_EVEN, Context, Decimal
@@ -14,6 +15,8 @@ PLAIN_BELOW = Decimal("1e7")
 MOST_DIGITS_OF_A_DOUBLE = 17
 LONGEST_ZERO = 7
 SMALLEST_P_SHOWN = 0.001
+LARGEST_P_SHOWN = 0.995
+WHOLE_DEGREES, MOST_DEGREES = 100, 1000
 MINUS = "−"
 PLANE_ANGLES = ("°", "′", "″")
 
@@ -44,7 +47,7 @@ def rounded_to(value: float | Decimal, places: int) -> Decimal:
     >>> rounded_to(2.5, 0), rounded_to(0.125, 2)
     (Decimal('2'), Decimal('0.12'))
     """
-    exact = value if isinstance(value, Decimal) else Decimal(float(value))
+    exact = value if isinstance(value, Decimal) else _shortest(value)
     return exact.quantize(Decimal((0, (1,), -places)), context=_CONTEXT)
 
 
@@ -105,7 +108,7 @@ def number_text(value: float | Decimal, sign: str = ".") -> str:
 
 
 def p_text(p: float, significance: float, sign: str = ".") -> str:
-    """Return "p = …" with two significant digits, "p < 0.001" below that, more digits where two would touch α.
+    """Return "p = …" with two significant digits, "p < 0.001" below, "p > 0.99" near 1, more where two touch α.
 
     Rounding never moves p onto or across the significance level. At a level below 0.001 the level takes its place.
 
@@ -115,6 +118,8 @@ def p_text(p: float, significance: float, sign: str = ".") -> str:
     floor = min(SMALLEST_P_SHOWN, significance)
     if p < floor:
         return f"p < {number_text(floor, sign)}"
+    if p >= LARGEST_P_SHOWN:
+        return f"p > {number_text(0.99, sign)}"
     exact, level = _shortest(p), _shortest(significance)
     for digits in range(2, MOST_DIGITS_OF_A_DOUBLE + 1):
         places = places_for(p, digits)
@@ -124,12 +129,14 @@ def p_text(p: float, significance: float, sign: str = ".") -> str:
 
 
 def df_text(df: float, sign: str = ".") -> str:
-    """Return degrees of freedom: whole ones without places, others with one.
+    """Return degrees of freedom: whole ones without places, others with one, large ones rounded.
 
-    >>> df_text(11.0), df_text(11.8312, ",")
-    ('11', '11,8')
+    >>> df_text(11.0), df_text(11.8312, ","), df_text(145.31), df_text(14009763.2)
+    ('11', '11,8', '145', '>1000')
     """
-    return decimal_text(df, 0 if not isfinite(df) or float(df).is_integer() else 1, sign)
+    if isfinite(df) and df > MOST_DEGREES and not float(df).is_integer():
+        return f">{MOST_DEGREES}"
+    return decimal_text(df, 0 if not isfinite(df) or float(df).is_integer() or df >= WHOLE_DEGREES else 1, sign)
 
 
 def statistic_number(value: float, sign: str = ".") -> str:
@@ -241,7 +248,7 @@ def interval_text(
     low = None if interval.low is None else unit_text(decimal_text(interval.low, places, sign), unit)
     high = None if interval.high is None else unit_text(decimal_text(interval.high, places, sign), unit)
     if low is None and high is None:
-        return "without bounds"
+        return "no bounds"
     if high is None:
         return f"at least {low}"
     if low is None:

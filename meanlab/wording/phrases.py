@@ -5,9 +5,9 @@ from math import isfinite
 from meanlab.core.results import Analysis
 from meanlab.wording.names import AFTERTHOUGHT_NAMES, PROCEDURE_NAMES, counted, subject_of
 from meanlab.wording.numbers import level_text, p_text, plain_words, significant, unit_text
-from meanlab.wording.shown import DIGITS_OF_S, Shown
+from meanlab.wording.shown import DIGITS_OF_S, INCLUDES_FURTHER, Shown
 
-INCLUDES_FURTHER = ("z", "t")
+LONGEST_CAUSES = 90
 WITH_UNCERTAINTY = ("certified value", "historical level")
 
 
@@ -31,7 +31,7 @@ def parameter_of(analysis: Analysis) -> str:
 
 
 def units_phrase(analysis: Analysis) -> str:
-    """Return n and what a unit is: "12 readings (weighings on one day; 1 left out, with cause)".
+    """Return n and what a unit is: "12 readings (weighings on one day; 1 left out: air bubble)".
 
     Independence is the technician's to know: where nothing was said about the units, the sentence says what it takes
     for granted.
@@ -40,9 +40,16 @@ def units_phrase(analysis: Analysis) -> str:
     remarks = [counted(summary.n_readings, "reading")] if nested else []
     described = plain_words(analysis.question.units_are)
     remarks += [described or "taken as independent"] if summary.n > 1 or described else []
-    remarks += [f"{summary.left_out} left out, with cause"] if summary.left_out else []
+    remarks += [left_out_phrase(analysis)] if summary.left_out else []
     text = counted(summary.n, "preparation" if nested else "reading")
     return f"{text} ({'; '.join(remarks)})" if remarks else text
+
+
+def left_out_phrase(analysis: Analysis) -> str:
+    """Return how many readings were left out and why: "1 left out: air bubble"."""
+    causes = "; ".join(dict.fromkeys(map(plain_words, analysis.readings.left_out.values())))
+    causes = causes if len(causes) <= LONGEST_CAUSES else f"{causes[: LONGEST_CAUSES - 1].rstrip()}…"
+    return f"{analysis.summary.left_out} left out: {causes}"
 
 
 def of_subject(analysis: Analysis) -> str:
@@ -59,7 +66,7 @@ def value_and_interval(analysis: Analysis, numbers: Shown) -> str:
     interval = f"{numbers.interval_level} {side} {ends or 'none'}{attained}"
     if numbers.estimate:
         return f", {numbers.estimate} ({interval})"
-    return f" (which lies among the readings below or above a limit; {interval})"
+    return f", which lies among the readings below or above a limit ({interval})"
 
 
 def difference_phrase(numbers: Shown, bare: bool = False) -> str:
@@ -145,21 +152,24 @@ def missed_phrase(analysis: Analysis, numbers: Shown) -> str:
     return f"even a very large true {excess_noun(analysis)} would have been missed with a probability above 20 %"
 
 
-def bound_phrase(analysis: Analysis, numbers: Shown) -> str:
-    """Return the interval held against the limits, named by its use."""
+def bound_phrase(analysis: Analysis, numbers: Shown, verb: bool = False) -> str:
+    """Return the interval held against the limits, named by its use; ``verb`` for a sentence of its own."""
+    joint = " is " if verb else ", "
     side = {"greater": "upper bound", "less": "lower bound"}.get(analysis.question.alternative)
     if side is None:
-        return f"its {numbers.agreement_level} interval for agreement, {numbers.agreement}"
-    return f"its {numbers.agreement_level} {side}, {without_side(numbers.agreement)}"
+        return f"its {numbers.agreement_level} interval for agreement{joint}{numbers.agreement}"
+    if not without_side(numbers.agreement):
+        return f"it has no {numbers.agreement_level} {side}"
+    return f"its {numbers.agreement_level} {side}{joint}{without_side(numbers.agreement)}"
 
 
 def without_side(bounds: str) -> str:
     """Return the number of a one-sided interval; "" where it has no bound.
 
-    >>> without_side("at least 5.01 mg/L"), without_side("without bounds")
+    >>> without_side("at least 5.01 mg/L"), without_side("no bounds")
     ('5.01 mg/L', '')
     """
-    return bounds.removeprefix("at most ").removeprefix("at least ").removeprefix("without bounds")
+    return bounds.removeprefix("at most ").removeprefix("at least ").removeprefix("no bounds")
 
 
 def leaves_target_uncertainty_out(analysis: Analysis) -> bool:

@@ -1,10 +1,9 @@
 """The sentence for the report: one template for each verdict, filled with the facts of one analysis."""
 
-from meanlab.core.numbers import as_typed
 from meanlab.core.question import Question
 from meanlab.core.results import Analysis, Without
 from meanlab.wording.digits import estimate_of
-from meanlab.wording.names import PROCEDURE_NAMES, counted, short_noun
+from meanlab.wording.names import IN_TWO_UNITS, PROCEDURE_NAMES, counted, short_noun
 from meanlab.wording.numbers import level_text, number_text, p_text, plain_words, statistic_text, unit_text
 from meanlab.wording.phrases import (
     about_word,
@@ -25,7 +24,7 @@ from meanlab.wording.phrases import (
     sides_phrase,
     units_phrase,
 )
-from meanlab.wording.shown import Shown, shown, target_phrase
+from meanlab.wording.shown import Shown, in_sign, shown, target_phrase
 from meanlab.wording.templates import DECISION_RULES, FAMILIES, NOT_TESTABLE, TEMPLATES, VERDICT_WORDS
 
 
@@ -86,8 +85,9 @@ def agreement_sentence(analysis: Analysis) -> str:
         claim = f"Agreement within ± {numbers.limit} with {target}"
     else:
         claim = f"That the {parameter_of(analysis)} {_opposite_claim(analysis, target, numbers)}"
-    bound = bound_phrase(analysis, numbers)
-    return _filled(f"{claim} {state}: {bound} ({numbers.p_agreement} for agreement, level {numbers.level}).")
+    what = "agreement" if alternative == "two-sided" else "that"
+    bound = bound_phrase(analysis, numbers, verb=True)
+    return _filled(f"{claim} {state}: {bound} ({numbers.p_agreement} for {what}, level {numbers.level}).")
 
 
 def enough_sentence(analysis: Analysis) -> str:
@@ -110,7 +110,7 @@ def _difference_that_matters(analysis: Analysis, numbers: Shown) -> list[str]:
     power, given = analysis.power, analysis.question.difference_that_matters
     if given is None or power.power is None:
         return []
-    matters = unit_text(as_typed(given).strip(), numbers.unit)
+    matters = unit_text(in_sign(given, numbers.sign), numbers.unit)
     found, missed = (probability_text(value, numbers.sign) for value in (power.power, 1 - power.power))
     said = [f"The difference that matters, {matters}, would be found with {found} and missed with {missed}."]
     if power.readings_needed is not None:
@@ -145,18 +145,18 @@ def with_without_sentence(without: Without, question: Question | None = None, si
     if without.test is None:
         return f"{start}: not testable."
     p = p_text(without.test.p_value, without.test.significance, sign)
-    word = _word_of(without, question)
+    word = _word_of(without, question, sign)
     return f"{start}: {statistic_text(without.test, sign)}, {p}; verdict: {word}."
 
 
-def _word_of(without: Without, question: Question | None) -> str:
+def _word_of(without: Without, question: Question | None, sign: str) -> str:
     alternative = without.test.alternative if without.test is not None else "two-sided"
     limit, noun = "E", "target"
     key: str = without.verdict
     if question is not None:
         noun = short_noun(question.target_kind)
         if question.equivalence_limit is not None:
-            limit = unit_text(as_typed(question.equivalence_limit).strip(), question.unit)
+            limit = unit_text(in_sign(question.equivalence_limit, sign), question.unit)
             key = "agrees, with a limit" if key == "agrees" and alternative != "two-sided" else key
     template = VERDICT_WORDS.get((key, alternative), key)
     return template.format(limit=limit, noun=noun)
@@ -189,7 +189,7 @@ def _opposite_claim(analysis: Analysis, target: str, numbers: Shown) -> str:
 
 def not_testable_cause(analysis: Analysis) -> str:
     """Return the cause as the table knows it, from the row of the rule that decided."""
-    causes = {-1: "one preparation", 0: "undecided", 3: "one reading", 4: "identical"}
+    causes = {IN_TWO_UNITS: "two units", -1: "one preparation", 0: "undecided", 3: "one reading", 4: "identical"}
     if analysis.route.row == 1:
         return "fixed"
     return causes.get(analysis.route.row, "other")
@@ -227,7 +227,7 @@ def _beside(analysis: Analysis, numbers: Shown) -> str:
     step = analysis.summary.resolution
     beside = ""
     if not_testable_cause(analysis) == "identical" and step:
-        beside = f", beside half a step of {unit_text(number_text(step / 2, numbers.sign), numbers.unit)}"
+        beside = f"; half a step of the readings is {unit_text(number_text(step / 2, numbers.sign), numbers.unit)}"
     return f"The difference is {difference_phrase(numbers)}{beside}."
 
 

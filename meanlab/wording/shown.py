@@ -3,6 +3,7 @@
 from dataclasses import dataclass
 from decimal import Decimal
 from math import isclose, isfinite
+from typing import Any
 
 from meanlab.core.numbers import as_typed, places
 from meanlab.core.results import Analysis, Interval, Test, Uncertainty
@@ -25,6 +26,7 @@ from meanlab.wording.numbers import (
     p_text,
     percent_text,
     places_for,
+    plain_words,
     rank_number,
     signed_text,
     significant,
@@ -35,6 +37,7 @@ from meanlab.wording.numbers import (
 
 DIGITS_OF_S = 3
 UNDEFINED = "not defined"
+INCLUDES_FURTHER = ("z", "t")  # the procedures that take the uncertainties beside scatter in
 
 
 @dataclass(frozen=True)
@@ -99,15 +102,15 @@ def shown(analysis: Analysis) -> Shown:
         estimate="" if estimate is None else unit_text(decimal_text(estimate, digits, sign), unit),
         as_target=_as_target(analysis, estimate, digits, sign),
         s=_magnitude(analysis.summary.s, DIGITS_OF_S, sign, unit),
-        sigma="" if question.sigma is None else unit_text(as_typed(question.sigma).strip(), unit),
-        target=unit_text(question.target_as_typed, unit),
+        sigma="" if question.sigma is None else unit_text(in_sign(question.sigma, sign), unit),
+        target=unit_text(question.target_as_typed, plain_words(question.unit) or unit),
         difference=_difference(analysis, digits, sign, unit),
         percent=_percent(analysis, sign),
         interval=interval,
         interval_bare=bare,
         interval_level=interval_level,
         attained=attained,
-        limit="" if limit is None else unit_text(as_typed(limit).strip(), unit),
+        limit="" if limit is None else unit_text(in_sign(limit, sign), unit),
         agreement=agreement,
         agreement_bare=agreement_bare,
         agreement_level=agreement_level,
@@ -137,11 +140,15 @@ def critical_text(test: Test, sign: str = ".") -> str:
 
 
 def mean_line(analysis: Analysis, sign: str, unit: str) -> str:
-    """Return the line to copy, x̄ ± U with k from t at the effective ν; "" where the mean has no uncertainty.
+    """Return the line to copy, x̄ ± U with k from t at the effective ν; "" where the test is not one of z and t.
+
+    Beside another test it would contradict the interval that the panel shows.
 
     U belongs to the measured value alone: scatter and the laboratory's own uncertainty, not that of the target.
     """
-    budget, mean = analysis.uncertainty, analysis.summary.mean
+    budget, mean, test = analysis.uncertainty, analysis.summary.mean, analysis.test
+    if test is None or test.procedure not in INCLUDES_FURTHER:
+        return ""
     if budget is None or mean is None or not isfinite(budget.of_mean) or budget.of_mean <= 0:
         return ""
     digits = min(places_for(budget.of_mean), finest_places_for(mean))
@@ -153,6 +160,15 @@ def mean_line(analysis: Analysis, sign: str, unit: str) -> str:
 def _coverage(budget: Uncertainty, level: float, sign: str) -> str:
     degrees = "∞" if budget.of_mean_df is None else df_text(budget.of_mean_df, sign)
     return f"k = {decimal_text(budget.of_mean_k, 2, sign)}, {level_text(level, sign)}, ν = {degrees}"
+
+
+def in_sign(setting: Any, sign: str) -> str:
+    """Return a setting as typed, with the decimal sign of the readings.
+
+    >>> in_sign(" 0,050 ", ".")
+    '0.050'
+    """
+    return as_typed(setting).strip().replace(",", ".").replace(".", sign)
 
 
 def target_phrase(analysis: Analysis, numbers: Shown) -> str:

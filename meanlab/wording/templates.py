@@ -152,6 +152,7 @@ NOT_TESTABLE: Mapping[str, str] = {
         "{Readings}{of_subject}, mean {estimate}, cannot be tested against {target}: they come from one preparation, "
         "which counts as one independent unit, and the scatter between preparations is unknown. {beside}"
     ),
+    "two units": "{The_parameter} of {units}{of_subject} cannot be compared with {target}: {reason}.",
     "undecided": "{The_parameter} of {units}{of_subject} cannot be tested against {target}: {reason}.",
     "fixed": "{The_parameter} of {units}{of_subject}{value} cannot be tested against {target}: {reason}. {beside}",
     "other": "{The_parameter} of {units}{of_subject}{value} cannot be tested against {target}: {reason}. {beside}",

@@ -187,8 +187,8 @@ def test_agreement_says_what_is_shown_and_what_is_not_examined():
     """With a limit the 90 % interval is named by its use; without one agreement is said not to be examined."""
     within = agreement_sentence(built(question=asked(limit="0.05")))
     assert within == (
-        "Agreement within ± 0.05 mg/L with the certified value 5.000 mg/L is shown: its 90 % interval for agreement, "
-        "5.012 mg/L to 5.031 mg/L (p < 0.001 for agreement, level 5 %)."
+        "Agreement within ± 0.05 mg/L with the certified value 5.000 mg/L is shown: its 90 % interval for agreement "
+        "is 5.012 mg/L to 5.031 mg/L (p < 0.001 for agreement, level 5 %)."
     )
     assert "is not shown" in agreement_sentence(built(question=asked(limit="0.02")))
     assert agreement_sentence(built(question=asked())) == ("Agreement is not examined: no equivalence limit E was set.")
@@ -243,8 +243,8 @@ def test_text_of_the_user_stays_on_one_line_and_is_text():
 
 
 def test_left_out_readings_are_counted_in_the_sentence():
-    """A reading left out with its cause is said beside n."""
+    """A reading left out with its cause is said beside n, its cause in words."""
     readings = ReadingSet(tuple(NITRATE), unit="mg/L", left_out={3: "air bubble"})
     analysis = built(readings, asked())
     shown = replace(analysis, summary=replace(analysis.summary, n=11, left_out=1))
-    assert "11 readings (taken as independent; 1 left out, with cause)" in conclusion(shown)
+    assert "11 readings (taken as independent; 1 left out: air bubble)" in conclusion(shown)
