@@ -146,12 +146,11 @@ def _single_entries(kept: ReadingSet, whole: list[int]) -> list[tuple[list[int],
 def _mean_bounds(group: _Group, exponent: int, divisor: int) -> tuple[Any, Any]:
     """Return the bounds of a unit's mean: whole numbers, or ±infinity where a censored entry leaves an end open."""
     share = divisor // (len(group.whole) + len(group.censored))
-    low: Any = sum(group.whole) * share
-    high: Any = low
-    for entry in group.censored:
-        limit = None if entry.limit is None else scaled(entry.limit, exponent) * share
-        low = low + limit if entry.kind == "above" and limit is not None else -inf
-        high = high + limit if entry.kind == "below" and limit is not None else inf
+    limits = [entry.limit for entry in group.censored if entry.limit is not None]
+    end = (sum(group.whole) + sum(scaled(limit, exponent) for limit in limits)) * share
+    kinds = {entry.kind if entry.limit is not None else "open" for entry in group.censored}
+    low = end if kinds <= {"above"} else -inf
+    high = end if kinds <= {"below"} else inf
     return low, high
 
 

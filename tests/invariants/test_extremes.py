@@ -9,6 +9,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from meanlab import Complaint, Question, ReadingSet, analyse
+from meanlab.analysis.units import units_of
 
 mantissas = st.integers(-(10**10), 10**10).map(lambda whole: f"{whole / 10**9:.9f}")
 far_apart = st.builds(lambda mantissa, power: f"{mantissa}e{power}", mantissas, st.integers(-280, 280))
@@ -122,3 +123,26 @@ def test_exact_sums_that_would_be_too_long_are_a_complaint():
     texts = ("1e300", f"1.{'1' * 39}e-300", *["1"] * 32_000)
     with pytest.raises(Complaint, match="span 640 digits"):
         analyse(ReadingSet(texts), Question("1"))
+
+
+@pytest.mark.parametrize(
+    ("censored", "bounds"),
+    [
+        ([("below", "0.4")], (None, "0.3")),
+        ([("above", "0.4")], ("0.3", None)),
+        ([("below", "0.4"), ("below", "0.6")], (None, "0.4")),
+        ([("below", None)], (None, None)),
+        ([("below", "0.4"), ("above", "1e200")], (None, None)),
+        ([("above", "1e200"), ("below", "0.4")], (None, None)),
+    ],
+)
+def test_a_preparation_that_holds_a_limit_has_a_mean_between_bounds(censored, bounds):
+    """0.2 and "<0.4" have a mean of at most 0.3; what has no limit, or limits on both sides, leaves an end open."""
+    entries = tuple(
+        {"index": place, "kind": kind, "limit": limit, "preparation": "b"}
+        for place, (kind, limit) in enumerate(censored, 2)
+    )
+    readings = ReadingSet(("1.0", "0.2"), preparations=("a", "b"), censored=entries)
+    spans = units_of(readings, Question("0.3")).spans
+    found = spans.value(spans.lows[1]), spans.value(spans.highs[1])
+    assert found == tuple(None if bound is None else float(bound) for bound in bounds)
