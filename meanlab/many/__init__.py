@@ -7,9 +7,11 @@ import numpy as np
 import pandas as pd
 
 from meanlab.core.question import Question
+from meanlab.intake.numerals import Sign
 from meanlab.many.family import holm
 from meanlab.many.one_by_one import decided_alone
-from meanlab.many.samples import Samples, Targets, chosen_columns, codes_of, samples_of, targets_of
+from meanlab.many.partitions import Parts, judged_in_partitions
+from meanlab.many.samples import Samples, Targets, chosen_columns, samples_of, targets_of
 from meanlab.many.together import blocks
 
 __all__ = ["COLUMNS", "analyse_many", "holm"]
@@ -31,7 +33,7 @@ def analyse_many(
 ) -> pd.DataFrame:
     """Return one row a sample, in order of first appearance: the same numbers as ``analyse`` one by one.
 
-    table        pandas DataFrame: long, one reading a row, or wide, the replicates of a row in several columns
+    table        pandas or Dask DataFrame: long, one reading a row, or wide, the replicates of a row in several columns
     value        column of the readings (numbers, or texts as the intake reads them: "5,02", "<0.05", "n.d."), or a list
                  of columns that are read across each row
     sample       name of the column, or list of names, that tells the samples apart
@@ -49,11 +51,20 @@ def analyse_many(
     keys, values = ([*named] if isinstance(named, list | tuple) else [named] for named in (sample, value))
     further = [one for one in (preparation, None if isinstance(targets, Mapping) else targets) if one is not None]
     chosen = chosen_columns(table, [*keys, *values, *further])
-    samples = samples_of(chosen, values, keys, preparation)
-    aims = targets_of(chosen, codes_of(chosen, keys)[0], samples, question, targets)
-    columns = _columns(samples, question, aims, progress)
-    results = pd.concat([samples.labels.rename(columns=_free_name), _with_family(columns, question.alpha)], axis=1)
-    results.attrs["remarks"] = list(samples.cells.remarks)
+
+    def judge(part: pd.DataFrame, told: Told | None = None, decimal: Sign | None = None) -> Parts:
+        samples = samples_of(part, values, keys, preparation, decimal)
+        columns = _columns(samples, question, targets_of(part, samples, question, targets), told)
+        return Parts(samples.labels.rename(columns=_free_name), pd.DataFrame(columns), samples)
+
+    if hasattr(chosen, "map_partitions"):
+        labels, columns, remarks = judged_in_partitions(chosen, keys, values, judge)
+        _tell(progress, len(labels), len(labels))
+    else:
+        found = judge(chosen if isinstance(chosen, pd.DataFrame) else chosen.compute(), progress)
+        labels, columns, remarks = found.labels, found.columns, found.samples.cells.remarks
+    results = pd.concat([labels, _with_family(columns, question.alpha)], axis=1)
+    results.attrs["remarks"] = list(remarks)
     return results
 
 
@@ -84,7 +95,7 @@ def _columns(samples: Samples, question: Question, targets: Targets, progress: T
         found, reason = decided_alone(samples, place, question, targets)
         for name, one in found.items():
             columns[name][place] = np.nan if one is None and name in DOUBLES else one
-        _add_flags(columns["flags"], np.array([place]), np.array([reason], dtype=object))
+        columns["flags"][place] = _joined(columns["flags"][place], reason)
         done += 1
         if done % TOLD_EACH == 0 or done == count:
             _tell(progress, done, count)
@@ -98,12 +109,17 @@ def _tell(progress: Told | None, done: int, count: int) -> None:
 
 def _add_flags(flags: np.ndarray, places: np.ndarray, reasons: np.ndarray) -> None:
     for place, reason in zip(places[reasons != ""], reasons[reasons != ""], strict=True):
-        flags[place] = f"{flags[place]}; {reason}" if flags[place] else reason
+        flags[place] = _joined(flags[place], reason)
 
 
-def _with_family(columns: dict[str, np.ndarray], alpha: float) -> pd.DataFrame:
+def _joined(flags: str, reason: str) -> str:
+    return f"{flags}; {reason}" if flags and reason else flags or reason
+
+
+def _with_family(columns: pd.DataFrame, alpha: float) -> pd.DataFrame:
     """Return the columns in their order with Holm's p, and a flag where it takes a rejection back."""
-    p, adjusted = columns["p"], holm(columns["p"])
+    p = columns["p"].to_numpy(dtype=float)
+    adjusted, flags = holm(p), columns["flags"].to_numpy(dtype=object, copy=True)
     lost = np.flatnonzero((p < alpha) & (adjusted >= alpha))
-    _add_flags(columns["flags"], lost, np.full(len(lost), "not after Holm", dtype=object))
-    return pd.DataFrame({name: adjusted if name == "p_holm" else columns[name] for name in COLUMNS})
+    _add_flags(flags, lost, np.full(len(lost), "not after Holm", dtype=object))
+    return columns.assign(p_holm=adjusted, flags=flags)[list(COLUMNS)]

@@ -16,6 +16,7 @@ from meanlab.core.numbers import MOST_COMPUTED_DIGITS, as_typed, exact
 from meanlab.core.readings import Censored
 from meanlab.intake.column import Given, Read, read_column
 from meanlab.intake.found import Special
+from meanlab.intake.numerals import Sign
 
 MOST_PLACES = 15
 MOST_DIGITS = 15  # that a double always carries
@@ -44,7 +45,7 @@ class Cells:
     given: Sequence[Any]
     special: dict[int, Special] = field(default_factory=dict)
     texts: dict[int, str] = field(default_factory=dict)
-    sign: str = "."
+    sign: Sign = "."
     remarks: tuple[str, ...] = ()
 
     def decimal(self, place: int) -> Decimal:
@@ -62,15 +63,16 @@ class Cells:
         raise ReadingsComplaint(f'"{shown[:40]}" {special.role}', "readings")
 
 
-def cells_of(columns: Sequence[pd.Series], place_of: Callable[[int], str]) -> Cells:
-    """Return the entries of one column, or of several read across each row."""
-    if all(_is_numeric(column) for column in columns):
+def cells_of(columns: Sequence[pd.Series], place_of: Callable[[int], str], decimal: Sign | None = None) -> Cells:
+    """Return the entries of one column, or of several read across each row; ``decimal`` where the sign is known."""
+    if all(is_numeric(column) for column in columns):
         return _stored([_as_doubles(column) for column in columns], columns)
     entries = [entry for row in zip(*(column.tolist() for column in columns), strict=True) for entry in row]
-    return _written(entries, place_of)
+    return _written(entries, place_of, decimal)
 
 
-def _is_numeric(column: pd.Series) -> bool:
+def is_numeric(column: pd.Series) -> bool:
+    """Tell whether a column holds stored numbers and nothing else."""
     kind = column.dtype
     return pd.api.types.is_numeric_dtype(kind) and not (
         pd.api.types.is_bool_dtype(kind) or pd.api.types.is_complex_dtype(kind)
@@ -145,10 +147,11 @@ def _computed(whole: np.ndarray, places: np.ndarray) -> np.ndarray:
     return computed
 
 
-def _written(entries: list[Any], place_of: Callable[[int], str]) -> Cells:
+def _written(entries: list[Any], place_of: Callable[[int], str], decimal: Sign | None) -> Cells:
     """Texts, or texts and stored numbers mixed, by the grammar of an entry."""
-    texts, kinds = zip(*map(_text_and_kind, entries), strict=True) if entries else ((), ())
-    given = Given(list(texts), place_of, None if set(kinds) <= {"text"} else list(kinds))
+    both = list(map(_text_and_kind, entries))
+    texts, kinds = [text for text, _ in both], [kind for _, kind in both]
+    given = Given(texts, place_of, kinds if set(kinds) - {"text"} else None, decimal=decimal)
     found = read_column(given)
     if found.sign.open:  # all of them could be grouped thousands: read as single numbers are
         comma = any("," in text for text in texts)
@@ -156,6 +159,13 @@ def _written(entries: list[Any], place_of: Callable[[int], str]) -> Cells:
     if found.refusal:
         raise ReadingsComplaint(found.refusal, "readings")
     return _from_read(entries, texts, kinds, found)
+
+
+def sign_of(column: pd.Series) -> Sign | None:
+    """Return the decimal sign of a column of texts, None where it holds stored numbers alone."""
+    if is_numeric(column):
+        return None
+    return cells_of([column.drop_duplicates()], lambda place: f"entry {place + 1}").sign
 
 
 def _text_and_kind(entry: Any) -> tuple[str, str]:
@@ -186,6 +196,5 @@ def _from_read(entries: list[Any], texts: Sequence[str], kinds: Sequence[str], f
     stored = np.array([one == "number" for one in kinds], dtype=bool)
     computed = _computed(whole, places) & stored & np.array([isinstance(one, float) for one in entries], dtype=bool)
     plain_texts = dict(zip(readings.tolist(), found.numbers, strict=True))
-    return Cells(
-        kind, numbers, places, computed, entries, found.special, plain_texts, found.sign.sign, tuple(found.warnings)
-    )
+    remarks = tuple(found.warnings)
+    return Cells(kind, numbers, places, computed, entries, found.special, plain_texts, found.sign.sign, remarks)

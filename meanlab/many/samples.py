@@ -12,6 +12,7 @@ import pandas as pd
 from meanlab.core.complaints import QuestionComplaint, ReadingsComplaint
 from meanlab.core.numbers import exact_setting
 from meanlab.core.question import Question
+from meanlab.intake.numerals import Sign
 from meanlab.many.cells import MISSING, ODD, Cells, cells_of
 
 
@@ -20,6 +21,7 @@ class Samples:
     """The samples of a table in order of first appearance.
 
     labels        one row a sample, with the columns that tell the samples apart
+    codes         the number of the sample of each row of the table
     cells         the entries, one after the other
     order         places of the entries that are not missing, sample by sample
     counts        how many those are in each sample, shape (samples,)
@@ -29,6 +31,7 @@ class Samples:
     """
 
     labels: pd.DataFrame
+    codes: np.ndarray
     cells: Cells
     order: np.ndarray
     counts: np.ndarray
@@ -50,15 +53,17 @@ class Samples:
         return [int(place) for place in self.order[start : start + self.counts[sample]]]
 
 
-def samples_of(table: pd.DataFrame, values: Sequence[Hashable], keys: list[Hashable], preparation: Any) -> Samples:
+def samples_of(
+    table: pd.DataFrame, values: Sequence[Hashable], keys: list[Hashable], preparation: Any, decimal: Sign | None
+) -> Samples:
     """Return the samples of a table whose readings stand in one column, or in several across each row."""
     wide = len(values)
 
     def place_of(entry: int) -> str:
         return f"row {entry // wide + 1}" + (f', column "{values[entry % wide]}"' if wide > 1 else "")
 
-    cells = cells_of([table[name] for name in values], place_of)
-    codes, first = codes_of(table, keys)
+    cells = cells_of([table[name] for name in values], place_of, decimal)
+    codes, first = _codes_of(table, keys)
     of_entries = np.repeat(codes, wide) if wide > 1 else codes
     count = len(first)
     absent = cells.kind == MISSING
@@ -68,6 +73,7 @@ def samples_of(table: pd.DataFrame, values: Sequence[Hashable], keys: list[Hasha
     labels = None if preparation is None else np.repeat(_labels(table[preparation]), wide)
     return Samples(
         table[keys].iloc[first].reset_index(drop=True),
+        codes,
         cells,
         order,
         np.bincount(of_entries, minlength=count) - missing,
@@ -77,7 +83,7 @@ def samples_of(table: pd.DataFrame, values: Sequence[Hashable], keys: list[Hasha
     )
 
 
-def codes_of(table: pd.DataFrame, keys: list[Hashable]) -> tuple[np.ndarray, np.ndarray]:
+def _codes_of(table: pd.DataFrame, keys: list[Hashable]) -> tuple[np.ndarray, np.ndarray]:
     """Return the number of the sample of each row, in order of first appearance, and the first row of each sample."""
     if len(keys) == 1:
         codes = pd.factorize(table[keys[0]], use_na_sentinel=False)[0]
@@ -127,11 +133,7 @@ class Targets:
 
 
 def targets_of(
-    table: pd.DataFrame,
-    codes: np.ndarray,
-    samples: Samples,
-    question: Question,
-    targets: Mapping[Any, Any] | Hashable | None,
+    table: pd.DataFrame, samples: Samples, question: Question, targets: Mapping[Any, Any] | Hashable | None
 ) -> Targets:
     """Return the target of each sample: that of the question, one of a mapping, or the one in its rows of a column."""
     if targets is None:
@@ -142,7 +144,7 @@ def targets_of(
         given = [targets.get(key[0] if one else key) for key in keys]
         code, distinct = pd.factorize(pd.Series(given, dtype=object))
         return _targets(code, list(distinct), "it has no target; give each sample its own.")
-    of_rows, distinct = pd.factorize(table[targets])
+    codes, (of_rows, distinct) = samples.codes, pd.factorize(table[targets])
     code, known = np.full(len(samples), -1), of_rows >= 0
     code[codes[known][::-1]] = of_rows[known][::-1]
     differing = np.bincount(codes[known & (of_rows != code[codes])], minlength=len(samples)) > 0
@@ -162,7 +164,7 @@ def _exact(given: Any) -> Decimal | None:
         return None
 
 
-def chosen_columns(table: Any, named: Sequence[Hashable]) -> pd.DataFrame:
+def chosen_columns(table: Any, named: Sequence[Hashable]) -> Any:
     """Return the columns that are named; raises ReadingsComplaint for one that is not there, or twice."""
     columns = list(table.columns)
     there = ", ".join(map(str, columns))
@@ -171,5 +173,4 @@ def chosen_columns(table: Any, named: Sequence[Hashable]) -> pd.DataFrame:
             raise ReadingsComplaint(f'There is no column "{name}" in the table; it has {there}.')
         if columns.count(name) > 1:
             raise ReadingsComplaint(f'There is more than one column "{name}" in the table: give each its own name.')
-    chosen = table[list(dict.fromkeys(named))]
-    return chosen if isinstance(chosen, pd.DataFrame) else chosen.compute()
+    return table[list(dict.fromkeys(named))]
