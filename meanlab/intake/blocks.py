@@ -148,18 +148,15 @@ def _block(table: Table, above: list[int], start: int, end: int) -> Block:
     rows = table.rows
     if isinstance(rows, OneColumn) and rows.plain_from <= start and end == len(rows):
         return Block(table, heading, units, group, range(start, end))
+    if isinstance(rows, OneColumn):
+        return Block(table, heading, units, group, *_one_column(rows.texts, heading, range(start, end)))
     again: list[int] = []
     summaries: list[int] = []
     data: list[int] = []
     heading_cells = list(rows[heading]) if heading is not None else None
-    figure_follows = False
     for row in range(start, end):
         cells = rows[row]
         if not cells or not any(cells):
-            continue
-        if figure_follows or (len(cells) == 1 and data and cells[0][0].isalpha() and is_summary(cells[0])):
-            summaries.append(row)
-            figure_follows = not figure_follows
             continue
         if cells == heading_cells:
             again.append(row)
@@ -170,6 +167,29 @@ def _block(table: Table, above: list[int], start: int, end: int) -> Block:
     if units is not None and again:
         data = [row for row in data if list(rows[row]) != list(rows[units])]
     return Block(table, heading, units, group, data, tuple(summaries), tuple(again))
+
+
+def _one_column(
+    texts: Sequence[str], heading: int | None, places: range
+) -> tuple[Sequence[int], tuple[int, ...], tuple[int, ...]]:
+    """Rows of data, of computed figures and of the heading again in a table with one entry a line."""
+    data: list[int] = [row for row in places if texts[row]]
+    different = set(texts[places.start : places.stop])
+    name = texts[heading] if heading is not None else ""
+    figures = {text for text in different if text[:1].isalpha() and is_summary(text)}
+    if not figures and (not name or name not in different):
+        return data, (), ()
+    again: list[int] = []
+    summaries: list[int] = []
+    kept: list[int] = []
+    figure_follows = False
+    for row in data:
+        if figure_follows or (kept and texts[row] in figures):
+            summaries.append(row)
+            figure_follows = not figure_follows
+        else:
+            (again if name and texts[row] == name else kept).append(row)
+    return kept, tuple(summaries), tuple(again)
 
 
 def _heading_rows(table: Table, above: list[int]) -> tuple[int | None, int | None, int | None]:

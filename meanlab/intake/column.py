@@ -1,10 +1,8 @@
 """One column of entries: its decimal sign, its unit, and each entry as a number or as what it is instead."""
 
-import re
 from collections import Counter
-from collections.abc import Callable, Hashable, Iterable, Sequence
-from dataclasses import dataclass, field, replace
-from itertools import compress
+from collections.abc import Hashable, Iterator, Sequence
+from dataclasses import replace
 from typing import Any
 
 from meanlab.core.complaints import ReadingsComplaint
@@ -13,95 +11,45 @@ from meanlab.intake import sayings
 from meanlab.intake.characters import one_spelling
 from meanlab.intake.entry import Kind, Parsed, parse
 from meanlab.intake.found import Special
-from meanlab.intake.long_column import ODD_BY_COMMA, ODD_BY_POINT
-from meanlab.intake.numerals import FARTHEST, DecimalSign, Sign, decimal_sign, leaning, under
+from meanlab.intake.given import Given, Read, codes_among
+from meanlab.intake.numerals import FARTHEST, DecimalSign, decimal_sign, leaning, under
+from meanlab.intake.plain_column import read_plain
 from meanlab.intake.suffixes import settled
 from meanlab.intake.units import same_unit
 
-_SURE_COMMA = re.compile(r",(?!\d{3}$)|^[+-]?(?:0|\d{4,}),", re.ASCII | re.MULTILINE)
-_SURE_POINT = re.compile(r"\.(?!\d{3}$)|^[+-]?(?:0|\d{4,})\.", re.ASCII | re.MULTILINE)
 _BELOW_MARKS = ("<", "<=", "=<", "≤", "u", "nd")
 _ABOVE_MARKS = (">", ">=", "=>", "≥")
-_CODES = frozenset({"-9", "-99", "-999", "-9999", "-99999", "-999.9", "-999.99", "9999", "99999", "-999.0", "-9999.0"})
-
-
-@dataclass(frozen=True)
-class Given:
-    """A column before it is read.
-
-    texts       each entry as it stands in the text or cell
-    kinds       the kind of each cell, None where all are text (`grid.Cell`)
-    computed    places of stored numbers with more digits than an instrument shows
-    qualifiers  "<", ">" or "" for each entry, from a column of their own
-    decimal     the sign that was chosen, ``hint`` the one that other columns show
-    place_of    the place of an entry in words
-    """
-
-    texts: Sequence[str]
-    place_of: Callable[[int], str]
-    kinds: Sequence[str] | None = None
-    computed: frozenset[int] = frozenset()
-    qualifiers: Sequence[str] | None = None
-    decimal: Sign | None = None
-    hint: Sign | None = None
-    heading_unit: str | None = None
-
-
-@dataclass
-class Read:
-    """What a column came to; ``refusal`` is the reason why nothing may be computed."""
-
-    numbers: list[str] = field(default_factory=list)
-    special: dict[int, Special] = field(default_factory=dict)
-    sign: DecimalSign = field(default_factory=lambda: DecimalSign("."))
-    unit: str | None = None
-    warnings: list[str] = field(default_factory=list)
-    notes: list[str] = field(default_factory=list)
-    refusal: str = ""
-    computed: bool = False
 
 
 def read_column(given: Given) -> Read:
     """Return what each entry of a column is; the decimal sign and the unit are decided over all of them."""
-    return _read_plain(given) or _read_any(given)
+    return read_plain(given) or _read_any(given)
 
 
-def _read_plain(given: Given) -> Read | None:
-    """The short way for a long column of numbers with one decimal sign and nothing else."""
-    if given.kinds is not None or given.qualifiers is not None or not given.texts or given.decimal:
-        return None
-    text = "\n".join(given.texts)
-    if not text.isascii() or text.count("\n") != len(given.texts) - 1:
-        return None
-    sign: Sign
-    if not ODD_BY_POINT.search(text):
-        if given.hint == "," and "." in text:
-            return None
-        if 0 < text.count(".") < len(given.texts) and not _SURE_POINT.search(text):
-            return None  # 1.234 beside 987: perhaps thousands marks
-        sign, numbers = ("." if "." in text or given.hint is None else given.hint), list(given.texts)
-    elif _SURE_COMMA.search(text) and not ODD_BY_COMMA.search(text):
-        sign, numbers = ",", text.replace(",", ".").split("\n")
-    else:
-        return None
-    found = Read(numbers, sign=_plain_sign(given.texts, sign), unit=given.heading_unit)
-    found.warnings.extend(_codes_among(given, Counter(numbers) if "9" in text else {}))
-    return found
+class _Each(Sequence[Parsed]):
+    """What each entry of a column is, by the different entries that stand in it."""
 
+    def __init__(self, keys: Sequence[Hashable], known: dict[Hashable, Parsed]) -> None:
+        self.keys, self.known = keys, known
 
-def _plain_sign(texts: Sequence[str], sign: Sign) -> DecimalSign:
-    sure = next((text for text in texts[:1000] if leaning(text.lstrip("+-")) == sign), "")
-    return DecimalSign(
-        sign, f'decimal {"comma" if sign == "," else "point"}: "{sure}" cannot be read otherwise' if sure else ""
-    )
+    def __len__(self) -> int:
+        return len(self.keys)
+
+    def __getitem__(self, i: Any) -> Any:
+        return self.known[self.keys[i]]
+
+    def __iter__(self) -> Iterator[Parsed]:
+        return map(self.known.__getitem__, self.keys)
 
 
 def _read_any(given: Given) -> Read:
-    keys: Sequence[Any] = given.texts if given.kinds is None else list(zip(given.texts, given.kinds, strict=True))
-    known: dict[Hashable, Parsed] = {
-        key: _parsed(*(key if given.kinds is not None else (key, "text"))) for key in dict.fromkeys(keys)
-    }
+    keys: Sequence[Any] = given.texts
+    if given.kinds is not None:
+        keys = list(zip(given.texts, given.kinds, strict=True))
+    if given.qualifiers is not None:
+        keys = list(zip(keys, map(str.strip, given.qualifiers), strict=True))
     counts = Counter(keys)
+    known = {key: _parsed(*_text_and_kind(key, given)) for key in counts}
     known = settled(known, counts, given.heading_unit)
     found = Read()
     found.sign = _sign(given, known)
@@ -109,15 +57,22 @@ def _read_any(given: Given) -> Read:
     typical = _typical(known, numbers, found.sign)
     for key, one in list(known.items()):
         known[key], numbers[key] = _checked(one, numbers[key], found.sign, typical, _is_text(key, given))
-    each = _qualified([known[key] for key in keys], given)
-    _collect(found, each, [numbers[key] for key in keys], given)
-    found.refusal = _units(found, each, given) or _bullets(each)
-    _remark(found, each, given, known.values())
+    if given.qualifiers is not None:
+        known = {key: _qualified(one, key[1]) for key, one in known.items() if isinstance(key, tuple)}
+    each = _Each(keys, known)
+    _collect(found, each, numbers, given)
+    found.refusal = _units(found, each, given) or _bullets(known)
+    _remark(found, each, given)
     return found
 
 
+def _text_and_kind(key: Any, given: Given) -> tuple[str, str]:
+    plain = key if given.qualifiers is None else key[0]
+    return (plain, "text") if given.kinds is None else plain
+
+
 def _is_text(key: Any, given: Given) -> bool:
-    return given.kinds is None or key[1] == "text"
+    return _text_and_kind(key, given)[1] == "text"
 
 
 def _parsed(text: str, kind: str) -> Parsed:
@@ -177,42 +132,38 @@ def _checked(
     return one, number
 
 
-def _qualified(each: list[Parsed], given: Given) -> list[Parsed]:
-    """Entries whose "<" or ">" stands in a column of its own."""
-    if given.qualifiers is None:
-        return each
-    found = []
-    for one, mark in zip(each, given.qualifiers, strict=True):
-        word = one_spelling(mark).strip().casefold()
-        kind: Kind | None = "below" if word in _BELOW_MARKS else "above" if word in _ABOVE_MARKS else None
-        if not word or word == "=" or one.kind != "reading":
-            found.append(one)
-        elif kind:
-            found.append(replace(one, kind=kind, sort=""))
-        else:
-            found.append(replace(one, remark=mark.strip(), sort="flag"))
-    return found
+def _qualified(one: Parsed, mark: str) -> Parsed:
+    """An entry whose "<" or ">" stands in a column of its own."""
+    word = one_spelling(mark).strip().casefold()
+    kind: Kind | None = "below" if word in _BELOW_MARKS else "above" if word in _ABOVE_MARKS else None
+    if not word or word == "=" or one.kind != "reading":
+        return one
+    return replace(one, kind=kind, sort="") if kind else replace(one, remark=mark, sort="flag")
 
 
-def _collect(found: Read, each: list[Parsed], numbers: list[str | None], given: Given) -> None:
-    plain = [one.kind == "reading" and not one.sort for one in each]
-    reading = [one.kind == "reading" for one in each]
-    found.numbers = [number or "" for number in compress(numbers, reading)]
-    for i in compress(range(len(each)), (not one for one in plain)):
-        one, number = each[i], numbers[i] or ""
-        limit = sayings.as_written(number, found.sign.sign)
-        found.special[i] = Special(one.kind, number, sayings.role(one, limit))
-    found.computed = bool(given.computed) or any(
-        looks_computed(exact(number)) for number in found.numbers if len(number) > 12
-    )
+def _collect(found: Read, each: _Each, numbers: dict[Any, str | None], given: Given) -> None:
+    roles = {
+        key: Special(one.kind, number, sayings.role(one, sayings.as_written(number, found.sign.sign)))
+        for key, one in each.known.items()
+        if (one.kind != "reading" or one.sort) and (number := numbers[key] or "") is not None
+    }
+    found.special = {i: roles[key] for i, key in enumerate(each.keys) if key in roles} if roles else {}
+    readings = map(numbers.__getitem__, each.keys)
+    if all(one.kind == "reading" for one in each.known.values()):
+        found.numbers = [number or "" for number in readings]
+    else:
+        found.numbers = [number or "" for number, one in zip(readings, each, strict=True) if one.kind == "reading"]
+    different = [numbers[key] or "" for key, one in each.known.items() if one.kind == "reading"]
+    found.computed = bool(given.computed) or any(looks_computed(exact(one)) for one in different if len(one) > 12)
 
 
-def _units(found: Read, each: list[Parsed], given: Given) -> str:
+def _units(found: Read, each: _Each, given: Given) -> str:
     """Decide the unit; return the reason for a refusal where two units clash."""
     first: dict[str, int] = {}
-    for i, one in enumerate(each):
-        if one.unit and one.kind != "unread":
-            first.setdefault(one.unit, i)
+    if any(one.unit for one in each.known.values()):
+        for i, one in enumerate(each):
+            if one.unit and one.kind != "unread":
+                first.setdefault(one.unit, i)
     units = list(first)
     if given.heading_unit:
         odd = next((unit for unit in units if not same_unit(unit, given.heading_unit)), None)
@@ -228,17 +179,17 @@ def _units(found: Read, each: list[Parsed], given: Given) -> str:
     return ""
 
 
-def _bullets(each: list[Parsed]) -> str:
-    gaps = [one for one in each if one.kind == "reading"]
-    if len(gaps) > 1 and all(one.sort == "gap" for one in gaps) and not any(one.unit for one in gaps):
-        return (
-            'Every line begins with "- ": a list mark or a minus sign? Take the marks away, or write the minus '
-            "close to its number."
-        )
-    return ""
+def _bullets(known: dict[Any, Parsed]) -> str:
+    readings = [one for one in known.values() if one.kind == "reading"]
+    if len(readings) < 2 or any(one.sort != "gap" or one.unit for one in readings):
+        return ""
+    return (
+        'Every line begins with "- ": a list mark or a minus sign? Take the marks away, or write the minus close to '
+        "its number."
+    )
 
 
-def _remark(found: Read, each: list[Parsed], given: Given, known: Iterable[Parsed]) -> None:
+def _remark(found: Read, each: _Each, given: Given) -> None:
     """Say everything the technician must see about single entries."""
     groups: dict[str, list[int]] = {}
     for i in found.special:
@@ -252,16 +203,6 @@ def _remark(found: Read, each: list[Parsed], given: Given, known: Iterable[Parse
         found.warnings.append(sayings.mixed_signs(given, each, found.sign.sign))
     if found.sign.thousands:
         found.warnings.extend(filter(None, [sayings.thousands(given, each, found.sign.sign)]))
-    if any(" " in one.numeral for one in known):
+    if any(" " in one.numeral for one in each.known.values()):
         found.warnings.extend(sayings.blank_groups(given, each))
-    found.warnings.extend(_codes_among(given, Counter(found.numbers)))
-
-
-def _codes_among(given: Given, counts: Counter[str] | dict[str, int]) -> list[str]:
-    """Numbers such as −999 that programs write for "no value", where they stand far from the others."""
-    codes = [code for code in _CODES if code in counts]
-    if not codes or len(counts) < 2:
-        return []
-    others = [abs(float(number)) for number in counts if number not in _CODES]
-    far = [code for code in codes if others and abs(float(code)) > 5 * max(others)]
-    return [sayings.code_for_nothing(given, code) for code in far]
+    found.warnings.extend(sayings.code_for_nothing(code) for code in codes_among(found.numbers))

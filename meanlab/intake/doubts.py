@@ -3,7 +3,7 @@
 from meanlab.intake.blocks import Block
 from meanlab.intake.characters import shown
 from meanlab.intake.choosing import Picked
-from meanlab.intake.column import Given, Read
+from meanlab.intake.given import Given, Read
 from meanlab.intake.table import filled_width
 
 MOST_ROWS = 20_000

@@ -34,10 +34,11 @@ POWER = (
     r"|\s?[x×X*·⋅]\s?10\s?(?:(?:\^|\*\*)\s?\(?(?P<e3>[+-]?\d{1,4})\)?|(?P<e4>[+-]\d{1,4}))(?!\d))"
 )
 _READING = re.compile(rf"(?P<sign>[+-](?P<gap>\s*))?(?P<numeral>{NUMERAL})(?:{POWER})?", re.ASCII)
+_BARE = re.compile(r"[+-]?\d{1,30}(?:[.,]\d{1,30})?", re.ASCII)
 _LOST_POWER = re.compile(rf"[+-]?(?:{NUMERAL})\s?[x×*·⋅]\s?10\d{{1,2}}(?!\d)", re.ASCII)
 _ERROR_CODE = re.compile(r"err(?:or)?[ -]?\d{0,4}|e\d{2,3}", re.IGNORECASE | re.ASCII)
 _RANGE = re.compile(
-    rf"[<>≤≥~]?\s*[+-]?(?:{NUMERAL})\s*(?:-|\.\.+|…|\bto\b|\bbis\b)\s*(?:{NUMERAL})(?:\s?\D*)", re.ASCII
+    rf"[<>≤≥~]?\s*[+-]?(?:{NUMERAL})(?:-|\s-\s|\s*(?:\.\.+|…|\bto\b|\bbis\b)\s*)(?:{NUMERAL})(?:\s?\D*)", re.ASCII
 )
 _IN_BRACKETS = re.compile(rf"\([+-]?(?:{NUMERAL})\)", re.ASCII)
 _UNIT_IN_BRACKETS = re.compile(r"[(\[]([^()\[\]]{2,})[)\]]")
@@ -63,7 +64,7 @@ _MONTH = (
     r"(?:jan|feb|mar|apr|may|jun|jul|aug|sep|sept|oct|nov|dec|mär|mai|okt|dez|january|february|march|april|june|july|"
     r"august|september|october|november|december|januar|februar|märz|juni|juli|oktober|dezember)\.?"
 )
-_CLOCK = r"(?:[01]?\d|2[0-4]):[0-5]\d(?::[0-5]\d(?:[.,]\d+)?)?(?:\s?[ap]\.?m\.?)?(?:Z|\s?[+-]\d\d:?\d\d|\s?UTC)?"
+_CLOCK = r"(?:[01]?\d|2[0-4]):[0-5]\d(?::[0-5]\d(?:[.,]\d+)?)?(?:\s?[ap]\.?m\.?)?(?:Z|[+-]\d\d:?\d\d|\s?UTC|\s?GMT)?"
 _DAY = (
     r"(?:(?:19|20)\d\d[-/.](?:0?[1-9]|1[0-2])[-/.](?:0?[1-9]|[12]\d|3[01])"
     r"|(?:0?[1-9]|[12]\d|3[01])[/](?:0?[1-9]|[12]\d|3[01])[/](?:(?:19|20)?\d\d)"
@@ -120,6 +121,8 @@ def parse(text: str) -> Parsed:
     >>> parse("< 0.05 mg/L").kind, parse("12:30").sort, parse("5.02 ± 0.03").numeral
     ('below', 'time', '5.02')
     """
+    if _BARE.fullmatch(text):
+        return Parsed("reading", text.lstrip("+-"), text[0] == "-")
     if len(text) > MOST_CHARACTERS:
         return Parsed("unread", sort="long")
     if len(text) > 1 and text[0] in _QUOTES:

@@ -112,7 +112,8 @@ class Intake:
     @cached_property
     def values(self) -> list[float]:
         """The readings in reading order, each rounded once to double."""
-        return [value if value else 0.0 for value in map(float, self.numbers)]
+        values = list(map(float, self.numbers))
+        return [value if value else 0.0 for value in values] if 0.0 in values else values
 
     @cached_property
     def exact_values(self) -> tuple[Decimal, ...]:

@@ -9,15 +9,17 @@ from meanlab.intake.entry import STAMP, Parsed, parse
 from meanlab.intake.words import is_summary
 
 _LIST_NUMBER = re.compile(
-    r"(?:\(\d{1,6}\)|\[\d{1,6}\]|#\s?\d{1,6}[.):]?|(?:no|nr)\.?\s?\d{1,6}[.):]?|\d{1,6}\s?[.):](?=\s)|\d{1,6}\)|[A-Za-z]\)|[A-Za-z]\.(?=\s))\s*",
+    r"(?:\(\d{1,6}\)|\[\d{1,6}\]|#\s?\d{1,6}[.):]?|(?:no|nr)\.?\s?\d{1,6}[.):]?"
+    r"|\d{1,6}\s?[.):](?=\s|$)|\d{1,6}\)|[A-Za-z]\)|[A-Za-z]\.(?=\s))\s*",
     re.IGNORECASE | re.ASCII,
 )
 _BULLET = re.compile(r"[•·‣▪◦*]\s+")
 _STAMP = re.compile(rf"[\[(]?(?:{STAMP})[\])]?(?:\s*[,;|=]\s*|\s+|:\s+)(?=\S)", re.IGNORECASE | re.ASCII)
-_LABEL = re.compile(
-    r"(?P<label>(?:[^\W\d_]|\d{1,8}[-/]\d|\d+[A-Za-z])[^\s:=±,;|<>]*(?:\s[^\s:=±,;|<>]+){0,3}?)"
-    r"(?P<mark>\s*[:=]\s*|\s+)(?P<entry>[-+<>≤≥]?.*)"
-)
+_STAMP_ALONE = re.compile(rf"[\[(]?(?:{STAMP})[\])]?[,;|=:]?\s", re.IGNORECASE | re.ASCII)
+_PATTERNS = {"number": _LIST_NUMBER, "stamp": _STAMP_ALONE}
+_BARE_NUMBER = re.compile(r"-?\d+(?:[.,]\d+)?", re.ASCII)
+_QUICK_LABEL = re.compile(r"[^\W\d_][\w#/-]*(?: [\w#/-]+){0,2}")
+_QUICK = Parsed("reading")
 _DECIMALS = re.compile(r"\d[.,]\d")
 MOST_LABEL = 32
 
@@ -52,6 +54,24 @@ def take_apart(line: str) -> list[Labelled]:
     if not found:
         found.extend(_by_label(line))
     return found
+
+
+def quickly_apart(line: str, style: str) -> Labelled | None:
+    """Return the commonest beginnings of a known style before a bare number; None where a closer look is needed.
+
+    >>> quickly_apart("QC-1 5.02", "label").entry
+    '5.02'
+    """
+    before, blank, entry = line.rpartition(" ")
+    if not blank or not _BARE_NUMBER.fullmatch(entry):
+        return None
+    before = before.strip()
+    if style in _PATTERNS:
+        whole = _PATTERNS[style].fullmatch(before + " " if style == "stamp" else before)
+        return Labelled(style, before, entry, _QUICK) if whole else None
+    bare = before.rstrip(" :=")
+    plain = style == "label" and len(bare) <= MOST_LABEL and bare[:1].isalpha() and _QUICK_LABEL.fullmatch(bare)
+    return Labelled(style, bare, entry, _QUICK) if plain and not is_summary(bare) else None
 
 
 def _by_label(line: str) -> list[Labelled]:

@@ -8,9 +8,9 @@ from collections.abc import Sequence
 from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.characters import one_spelling, signs_for_names
 from meanlab.intake.groups import without_group_lines
-from meanlab.intake.labels import Labelled, common_style, take_apart
+from meanlab.intake.labels import Labelled, common_style, quickly_apart, take_apart
 from meanlab.intake.lines import Lines, is_entry, lines_of, sample, split_lines
-from meanlab.intake.long_column import long_column
+from meanlab.intake.long_column import OneColumn, long_column
 from meanlab.intake.roles import is_label_word
 from meanlab.intake.separators import GAPS, PAIRS, separator_of
 from meanlab.intake.table import Table
@@ -102,23 +102,41 @@ def _one_a_line(lines: Lines) -> Table:
     }
     plain = sum(is_entry(text) and not apart.get(text) for text in looked_at)
     style = common_style(list(apart.values()), plain)
-    rows: list[list[str]] = [[text] if text else [] for text in texts]
     names: set[str] = set()
+    rows: Sequence[Sequence[str]] = OneColumn(texts)
     if style or any(way.sort == "summary" for ways in apart.values() for way in ways):
-        for row, text in enumerate(texts):
-            way = _way(text, style)
-            if way is not None:
-                rows[row] = [way.label, way.entry] if way.sort == "summary" else [way.entry]
-                names |= {way.label} if way.sort == "label" else set()
+        rows, names = _taken_apart(texts, style)
     name = names.pop() if len(names) == 1 else ""
-    if style == "label" and rows and rows[0] and len(words := rows[0][0].split()) > 1 and is_label_word(words[0]):
-        rows[0] = [" ".join(words[1:])]  # "Sample Nitrate" over "QC-1 5.02"
     notes = [*lines.notes, *([_STYLES[style]] if style and not name else [])]
     return Table(rows, lines.numbers, None, "", tuple(lines.remarks), tuple(notes), name, preparations)
 
 
+def _taken_apart(texts: list[str], style: str) -> tuple[list[list[str]], set[str]]:
+    """Rows without what stands before the entries, and the names that stand there."""
+    names: set[str] = set()
+    rows: list[list[str]] = []
+    for text in texts:
+        way = _way(text, style)
+        rows.append([text] if text and way is None else [])
+        if way is not None:
+            rows[-1] = [way.label, way.entry] if way.sort == "summary" else [way.entry]
+            names |= {way.label} if way.sort == "label" else set()
+    if style == "label" and rows:
+        rows[0] = _without_label_word(rows[0])
+    return rows, names
+
+
+def _without_label_word(cells: list[str]) -> list[str]:
+    """The heading over labelled readings without the heading of the labels: "Sample Nitrate" over "QC-1 5.02"."""
+    words = cells[0].split() if cells else []
+    return [" ".join(words[1:])] if len(words) > 1 and is_label_word(words[0]) else cells
+
+
 def _way(text: str, style: str) -> Labelled | None:
-    if not text or (is_entry(text) and text[0] not in "([#*•"):
+    quick = quickly_apart(text, style)
+    if quick is not None or not text:
+        return quick
+    if is_entry(text) and text[0] not in "([#*•":
         return None
     return next((way for way in take_apart(one_spelling(text)) if way.sort in (style, "summary")), None)
 

@@ -1,4 +1,4 @@
-"""A long text with nothing but one number a line: it is kept as it is, without a cell object for each number."""
+"""Texts with one entry a line: they are kept as they are, without a row object for each line."""
 
 import re
 from collections.abc import Sequence
@@ -13,10 +13,14 @@ ODD_BY_COMMA = re.compile(r"^(?![+-]?\d{1,20}(?:,\d{0,19})?$)", re.ASCII | re.MU
 
 
 class OneColumn(Sequence[Sequence[str]]):
-    """Rows of one cell each, from the row ``plain_from`` on all plain numbers; a row is made when it is looked at."""
+    """Rows of one cell each; a row is made when it is looked at.
 
-    def __init__(self, texts: list[str], plain_from: int) -> None:
-        self.texts, self.plain_from = texts, plain_from
+    From the row ``plain_from`` on all are bare numbers with no other decimal sign than ``sign``.
+    """
+
+    def __init__(self, texts: list[str], plain_from: int | None = None, sign: str = "") -> None:
+        self.texts, self.sign = texts, sign
+        self.plain_from = len(texts) if plain_from is None else plain_from
 
     def __len__(self) -> int:
         return len(self.texts)
@@ -46,12 +50,12 @@ def long_column(text: str) -> OneColumn | None:
         if end < 0:
             return None
         start, line = end + 1, line + 1
-    for odd in (ODD_BY_POINT, ODD_BY_COMMA):
+    for sign, odd in ((".", ODD_BY_POINT), (",", ODD_BY_COMMA)):
         if not odd.search(text, start):
             head = [heading.strip() for heading in text[:start].split("\n")[:-1]] if start else []
             if any(mark in heading for heading in head for mark in ('"', "\t", ";", ",", "#", "//")):
                 return None
-            return OneColumn([*head, *text[start:].split("\n")], line)
+            return OneColumn([*head, *text[start:].split("\n")], line, sign)
     return None
 
 

@@ -8,9 +8,10 @@ from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.blocks import Block, blocks_of
 from meanlab.intake.characters import shown
 from meanlab.intake.choosing import pick
-from meanlab.intake.column import Given, Read, read_column
+from meanlab.intake.column import read_column
 from meanlab.intake.doubts import doubts_about
 from meanlab.intake.found import Column, Intake
+from meanlab.intake.given import Given, Read
 from meanlab.intake.long_column import OneColumn
 from meanlab.intake.numerals import Sign, decimal_sign
 from meanlab.intake.picked import NothingToRead, Picked
@@ -178,12 +179,20 @@ def _given(picked: Picked, decimal: Sign | None) -> Given:
     qualifiers = None
     if picked.qualifier is not None:
         qualifiers = [table.text(row, picked.qualifier) for row, _ in picked.places()]
-    return Given(texts, place_of, kinds, computed, qualifiers, decimal, None, picked.unit)
+    return Given(texts, place_of, kinds, computed, qualifiers, decimal, None, picked.unit, _plain_sign(picked))
+
+
+def _plain_sign(picked: Picked) -> str:
+    """The only decimal sign of a long text whose lines from the first picked row on are known to be bare numbers."""
+    rows = picked.block.table.rows
+    known = isinstance(rows, OneColumn) and isinstance(picked.rows, range) and rows.plain_from <= picked.rows[0]
+    return rows.sign if known and isinstance(rows, OneColumn) else ""
 
 
 def _texts(table: Table, rows: Sequence[int], column: int) -> list[str]:
-    if isinstance(table.rows, OneColumn) and isinstance(rows, range):
-        return table.rows.texts[rows.start : rows.stop]
+    if isinstance(table.rows, OneColumn):
+        texts = table.rows.texts
+        return texts[rows.start : rows.stop] if isinstance(rows, range) else [texts[row] for row in rows]
     return [cells[column] if column < len(cells) else "" for cells in map(table.rows.__getitem__, rows)]
 
 

@@ -43,7 +43,7 @@ _ANALYTE = word_set("parameter analyte test compound element component quantity 
 _QUALIFIER = word_set("qualifier qual operatorsign sign vorzeichen symbol modifier relation lessthan <>")
 _MARKS = word_set("< > <= >= =< => ≤ ≥ = ~")
 _RUNNING = re.compile(r"(.*?)[\s_.#-]*(\d{1,3}|[a-hA-H]|[ivx]{1,4})", re.DOTALL)
-_WHOLE = re.compile(r"\d{1,12}(?:\.0+)?", re.ASCII)
+_WHOLE = re.compile(r"\d{1,12}", re.ASCII)
 MOST_COLUMNS = 5000
 
 

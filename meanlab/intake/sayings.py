@@ -9,7 +9,7 @@ from meanlab.intake.entry import Parsed
 from meanlab.intake.numerals import leaning
 
 if TYPE_CHECKING:
-    from meanlab.intake.column import Given
+    from meanlab.intake.given import Given
 
 MOST_NAMED = 5
 NEUTRAL = frozenset({"open unit", "gap grouped"})
@@ -157,7 +157,7 @@ def blank_groups(given: "Given", each: Sequence[Parsed]) -> list[str]:
     return [f"The blank was taken for a thousands mark: {named(given, places)}."] if places else []
 
 
-def code_for_nothing(given: "Given", code: str) -> str:
+def code_for_nothing(code: str) -> str:
     """Return the warning for a number that programs write where there is no value."""
     return (
         f"{code} stands far from the other readings and is what some programs write for no value: "

@@ -104,7 +104,7 @@ def _comma(filled: list[str], decimal: str | None) -> str:
     """Return "," or ", " or PAIRS where commas part entries, "" where they belong to them."""
     data = [line for line in filled if _DIGIT.search(line)]
     heading = _heading_fields(filled)
-    is_quantity = len(heading) == 2 and heading_of(", ".join(heading)).unit is not None
+    is_quantity = len(heading) == 2 and heading_of(", ".join(heading)).unit in (heading[1], heading[1].strip("()"))
     under_heading = len(heading) > 1 and not is_quantity
     if len(filled) == 1 or (len(data) == 1 and not under_heading and data[0] == filled[-1]):
         return _comma_in_a_row(data[0] if data else filled[0], decimal)

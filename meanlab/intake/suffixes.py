@@ -12,6 +12,8 @@ from meanlab.intake.words import FLAGS
 
 _OPEN_UNIT = re.compile(r"[^\W\d_][^\s()\d]{0,11}|[€£¥¢]")
 
+_UNITS_OF_ONE_LETTER = "gLV"  # others, such as H, J, U or m, are marks where only some readings carry them
+
 
 def settled(known: Mapping[Hashable, Parsed], counts: Counter[Any], heading_unit: str | None) -> dict[Hashable, Parsed]:
     """Return the different entries of a column, each key once, with what stands behind their numbers settled.
@@ -34,6 +36,10 @@ def settled(known: Mapping[Hashable, Parsed], counts: Counter[Any], heading_unit
     return {key: one if one.unit in usual else _without_letter(key, one) for key, one in known.items()}
 
 
+def _text_of(key: Any) -> str:
+    return _text_of(key[0]) if isinstance(key, tuple) else str(key)
+
+
 def _is_open_unit(word: str) -> bool:
     return bool(_OPEN_UNIT.fullmatch(word)) and not is_unit(word) and word.casefold() not in FLAGS
 
@@ -45,7 +51,8 @@ def _is_foreign(unit: str, heading_unit: str | None) -> bool:
 
 def _without_letter(key: Hashable, one: Parsed) -> Parsed:
     letter = one.unit or one.remark
-    if not one.numeral or one.sort not in ("", "flag") or len(letter) != 1 or not letter.isalpha():
+    is_lone = len(letter) == 1 and letter.isalpha() and letter not in _UNITS_OF_ONE_LETTER
+    if not one.numeral or one.sort not in ("", "flag") or not is_lone:
         return one
-    slip = meant_by_letter(str(key[0] if isinstance(key, tuple) else key), one)
+    slip = meant_by_letter(_text_of(key), one)
     return Parsed("unread", sort="text", meant=slip) if slip else replace(one, unit="", remark=letter, sort="flag")

@@ -2,6 +2,7 @@
 
 import re
 import unicodedata
+from functools import lru_cache
 
 from meanlab.intake.words import word_set
 
@@ -48,6 +49,7 @@ _WORDS = word_set(
 MOST_CHARACTERS = 24
 
 
+@lru_cache(maxsize=2048)
 def is_unit(text: str) -> bool:
     """Tell whether a text is a unit: one symbol, or symbols with powers, products and quotients.
 
