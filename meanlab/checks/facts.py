@@ -5,6 +5,7 @@ from dataclasses import dataclass
 from functools import cached_property
 from typing import Any
 
+from meanlab.core.numbers import as_typed
 from meanlab.core.question import Question
 from meanlab.wording.names import counted
 from meanlab.wording.numbers import decimal_text, level_text, number_text, p_text, significant, unit_text
@@ -86,6 +87,11 @@ class Facts:
     def with_unit(self, value: float, digits: int = 3) -> str:
         """Return a value with so many significant digits and the unit of the readings."""
         return unit_text(significant(value, digits, self.decimal_sign), self.question.unit or self.unit)
+
+    def typed(self, setting: object) -> str:
+        """Return a setting as typed, with the decimal sign and the unit of the readings."""
+        text = as_typed(setting).strip().replace(",", ".").replace(".", self.decimal_sign)
+        return unit_text(text, self.question.unit or self.unit)
 
     def step_text(self, step: float) -> str:
         """Return the step of the units: of single readings as it is, of preparation means with two digits."""

@@ -132,7 +132,7 @@ def _says_none(G: float, p: float, facts: Facts) -> str:
     n, share = at_most(facts.n, FOUND_AT_SIX) or (FEWEST_FOR_GRUBBS, 0.0)
     pairs = ", and two far ones side by side mostly not" if facts.n <= BLIND_TO_PAIRS_UP_TO else ""
     return (
-        f"G = {facts.text(G)} (Grubbs, two-sided, {facts.p(p)}): no far reading; with {n} readings one that lies 6 s "
+        f"G = {facts.text(G)} (Grubbs, two-sided, {facts.p(p)}): no far reading; at n = {n} one that lies 6 s "
         f"off is found in {facts.percent(share)} of sets{pairs}."
     )
 

@@ -30,10 +30,10 @@ def known_sigma_check(facts: Facts) -> Check | None:
 
 
 def _seen(statistic: float, facts: Facts) -> str:
-    sigma, sigma_df = facts.question.number("sigma"), float(facts.question.sigma_df)
+    sigma_df = float(facts.question.sigma_df)
     degrees = f"{facts.n - 1}, {df_text(sigma_df, facts.decimal_sign)}" if isfinite(sigma_df) else f"{facts.n - 1}"
     name = f"F({degrees})" if isfinite(sigma_df) else f"χ²({degrees})"
-    values = f"s = {facts.with_unit(facts.s or 0.0)} against the known σ = {facts.with_unit(sigma or 0.0)}"
+    values = f"s = {facts.with_unit(facts.s or 0.0)} against the known σ = {facts.typed(facts.question.sigma)}"
     return f"{values}: {name} = {facts.text(statistic)}"
 
 

@@ -75,7 +75,7 @@ def _worth(facts: Facts) -> str:
     noticed = at_most(facts.n, LOGNORMAL_NOTICED)
     if noticed is None:
         n, missed = at_most(facts.n, EXPONENTIAL_MISSED) or (FEWEST, EXPONENTIAL_MISSED[FEWEST])
-        return f"with {n} readings even an exponential shape goes unnoticed {facts.percent(missed)} of the time"
+        return f"at n = {n} even an exponential shape goes unnoticed {facts.percent(missed)} of the time"
     if facts.n >= MANY:
         return (
             f"among sets of {MANY} from an exponential shape in which this check notices nothing, t raises "
@@ -83,4 +83,4 @@ def _worth(facts: Facts) -> str:
         )
     n, share = noticed
     width = facts.text(0.7, 1)
-    return f"with {n} readings a log-normal shape (σ = {width}) is noticed in {facts.percent(share)} of sets only"
+    return f"at n = {n} a log-normal shape (σ = {width}) is noticed in {facts.percent(share)} of sets only"

@@ -98,6 +98,6 @@ def _worth(facts: Facts) -> str:
     little = ", so a silent check means little" if facts.n < 50 else ""
     return (
         f"no pattern seen; a correlation of {facts.text(0.6, 1)} between neighbours is found in "
-        f"{facts.percent(found)} of sets of {n}, a drift of 1 s over the run in {facts.percent(drift)} of sets of "
-        f"{drift_n}{little}"
+        f"{facts.percent(found)} of sets at n = {n}, a drift of 1 s over the run in {facts.percent(drift)} of sets at "
+        f"n = {drift_n}{little}"
     )

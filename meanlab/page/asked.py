@@ -72,7 +72,9 @@ def significance(text: str, sign: str = ".") -> Decimal:
     (Decimal('0.05'), Decimal('0.01'))
     """
     bare = (text or "").replace("%", "").strip()
-    level = number(bare, "significance level", "significance", sign)
+    level = number(bare, "significance level α", "significance", sign)
+    if "%" not in text and level >= 1:
+        raise QuestionComplaint(f'The significance level α is {bare}; for {bare} % type "{bare} %".', "significance")
     return level / 100 if "%" in text else level
 
 
@@ -81,7 +83,12 @@ def number(text: str, name: str, where: str, sign: str) -> Decimal:
 
     Raises QuestionComplaint, naming the field, for anything that is not one number.
     """
-    return exact_setting(read_number(text, sign), name, where)
+    try:
+        return exact_setting(read_number(text, sign), name, where)
+    except QuestionComplaint as complaint:
+        if name in str(complaint):
+            raise
+        raise QuestionComplaint(f"The {name}: {complaint}", where) from None
 
 
 def target_uncertainty(fields: Mapping[str, Any], sign: str) -> tuple[float, float]:
@@ -116,7 +123,10 @@ def missing(fields: Mapping[str, Any], has_readings: bool) -> str:
     """Return the sentence that says what a half-typed question still needs; "" where nothing is missing."""
     has_target = bool(fields["target"].strip())
     if not has_readings and not has_target:
-        return "Paste the readings, one a line, and type the target: the result stands here at once."
+        return (
+            "Paste the readings, one a line, and type the target: the result stands here at once. "
+            "The sample sets above the box show what comes out."
+        )
     if not has_readings:
         return "The target is there; paste the readings, one a line, or open a file."
     if not has_target:

@@ -13,6 +13,7 @@ from meanlab.page.guard import say
 from meanlab.wording import enough_sentence
 from meanlab.wording.numbers import level_text, significant, unit_text
 
+SIDES: Mapping[str, str] = MappingProxyType({"two-sided": "either way", "greater": "upwards", "less": "downwards"})
 POWERS = ("80 %", "90 %", "95 %", "99 %")
 
 
@@ -51,7 +52,7 @@ def _fields() -> None:
 
 def _planned(found: Outcome | None) -> None:
     fields = state.working().fields
-    sign = "." if found is None else found.texts.numbers.sign
+    sign = _sign(fields) if found is None else found.texts.numbers.sign
     wanted = WANTED[fields["plan_kind"]]
     if not fields[wanted].strip():
         tables.sentences(["Type the number on the left; the count of readings stands here. No reading is needed yet."])
@@ -66,6 +67,11 @@ def _planned(found: Outcome | None) -> None:
         say(str(complaint))
         return
     _say(plan, fields, sign)
+
+
+def _sign(fields: Mapping[str, str]) -> str:
+    """The decimal sign of what is typed here, while there are no readings."""
+    return "," if any("," in fields[name] for name in (*WANTED.values(), "plan_s")) else "."
 
 
 def _scatter(text: str, found: Outcome | None, sign: str) -> float | None:
@@ -114,10 +120,18 @@ def _say(plan: Plan, fields: Mapping[str, str], sign: str) -> None:
         tables.sentences([plan.reason])
     elif fields["plan_kind"] == "an interval of ± half-width":
         reached = "" if plan.achieved is None else unit_text(significant(plan.achieved, 3, sign), unit)
-        tables.sentences([f"{plan.readings} readings; the interval is then ± {reached} wide on average.", plan.reason])
+        tables.sentences(
+            [f"{plan.readings} readings: where s comes out as typed, the interval is ± {reached}.", plan.reason]
+        )
     else:
         power = "" if plan.achieved is None else level_text(round(plan.achieved, 3), sign)
-        tables.sentences([f"{plan.readings} readings; they show it with a probability of {power}.", plan.reason])
+        asked_as = (
+            "" if fields["plan_kind"] != "a difference that matters" else f", asked {SIDES[fields['alternative']]}"
+        )
+        risk = f"level {fields['significance']}{asked_as}"
+        tables.sentences(
+            [f"{plan.readings} readings; they show it with a probability of {power} ({risk}).", plan.reason]
+        )
     if plan.curve:
         pictures.course(plan, fields["plan_kind"], unit, sign)
 

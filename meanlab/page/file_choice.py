@@ -20,7 +20,7 @@ def source() -> cache.Source | None:
     now = state.working()
     fields = now.fields
     content: str | bytes | None = fields["readings_text"] if now.file is None else state.file_bytes()
-    if content is None or not content.strip():
+    if content is None or (isinstance(content, str) and not content.strip()):
         return None
     name = None if now.file is None else now.file["name"]
     by_preparation = fields["preparation"] is not None or fields["labels_name_preparations"]

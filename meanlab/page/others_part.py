@@ -4,8 +4,17 @@ from meanlab.core.question import PROCEDURES
 from meanlab.core.results import Analysis, NotApplicable, Test
 from meanlab.page import tables
 from meanlab.page.cache import Outcome
-from meanlab.wording.names import PROCEDURE_NAMES
-from meanlab.wording.numbers import decimal_text, interval_text, level_text, p_text, significant, statistic_text
+from meanlab.wording.names import PROCEDURE_NAMES, unit_of
+from meanlab.wording.numbers import (
+    decimal_text,
+    interval_text,
+    level_text,
+    p_text,
+    significant,
+    statistic_text,
+    unit_text,
+)
+from meanlab.wording.phrases import further_in_force
 
 DECISIONS = {
     "two-sided": ("differs", "not shown to differ"),
@@ -33,16 +42,27 @@ def change_line(analysis: Analysis) -> str:
     """Return which other procedures would decide otherwise at the level asked."""
     if analysis.test is None:
         return ""
-    otherwise = [
-        PROCEDURE_NAMES[other.procedure]
-        for other in analysis.others
-        if isinstance(other, Test) and other.reject != analysis.test.reject
-    ]
+    ran = [other for other in analysis.others if isinstance(other, Test)]
+    if not ran:
+        return "No other procedure can be run on these readings."
+    otherwise = [PROCEDURE_NAMES[other.procedure] for other in ran if other.reject != analysis.test.reject]
     if not otherwise:
         return "Every other procedure that can be run decides alike at this level."
     return (
-        f"Decides otherwise at this level: {', '.join(otherwise)}. The procedure was chosen by its rule before any "
+        f"Decides otherwise at this level: {', '.join(otherwise)}. {scatter_only_line(analysis)}"
+        "The procedure was chosen by its rule before any "
         "p-value was looked at; choosing the one that suits afterwards makes more false alarms than the level says."
+    )
+
+
+def scatter_only_line(analysis: Analysis) -> str:
+    """Return which uncertainties the other procedures leave out that the one in force takes in; "" where none."""
+    further = further_in_force(analysis)
+    if not further:
+        return ""
+    return (
+        f"Guarded t, signed rank and sign look at scatter only and leave out {' and '.join(further)}, "
+        "so they decide too easily here. "
     )
 
 
@@ -51,9 +71,11 @@ def censored_line(analysis: Analysis) -> str:
     fit, sign = analysis.censored_fit, analysis.readings.decimal_sign
     if fit is None:
         return ""
-    mean, s = (significant(value, DIGITS_OF_FIT, sign) for value in (fit.mean, fit.s))
+    mean, s = (unit_text(significant(value, DIGITS_OF_FIT, sign), unit_of(analysis)) for value in (fit.mean, fit.s))
     ends = " to ".join(
-        significant(end, DIGITS_OF_FIT, sign) for end in (fit.interval.low, fit.interval.high) if end is not None
+        unit_text(significant(end, DIGITS_OF_FIT, sign), unit_of(analysis))
+        for end in (fit.interval.low, fit.interval.high)
+        if end is not None
     )
     return (
         f"Normal model fitted to all {fit.n} readings, {fit.censored} of them below or above a limit (maximum "

@@ -33,7 +33,7 @@ PARTS: Mapping[str, Callable[[Outcome | None], None]] = MappingProxyType(
 
 def draw(found: Outcome | None) -> None:
     """Draw the control and the one part it names."""
-    st.segmented_control("Below the panel", tuple(PARTS), key="part", label_visibility="collapsed")
+    st.segmented_control("Below the panel", tuple(PARTS), key="part", label_visibility="collapsed", required=True)
     name = state.value("part")
     if name not in PARTS:
         return

@@ -25,7 +25,9 @@ def draw(found: Outcome | None) -> None:
             preparations.draw(found.analysis)
         return
     tables.draw(("Component", "Standard uncertainty u", "Degrees of freedom", "Share of u²"), _rows(found, budget))
-    tables.sentences([found.texts.mean_line, *_scatter_only(found.analysis, budget)])
+    line = found.texts.mean_line
+    apart = ", the measured value alone, without the uncertainty of the target" if len(budget.components) > 1 else ""
+    tables.sentences([f"{line}{apart}" if line else "", *_scatter_only(found.analysis, budget)])
     if budget.bounds:
         tables.draw(
             ("Held beside the test; it does not decide", "|difference| must exceed", "Exceeded"),
@@ -49,7 +51,7 @@ def _rows(found: Outcome, budget: Uncertainty) -> list[tuple[str, ...]]:
     ]
     rows.append(("combined", _in_unit(found, budget.combined), _degrees(budget.df, sign), _share(1.0, sign)))
     level = found.texts.numbers.interval_level
-    expanded = f"expanded U (k = {statistic_number(budget.k, sign)}, {level} two-sided)"
+    expanded = f"expanded U of the difference (k = {statistic_number(budget.k, sign)}, {level} two-sided)"
     rows.append((expanded, _in_unit(found, budget.expanded), "", ""))
     return rows
 
@@ -57,9 +59,8 @@ def _rows(found: Outcome, budget: Uncertainty) -> list[tuple[str, ...]]:
 def _scatter_only(analysis: Analysis, budget: Uncertainty) -> list[str]:
     alone, test = budget.scatter_only, analysis.test
     if alone is None or test is None:
-        return [
-            "Scatter of these readings is the only component; a certificate, calibration and recovery would add theirs."
-        ]
+        scatter = "The known σ" if test is not None and test.procedure == "z" else "Scatter of these readings"
+        return [f"{scatter} is the only component; a certificate, calibration and recovery would add theirs."]
     sign = analysis.readings.decimal_sign
     return [
         f"With scatter alone: {statistic_text(alone, sign)}, {p_text(alone.p_value, alone.significance, sign)}; "

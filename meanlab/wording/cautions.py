@@ -40,7 +40,7 @@ def cautions(analysis: Analysis) -> tuple[str, ...]:
         *_exact_target(analysis),
         general_line(analysis),
     )
-    return tuple(dict.fromkeys(text for text in map(_sentence, found) if text))
+    return tuple(dict.fromkeys(text for text in map(as_sentence, found) if text))
 
 
 def general_line(analysis: Analysis) -> str:
@@ -133,7 +133,7 @@ def _exact_target(analysis: Analysis) -> tuple[str, ...]:
     return (f"The {target_noun(question.target_kind)} is treated as exact: no uncertainty was given for it.",)
 
 
-def _sentence(text: str) -> str:
+def as_sentence(text: str) -> str:
     """Return a remark as a sentence: first letter large, a full stop at the end."""
     text = plain_words(text)
     if not text:

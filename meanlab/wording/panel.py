@@ -6,7 +6,7 @@ from datetime import UTC, datetime
 from math import isfinite
 
 from meanlab.core.results import Analysis
-from meanlab.wording.cautions import FEW_READINGS, cautions, general_line
+from meanlab.wording.cautions import FEW_READINGS, as_sentence, cautions
 from meanlab.wording.names import (
     ALTERNATIVE_NAMES,
     PARAMETER_TITLES,
@@ -22,7 +22,8 @@ from meanlab.wording.sentences import conclusion, verdict_word
 from meanlab.wording.shown import UNDEFINED, Shown, shown
 
 DIGITS_OF_FINGERPRINT = 12
-ROW_OF_FEW = 7
+ROW_OF_FEW, ROWS_OF_SHAPE = 7, (10, 11, 12)
+MOST_CAUTIONS = 2
 COMMANDS_OF_SPREADSHEETS = ("=", "+", "-", "@", "−")
 
 
@@ -35,7 +36,8 @@ class PanelTexts:
     sentence      the conclusion
     rows          (label, text) of the table, in order
     why           why this procedure
-    caution       the weightiest caution that is not said elsewhere on the panel
+    caution       the weightiest cautions not said elsewhere on the panel, what comes out without the far readings or
+                  with the left-out ones, and the general line
     origin        "2026-12-01 05:30 UTC · meanlab 1.0 · fingerprint 3f9a 61c0 22be"
     mean_line     the line to copy, x̄ ± U; "" where there is none
     numbers       every number as text, for pictures and records
@@ -163,9 +165,19 @@ def _detectable(analysis: Analysis, numbers: Shown) -> str:
 
 
 def _caution(analysis: Analysis) -> str:
-    found = analysis.cautions or cautions(analysis)
-    said_by_route = FEW_READINGS if analysis.route.row == ROW_OF_FEW else ""
-    return next((text for text in found if text != said_by_route), general_line(analysis))
+    *found, general = analysis.cautions or cautions(analysis)
+    said = {_said_by_route(analysis)}
+    weighty = [text for text in found if text not in said][:MOST_CAUTIONS]
+    beside = [without.sentence for without in analysis.withouts]
+    return " ".join((*weighty, *beside, general))
+
+
+def _said_by_route(analysis: Analysis) -> str:
+    """Return the caution that the reason for the procedure states already."""
+    if analysis.route.row == ROW_OF_FEW:
+        return FEW_READINGS
+    normality = analysis.check("normality")
+    return as_sentence(normality.message) if normality is not None and analysis.route.row in ROWS_OF_SHAPE else ""
 
 
 def _minute(time: str) -> str:
@@ -190,6 +202,7 @@ def _columns(analysis: Analysis) -> Iterable[tuple[str, str]]:
     for heading, number in (
         ("n", summary.n),
         ("readings", summary.n_readings),
+        ("left out", summary.left_out),
         ("mean", summary.mean),
         ("s", summary.s),
         ("median", summary.median),
@@ -209,7 +222,7 @@ def _columns(analysis: Analysis) -> Iterable[tuple[str, str]]:
         yield heading, _full(number, sign)
     yield "procedure", "" if test is None else PROCEDURE_NAMES[test.procedure]
     yield "alternative", question.alternative
-    yield "verdict", analysis.verdict
+    yield "verdict", verdict_word(analysis)
 
 
 def _full(number: object, sign: str) -> str:

@@ -63,7 +63,7 @@ def verdict_key(analysis: Analysis) -> str:
             return "undecided"
         return "cannot tell, with a limit" if limit and analysis.equivalence is not None else "cannot tell"
     if verdict == "agrees" and question.alternative != "two-sided" and limit:
-        return "agrees, with a limit"
+        return "agrees, beyond the target" if beyond_target(analysis) else "agrees, with a limit"
     if verdict == "differs" and limit and analysis.equivalence is not None:
         return "differs, with a limit"
     return verdict
@@ -175,9 +175,25 @@ def _parts(analysis: Analysis, numbers: Shown) -> dict[str, str]:
         "missed": missed_phrase(analysis, numbers),
         "limit": numbers.limit,
         "bound": bound_phrase(analysis, numbers),
-        "agreeing": f"{numbers.p_agreement} for {'agreement' if two_sided else 'that'}",
+        "agreeing": f"{_p_of_claim(analysis, numbers)} for {'agreement' if two_sided else 'that'}",
         "cause": cause_of_no_decision(analysis, numbers.sign, analysis.question.alpha),
     }
+
+
+def beyond_target(analysis: Analysis) -> bool:
+    """Tell whether a one-sided question found the mean on the other side of the target itself, a limit E or not."""
+    test, question = analysis.test, analysis.question
+    if test is None or question.alternative == "two-sided" or analysis.equivalence is None:
+        return False
+    return (test.p_less if question.alternative == "greater" else test.p_greater) < question.alpha
+
+
+def _p_of_claim(analysis: Analysis, numbers: Shown) -> str:
+    test = analysis.test
+    if test is None or verdict_key(analysis) != "agrees, beyond the target":
+        return numbers.p_agreement
+    p = test.p_less if analysis.question.alternative == "greater" else test.p_greater
+    return p_text(p, analysis.question.alpha, numbers.sign)
 
 
 def _opposite_claim(analysis: Analysis, target: str, numbers: Shown) -> str:

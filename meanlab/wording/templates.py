@@ -102,6 +102,11 @@ _ONE_SIDED: Mapping[str, tuple[str, int]] = {
         0,
     ),
     "agrees": ("{opening}, [lies below] {target}: {bound}, lies [below it] ({agreeing}); {evidence}.", 2),
+    "agrees, beyond the target": (
+        "{opening}, [lies below] {target}, and so does not [exceed] it by {limit} or more: {bound}, lies [below it] "
+        "({agreeing}); {evidence}.",
+        2,
+    ),
     "agrees, with a limit": (
         "{opening}, does not [exceed] {target} by {limit} or more: {bound}, keeps to that ({agreeing}); {evidence}.",
         2,
@@ -165,6 +170,8 @@ VERDICT_WORDS: Mapping[tuple[str, str], str] = {
     ("differs", "greater"): "exceeds",
     ("differs, within the limit", "greater"): "exceeds, by less than {limit}",
     ("agrees", "greater"): "lies below the {noun}",
+    ("agrees, beyond the target", "greater"): "lies below the {noun}",
+    ("agrees, beyond the target", "less"): "lies above the {noun}",
     ("agrees, with a limit", "greater"): "does not exceed the {noun} by {limit} or more",
     ("differs", "less"): "falls below",
     ("differs, within the limit", "less"): "falls below, by less than {limit}",
