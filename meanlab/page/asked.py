@@ -33,8 +33,12 @@ UNITS = (
 )
 
 
-def question_from(fields: Mapping[str, Any], sign: str, set_after: tuple[str, ...] = (), look: int = 1) -> Question:
+def question_from(
+    fields: Mapping[str, Any], sign: str, set_after: tuple[str, ...] = (), look: int = 1, nested: bool = False
+) -> Question:
     """Return the question that the fields ask; numbers are read with the decimal sign of the readings.
+
+    ``nested``: the units are preparations, so what one reading is has been said by their labels.
 
     Raises QuestionComplaint for a field that is no number or fields that contradict each other.
     """
@@ -55,7 +59,7 @@ def question_from(fields: Mapping[str, Any], sign: str, set_after: tuple[str, ..
         difference_that_matters=_optional(fields, "matters", "difference that matters", sign),
         resolution=_optional(fields, "resolution", "resolution", sign),
         run_order=bool(fields["run_order"]),
-        units_are=units_in_words(fields["units_are"], fields["conditions"]),
+        units_are=units_in_words(NOT_STATED if nested else fields["units_are"], fields["conditions"]),
         quantity=fields["quantity"].strip(),
         unit=fields["unit"].strip(),
         material=fields["material"].strip(),
@@ -153,7 +157,6 @@ def parts_set(fields: Mapping[str, Any], left_out: Sequence[str]) -> dict[str, A
     side_of_kind = SIDE_OF_KIND.get(fields["target_kind"])
     return {
         "alternative": "two-sided" if side_of_kind == fields["alternative"] else fields["alternative"],
-        "target": _plain(fields["target"]),
         "equivalence limit": _plain(fields["limit"]),
         "difference that matters": _plain(fields["matters"]),
         "left-out readings": sorted(left_out),
@@ -166,6 +169,21 @@ def set_after(first: Mapping[str, Any], now: Mapping[str, Any]) -> tuple[str, ..
     Asking either way, the side that a limit itself asks for, and a limit taken away again are no choice that suits.
     """
     return tuple(part for part in first if now[part] != first[part] and now[part] not in ("", [], "two-sided"))
+
+
+def in_force(fields: Mapping[str, Any]) -> str:
+    """Return what the closed expander holds that takes part in the result: "In force: U 0.6 · E 2.0"; "" for nothing.
+
+    >>> in_force({"sigma": "0.02", "limit": ""})
+    'In force: σ 0.02'
+    """
+    named = {"certificate_value": "U", "sigma": "σ", "own_uncertainty": "own u", "limit": "E", "matters": "matters"}
+    said = [f"{name} {fields[field].strip()}" for field, name in named.items() if fields.get(field, "").strip()]
+    if fields.get("procedure", "rule") != "rule":
+        said.append(f"procedure {fields['procedure'].replace('_', ' ')}")
+    if fields.get("parameter", "mean") != "mean":
+        said.append("median")
+    return f"In force: {' · '.join(said)}" if said else ""
 
 
 def _plain(text: str) -> str:

@@ -27,6 +27,9 @@ def draw(_found: Outcome | None) -> None:
         tables.draw(("No.", "Where", "As typed", "Role"), _rows(found), HEIGHT)
         _too_many(found)
     with right:
+        if not readings.asks_for_sign(found):
+            readings.draw_sign()
+        tables.sentences([found.evidence])
         for warning in found.warnings:
             say(warning, "notice")
         tables.sentences(found.notes)

@@ -73,7 +73,7 @@ READINGS_FIELDS = (
 )
 PICKS = READINGS_FIELDS[1:]
 WRITTEN = ("title", "by", "note", "instrument", "method")  # each with a field written_…
-# Fields that a new page begins with as they were at the last entry, by the name of the bench default.
+# Fields that a new page begins with as at the last entry (the unit only in grey), by the name of the bench default.
 BENCH_FIELDS: Mapping[str, str] = MappingProxyType(
     {
         "unit": "unit",

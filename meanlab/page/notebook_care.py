@@ -59,8 +59,11 @@ def _verify(book: Notebook) -> None:
 
 
 def _back_up(book: Notebook) -> None:
-    folder = (state.widget("copy_folder") or "").strip() or _folder_of(book)
-    path = Path(folder).expanduser() / f"meanlab-copy-{datetime.now(clock.visitor_zone()):%Y-%m-%d-%H%M%S}.db"
+    folder = Path((state.widget("copy_folder") or "").strip() or _folder_of(book)).expanduser()
+    if not folder.is_dir():  # a disk that is not in place must not become a folder on this one
+        state.note(_COPIED, f"Not copied. There is no folder {folder}: make it, or put the disk in place.")
+        return
+    path = folder / f"meanlab-copy-{datetime.now(clock.visitor_zone()):%Y-%m-%d-%H%M%S}.db"
     try:
         with st.spinner("Copying …"):
             made = book.back_up(path)

@@ -25,8 +25,10 @@ def _draw(found: Outcome | None) -> None:
     book = cache.notebook()
     chosen = state.widget(CHOSEN) or ""
     if chosen and state.taken(entry_view.AMEND_WANTED):
-        chosen = entry_view.amend(chosen, found) or chosen
-        state.note(CHOSEN, chosen)
+        amended = entry_view.amend(chosen, found)
+        if amended:
+            state.note(CHOSEN, amended)
+            st.rerun()  # what stands above says it too
     if chosen:
         st.button("All entries", key="all_entries", on_click=state.note, args=(CHOSEN, ""))
         entry_view.draw(book, chosen, found, own=True)

@@ -27,7 +27,8 @@ def outcome() -> cache.Outcome | None:
     if asked.missing(fields, has_readings=True):
         return None
     left_out = readings.left_out(found)
-    question = asked.question_from(fields, found.decimal_sign)
+    nested = source.by_preparation and found.preparations is not None
+    question = asked.question_from(fields, found.decimal_sign, nested=nested)
     parts = asked.parts_set(fields, [str(place) for place, _ in left_out])
     history = state.saw_result(parts, tuple(entry.text for entry in found.entries[: state.MOST_COMPARED]))
     if not fields["fixed_before"]:
@@ -52,7 +53,7 @@ def _waiting() -> None:
     has_readings = found is not None and not found.refused and found.has_readings
     sentence = asked.missing(state.working().fields, has_readings)
     if found is not None and found.needs_choice:
-        sentence = "The file holds several columns: choose the one with the readings, on the left."
+        sentence = "A choice is needed before anything is computed: see beside the readings, on the left."
     elif found is not None and not has_readings:
         sentence = "Nothing could be read as a reading: see the reason beside the readings, on the left."
     st.html(f'<p class="ml-empty">{html.escape(sentence)}</p>')

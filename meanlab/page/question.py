@@ -1,5 +1,7 @@
 """The question: target, kind of target, level, the side asked, and one closed expander for what else is known."""
 
+import html
+
 import streamlit as st
 
 from meanlab.checks.units import units_that_differ
@@ -34,7 +36,7 @@ def draw() -> None:
     unit, name = ("", "") if found is None else (found.unit or "", found.name or "")
     left, right = st.columns([3, 2], gap="small")
     left.text_input("Target", key="target", placeholder="e.g. 5.000")
-    right.text_input("Unit", key="unit", placeholder=unit or "e.g. mg/L")
+    right.text_input("Unit", key="unit", placeholder=unit or _hint(state.working().last_unit))
     if units_that_differ(unit, state.value("unit")):
         say(f'The heading gives the readings in "{unit}": write the target in that unit; nothing is converted.')
     left, right = st.columns([3, 2], gap="small")
@@ -64,6 +66,12 @@ def draw() -> None:
         _known_sigma()
         _limits()
         _procedure()
+    in_force = asked.in_force(state.working().fields)
+    st.html(f'<p class="ml-counts">{html.escape(in_force) or "&nbsp;"}</p>')
+
+
+def _hint(last_unit: str) -> str:
+    return f"last: {last_unit}" if last_unit else "e.g. mg/L"
 
 
 def _side_follows_kind() -> None:

@@ -9,7 +9,8 @@ from meanlab.intake import Intake
 from meanlab.page import bench, cache, clock, file_choice, samples_opener, state
 from meanlab.page.guard import guarded, say
 
-BOX_HEIGHT = 180
+SIGNS = ("as written", "decimal comma", "decimal point")
+BOX_HEIGHT = 160
 BOX_HEIGHT_BESIDE_A_FILE = 68
 
 
@@ -87,11 +88,38 @@ def _counts(found: Intake | None) -> None:
     if found.refused:
         say(found.reason)
         return
+    if asks_for_sign(found):
+        say(found.reason)
+        draw_sign()
+        return
     st.html(f'<p class="ml-counts" role="status">{html.escape(found.counts_line())}</p>')
+    _preparations(found)
     for warning in found.warnings[:2]:
         say(warning, "notice")
     if len(found.warnings) > 2:
         say(f'{len(found.warnings) - 2} more under "What was read".', "notice")
+
+
+def asks_for_sign(found: Intake) -> bool:
+    """Tell whether nothing in the column shows which the decimal sign is."""
+    return found.needs_choice and any(choice.get("decimal") for choice in found.choices)
+
+
+def draw_sign() -> None:
+    """Draw the choice of the decimal sign."""
+    st.segmented_control("Decimal sign", SIGNS, key="decimal_sign", required=True)
+
+
+def _preparations(found: Intake) -> None:
+    """Ask whether labels that were read name preparations, where no column of them was chosen."""
+    if found.preparations is None or state.value("preparation") is not None:
+        return
+    count = len(set(found.preparations))
+    st.checkbox(
+        f"Average within {count} preparations" if count > 1 else "All from one preparation",
+        key="labels_name_preparations",
+        help="Readings of one preparation are not independent: ticked, they are averaged and n counts preparations.",
+    )
 
 
 def _put_back() -> None:

@@ -34,7 +34,8 @@ OFF = (
 
 def save_where_asked(found: Outcome | None) -> None:
     """Save the result where a click asked for it; a result that is saved already is no second entry."""
-    if state.taken(WANTED) and found is not None and saved_entry(found) is None:
+    asked_for = state.taken(WANTED)
+    if asked_for and found is not None and cache.kept_on_this_address() and saved_entry(found) is None:
         _save(found)
 
 

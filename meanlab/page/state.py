@@ -109,18 +109,15 @@ def widget(key: str) -> Any:
 
 
 def clear() -> None:
-    """Take the readings away; they can be put back."""
-    _set_aside("the readings were cleared")
-    _empty_readings()
+    """Take readings and question away, what stands in the closed expander too; both can be put back."""
+    _set_aside("readings and question were cleared", with_question=True)
+    _empty_page({})
 
 
 def open_set(name: str, fields: Mapping[str, Any], file: tuple[str, bytes] | None = None) -> None:
     """Open a sample set: its readings and its question in place of everything on the page."""
     _set_aside(f'the sample set "{name}" was opened', with_question=True)
-    _empty_readings()
-    for key, default in FIELDS.items():
-        if key not in STAYING:
-            put(key, deepcopy(fields.get(key, default)))
+    _empty_page(fields)
     if file is not None:
         _take_file(*file)
 
@@ -182,7 +179,7 @@ def start_afresh() -> None:
     """Begin an empty page under an address of its own; the one before stays under its address."""
     st.query_params.pop(ADDRESS, None)
     st.session_state[_FILES] = {}
-    now = st.session_state[_WORKING] = empty(_bench())
+    now = st.session_state[_WORKING] = empty(*_bench())
     for name in FIELDS:
         put(name, now.fields[name])
 
@@ -242,7 +239,7 @@ def keep() -> None:
 
 def _brought_back() -> Working:
     key = st.query_params.get(ADDRESS, "")
-    now = empty() if key else empty(_bench())
+    now = empty() if key else empty(*_bench())
     if not key or not cache.kept_on_this_address():
         return now
     try:
@@ -250,7 +247,7 @@ def _brought_back() -> Working:
         kept = states.load(key)
         if kept is None:
             st.query_params.pop(ADDRESS, None)
-            now = empty(_bench())
+            now = empty(*_bench())
             now.notice = "Nothing is kept under this address; this is an empty page."
             return now
         now.fields |= {name: given for name, given in kept.state["fields"].items() if name in FIELDS}
@@ -313,6 +310,14 @@ def _snapshot(cause: str, with_question: bool) -> dict[str, Any]:
     }
 
 
+def _empty_page(fields: Mapping[str, Any]) -> None:
+    """Take everything off the page and put these fields on it."""
+    _empty_readings()
+    for key, default in FIELDS.items():
+        if key not in STAYING:
+            put(key, deepcopy(fields.get(key, default)))
+
+
 def _empty_readings() -> None:
     for name in READINGS_FIELDS:
         put(name, deepcopy(FIELDS[name]))
@@ -327,15 +332,16 @@ def _take_file(name: str, content: bytes) -> None:
     working().file = {"name": name, "digest": digest}
 
 
-def _bench() -> dict[str, str]:
-    """Return the fields that a new page begins with as they were at the last entry."""
+def _bench() -> tuple[dict[str, str], str]:
+    """Return the fields that a new page begins with as they were at the last entry, and the unit of that entry."""
     if not cache.kept_on_this_address():
-        return {}
+        return {}, ""
     try:
         kept = cache.notebook().bench_defaults()
     except NotebookComplaint:  # said where the page is to be kept
-        return {}
-    return {field: kept[name] for name, field in BENCH_FIELDS.items() if kept[name]}
+        return {}, ""
+    begun = {field: kept[name] for name, field in BENCH_FIELDS.items() if kept[name] and name != "unit"}
+    return begun, kept["unit"]
 
 
 def _mark(text: str) -> str:

@@ -23,6 +23,7 @@ class Working:
     looked_at what stood in each of these parts when the page was last looked at
     entry     number, key, time and fingerprint of the entry as which the result was saved, None where it was not
     begun     the fields as the page began
+    last_unit the unit of the last entry, shown in grey: the heading of the readings goes before it
     """
 
     fields: dict[str, Any]
@@ -35,6 +36,7 @@ class Working:
     looked_at: dict[str, Any] = field(default_factory=dict)
     entry: dict[str, Any] | None = None
     begun: dict[str, Any] = field(default_factory=dict)
+    last_unit: str = ""
     key: str = ""
     saved: datetime | None = None
     trouble: str = ""
@@ -67,10 +69,10 @@ class Reopened:
     notice: str = ""
 
 
-def empty(bench: Mapping[str, str] | None = None) -> Working:
+def empty(bench: Mapping[str, str] | None = None, last_unit: str = "") -> Working:
     """Return a page on which nothing was typed; ``bench`` holds fields that begin otherwise than by default."""
     fields = deepcopy(dict(FIELDS)) | dict(bench or {})
-    return Working(fields=fields, begun=deepcopy(fields))
+    return Working(fields=fields, begun=deepcopy(fields), last_unit=last_unit)
 
 
 def note_times(now: Working, moment: datetime) -> None:

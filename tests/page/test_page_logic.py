@@ -115,10 +115,11 @@ def test_an_address_is_not_adopted(twelve):
 
 
 def test_a_clear_can_be_put_back(twelve):
-    """The readings come back, also after a refresh in between; the question was never touched."""
+    """Readings and question go and come back, also after a refresh in between."""
     page = typed(opened(), twelve, "5.000")
     page.button(key="clear").click().run()
     assert page.text_area(key="readings_text").value == ""
+    assert page.text_input(key="target").value == ""
     again = opened(key_of(page))
     again.button(key="put_back").click().run()
     assert again.text_area(key="readings_text").value == twelve
