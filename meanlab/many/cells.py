@@ -35,6 +35,7 @@ class Cells:
     given     the entries as they stand in the table
     special   what the texts are that are no plain numbers; ``texts`` the plain decimal text of those that are numbers
     sign      decimal sign of the texts
+    unit      the unit that stands with the texts, "" where none does
     remarks   what must be seen about the texts
     """
 
@@ -46,6 +47,7 @@ class Cells:
     special: dict[int, Special] = field(default_factory=dict)
     texts: dict[int, str] = field(default_factory=dict)
     sign: Sign = "."
+    unit: str = ""
     remarks: tuple[str, ...] = ()
 
     def decimal(self, place: int) -> Decimal:
@@ -196,5 +198,5 @@ def _from_read(entries: list[Any], texts: Sequence[str], kinds: Sequence[str], f
     stored = np.array([one == "number" for one in kinds], dtype=bool)
     computed = _computed(whole, places) & stored & np.array([isinstance(one, float) for one in entries], dtype=bool)
     plain_texts = dict(zip(readings.tolist(), found.numbers, strict=True))
-    remarks = tuple(found.warnings)
-    return Cells(kind, numbers, places, computed, entries, found.special, plain_texts, found.sign.sign, remarks)
+    said = (found.sign.sign, found.unit or "", tuple(found.warnings))
+    return Cells(kind, numbers, places, computed, entries, found.special, plain_texts, *said)

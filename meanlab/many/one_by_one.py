@@ -44,6 +44,7 @@ def reading_set(samples: Samples, sample: int) -> ReadingSet:
         raise ReadingsComplaint("a reading has no preparation label; give each reading one.", "preparations")
     return ReadingSet(
         tuple(one for one in found if not isinstance(one, Censored)),
+        cells.unit,
         preparations=None if labels is None else tuple(labels[place] for place in entries),
         censored=tuple(
             Censored(place, one.kind, one.limit, typed=one.typed)

@@ -6,6 +6,7 @@ from decimal import Decimal
 
 import numpy as np
 
+from meanlab.checks.units import units_that_differ
 from meanlab.core.numbers import places, scaled
 from meanlab.core.question import Question
 from meanlab.many.cells import MOST_PLACES, WIDE, Cells
@@ -34,7 +35,8 @@ def blocks(samples: Samples, question: Question, targets: Targets) -> Iterator[B
     """Judge every sample that can be judged beside others, block by block."""
     null = Null()
     plain = np.flatnonzero((samples.counts > 0) & ~samples.odd & targets.usable)
-    if samples.preparations is not None or not len(plain):
+    in_two_units = units_that_differ(samples.cells.unit, question.unit) is not None
+    if samples.preparations is not None or in_two_units or not len(plain):
         return
     finest = _finest_places(samples, targets, question)[plain]
     key = samples.counts[plain] * (WIDE + 1) + (finest + STEP_OF_PLACES - 1) // STEP_OF_PLACES
