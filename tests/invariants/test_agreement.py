@@ -4,8 +4,9 @@ import pytest
 from drawn import ALTERNATIVES, CONTINUOUS, PROCEDURES, STEADY, drawn_readings, least_readings
 from hypothesis import assume, given
 from hypothesis import strategies as st
+from scipy import stats
 
-from meanlab import analyse
+from meanlab import Question, analyse
 from meanlab.analysis import decide
 from meanlab.core.readings import ReadingSet
 from meanlab.wording import verdict_word
@@ -142,8 +143,6 @@ def test_an_uncertain_target_leaves_shape_proof_procedures_without_a_verdict(pro
 
 
 def _analyse(readings, target, **question):
-    from meanlab import Question
-
     return analyse(readings, Question(target, **question))
 
 
@@ -155,3 +154,22 @@ def test_with_endless_readings_each_claim_has_at_most_its_risk(procedure):
     found = _analyse(readings, "5.00", procedure=procedure, equivalence_limit="0.05", **sigma)
     assert found.test.interval.low < found.equivalence.low < found.equivalence.high < found.test.interval.high
     assert found.verdict == "differs, within the limit"
+
+
+def test_agreement_of_readings_below_a_limit_takes_the_worst_place_of_each():
+    """Sign with below-limit readings: what is undecided at target − E or + E counts against agreement there."""
+    censored = tuple({"index": place, "kind": "below", "limit": "0.30"} for place in range(3))
+    readings = ReadingSet(tuple(f"0.4{digit}" for digit in "0123456789"), censored=censored)
+    question = Question("0.45", equivalence_limit="0.20", significance="0.05")
+    found = decide(readings, question)
+    # at 0.25 three "<0.30" may lie below: 10 of 13 above; at 0.65 all 13 lie below
+    assert found.equivalence.p_value == pytest.approx(stats.binomtest(10, 13, alternative="greater").pvalue, rel=1e-12)
+    assert found.equivalence.within
+    assert found.verdict == "agrees"
+    low = ReadingSet(
+        (*(f"0.1{digit}" for digit in "123456"), *(f"0.4{digit}" for digit in "012345")), censored=censored
+    )
+    agreement = decide(low, question).equivalence
+    # at 0.25 six lie below, and the three "<0.30" may: 6 of 15 above
+    assert agreement.p_value == pytest.approx(stats.binomtest(6, 15, alternative="greater").pvalue, rel=1e-12)
+    assert not agreement.within

@@ -38,6 +38,7 @@ ROWS = {
     "the median goes before two readings": (["5.0", "5.1"], {"parameter": "median"}, 5, "sign"),
     "the median": (NORMAL, {"parameter": "median"}, 5, "sign"),
     "two readings": (["5.0", "5.1"], {}, 6, "t"),
+    "three readings": (["5.0", "5.1", "5.3"], {}, 7, "t"),
     "few readings, whatever their shape": (SKEWED[3:], {}, 7, "t"),
     "a coarse step goes before the test of normality": (COARSE, {}, 8, "t"),
     "a declared step counts": (NORMAL, {"resolution": "0.05"}, 8, "t"),
@@ -66,6 +67,36 @@ def test_the_first_row_that_fits_decides(readings, question, row, procedure):
     assert (route.row, route.procedure) == (row, procedure)
     assert not route.fixed
     assert route.reasons
+
+
+@pytest.mark.parametrize(
+    ("n", "step_in_s", "coarse"),
+    [
+        *((8, 0.301, True), (8, 0.299, False), (30, 0.301, True), (30, 0.299, False)),
+        *((31, 0.201, True), (31, 0.199, False), (60, 0.201, True), (60, 0.199, False)),
+        *((61, 0.101, True), (61, 0.099, False), (100, 0.101, True), (100, 0.099, False)),
+    ],
+)
+def test_a_step_is_coarse_by_the_number_of_readings(n, step_in_s, coarse):
+    """Row 8 from r/s above 0.3 up to 30 readings, 0.2 up to 60, 0.1 beyond; below that the shape is examined."""
+    readings = [f"{value:.6f}" for value in stats.norm.ppf((np.arange(n) + 0.5) / n)]
+    s = np.std(np.array(readings, dtype=float), ddof=1)
+    route = analyse(readings, Question("0.1", resolution=f"{step_in_s * s:.9f}")).route
+    assert route.row == (8 if coarse else 9)
+
+
+def test_enough_readings_are_28_and_25_times_the_square_of_the_skewness():
+    """Row 10 just where n ≥ 28 + 25 g₁², by scipy's g₁, for sets that do not look normal."""
+    n, tried = 60, {True: 0, False: 0}
+    x = np.random.default_rng(20261201).gamma(2.5, 1, (3000, n)).round(6)
+    room = n - 28 - 25 * stats.skew(x, axis=1) ** 2
+    for place in np.flatnonzero(np.abs(room) < 0.5):
+        if stats.shapiro(x[place]).pvalue < 0.04:
+            enough = bool(room[place] >= 0)
+            row = decide(ReadingSet(tuple(f"{value:.6f}" for value in x[place])), Question("2.5")).route.row
+            assert (row == 10) == enough
+            tried[enough] += 1
+    assert min(tried.values()) >= 3
 
 
 def test_one_preparation_is_not_testable_whatever_is_fixed():

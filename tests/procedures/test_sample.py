@@ -8,6 +8,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from made_samples import fractions_of, sample_of
 
+from meanlab.core.numbers import root
 from meanlab.procedures.sample import Sample, power_sums
 
 STEADY = settings(max_examples=150, deadline=None, derandomize=True, database=None)
@@ -93,6 +94,14 @@ def test_shifted_units_keep_their_proportions(texts):
     widest = max(map(abs, steps))
     expected = [float(step / widest) if widest else 0.0 for step in steps]
     assert sample_of(texts).shifted.tolist() == expected
+
+
+def test_a_root_just_above_the_middle_of_two_doubles_is_rounded_up():
+    """√(k² + 1) lies above k = 2⁵³ + 1, the middle of two doubles, by less than 1e-16 of a step: it is not a tie."""
+    middle = 2**53 + 1
+    assert root(middle**2, 1) == 2.0**53
+    assert root(middle**2 + 1, 1) == 2.0**53 + 2
+    assert root(middle**2 - 1, 1) == 2.0**53
 
 
 def test_differences_from_a_target_beyond_64_bits_are_exact():
