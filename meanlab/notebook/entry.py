@@ -127,7 +127,7 @@ def entry_from(content: bytes, digest: str) -> Entry:
         return replace(rebuilt(Entry, values), digest=digest)
     except NotebookComplaint:
         raise
-    except (ValueError, TypeError, Complaint) as problem:
+    except (ValueError, TypeError, AttributeError, Complaint) as problem:
         raise NotebookComplaint(
             f"The content of this entry cannot be read ({problem}). Verify the notebook, and go back to a copy of it."
         ) from problem

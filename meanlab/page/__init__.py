@@ -27,7 +27,7 @@ def show() -> None:
     with guarded("lower part"):
         parts.draw(found)
     focus.draw()
-    state.keep()
+    state.end()
 
 
 def warm_up() -> None:

@@ -10,6 +10,7 @@ from hashlib import sha256
 from typing import Any
 
 import streamlit as st
+from streamlit.runtime.scriptrunner import get_script_run_ctx
 
 from meanlab.core.complaints import NotebookComplaint
 from meanlab.notebook import Entry
@@ -41,14 +42,22 @@ def begin() -> Working:
         st.session_state[_FILES] = {}
         st.session_state[_WORKING] = _brought_back()
     now = working()
+    drawn, now.drawn = now.drawn, None
     for name in FIELDS:
-        if name in st.session_state:
+        if name in st.session_state and (drawn is None or name in drawn):
             _take_in(now, name, st.session_state[name])
-        else:
+        else:  # a widget that is not drawn any more goes back to an older value
             st.session_state[name] = now.fields[name]
     note_times(now, datetime.now(UTC))
     keep()
     return now
+
+
+def end() -> None:
+    """Note which widgets stand on the page, and keep it as it is now."""
+    run = get_script_run_ctx()
+    working().drawn = None if run is None else run.shared.widget_user_keys_this_run.snapshot()
+    keep()
 
 
 def working() -> Working:

@@ -22,6 +22,7 @@ class Working:
     set_times when each part of the question was set (UTC, ISO 8601)
     looked_at what stood in each of these parts when the page was last looked at
     entry     number, key, time and fingerprint of the entry as which the result was saved, None where it was not
+    drawn     keys of the widgets that the last run drew, None where it did not come to its end
     begun     the fields as the page began
     last_unit the unit of the last entry, shown in grey: the heading of the readings goes before it
     """
@@ -35,6 +36,7 @@ class Working:
     set_times: dict[str, str] = field(default_factory=dict)
     looked_at: dict[str, Any] = field(default_factory=dict)
     entry: dict[str, Any] | None = None
+    drawn: frozenset[str] | None = None
     begun: dict[str, Any] = field(default_factory=dict)
     last_unit: str = ""
     key: str = ""

@@ -231,3 +231,18 @@ def test_planning_needs_no_reading():
     page.text_input(key="plan_difference").set_value("1")
     page.text_input(key="plan_s").set_value("1").run()
     assert "10 readings" in said(page)
+
+
+def test_what_is_typed_into_a_part_is_there_when_the_part_comes_back():
+    """Fields that are not on the page for a while keep what was typed, also over a refresh."""
+    page = opened()
+    page.get("button_group")[0].set_value("Enough readings?").run()
+    page.text_input(key="plan_difference").set_value("1.5").run()
+    page.get("button_group")[0].set_value("Checks").run()
+    page.run()
+    again = opened(key_of(page))
+    for shown in (page, again):
+        shown.get("button_group")[0].set_value("Enough readings?").run()
+        assert shown.text_input(key="plan_difference").value == "1.5"
+        shown.text_input(key="plan_difference").set_value("").run()
+        assert shown.text_input(key="plan_difference").value == ""
