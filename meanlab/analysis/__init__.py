@@ -117,7 +117,7 @@ def decide(readings: ReadingSet, question: Question) -> Decided:
     test = None
     if route.procedure is not None:
         test = run(route.procedure, units.spans, units.sample, question, chosen=True)
-        if units.censored and not test.decided and test.p_range is not None:
+        if test.p_range is not None and not test.reject and test.p_range[0] < question.alpha:
             route, test = _left_open(route, test), None
     equivalence = equivalence_of(units, question, test)
     return Decided(units, look, route, test, equivalence, verdict_of(question, test, equivalence))

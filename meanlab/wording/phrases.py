@@ -183,7 +183,7 @@ def cause_of_no_decision(analysis: Analysis, sign: str, alpha: float) -> str:
     test = analysis.test
     if test is None:
         return ""
-    if not test.decided and test.p_range is not None:
+    if not test.decided and not test.reject and test.p_range is not None:
         undecided = "what the readings below or above a limit really are decides the outcome"
         return undecided + p_range_phrase(analysis, sign)
     if not test.decided and test.p_ties_against is not None:

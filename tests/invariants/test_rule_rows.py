@@ -99,6 +99,25 @@ def test_enough_readings_are_28_and_25_times_the_square_of_the_skewness():
     assert min(tried.values()) >= 3
 
 
+def test_below_limit_readings_that_leave_the_decision_open_are_not_testable():
+    """Ten "<5" against 3 may all lie on one side or half on each: no test, and the reason names both p."""
+    censored = tuple({"index": place, "kind": "below", "limit": "5"} for place in range(10))
+    found = analyse(ReadingSet((), censored=censored), Question("3"))
+    assert (found.verdict, found.route.procedure, found.route.row) == ("not testable", None, 0)
+    assert "from 0.002 to 1" in found.route.reasons[0]
+
+
+def test_a_rejection_that_rests_on_ties_cannot_tell_also_beside_below_limit_readings():
+    """One "<6" that may lie anywhere does not matter here, one reading equal to the target does: p 0.0215, or 0.065."""
+    censored = ({"index": 0, "kind": "below", "limit": "6"},)
+    readings = ReadingSet((*(f"5.{digit}" for digit in "123456789"), "5.0"), censored=censored)
+    found = analyse(readings, Question("5.0"))
+    assert (found.verdict, found.route.procedure) == ("cannot tell", "sign")
+    # two-sided p of 1 against 9, and of 2 against 9, by whole numbers
+    assert (found.test.p_value, found.test.p_ties_against) == (22 / 1024, 134 / 2048)
+    assert "rests on leaving out readings equal to the target" in found.conclusion
+
+
 def test_one_preparation_is_not_testable_whatever_is_fixed():
     """The scatter between preparations is unknown with one of them, also with a fixed procedure or a known σ."""
     one = ReadingSet(("5.0", "5.1", "5.2"), preparations=("a", "a", "a"))
