@@ -66,8 +66,10 @@ def draw() -> None:
         _known_sigma()
         _limits()
         _procedure()
-    in_force = asked.in_force(state.working().fields)
-    st.html(f'<p class="ml-counts">{html.escape(in_force) or "&nbsp;"}</p>')
+    with st.container(key="in_force"):
+        in_force = asked.in_force(state.working().fields)
+        if in_force:
+            st.html(f'<p class="ml-counts">{html.escape(in_force)}</p>')
 
 
 def _hint(last_unit: str) -> str:

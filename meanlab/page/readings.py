@@ -10,7 +10,7 @@ from meanlab.page import bench, cache, clock, file_choice, samples_opener, state
 from meanlab.page.guard import guarded, say
 
 SIGNS = ("as written", "decimal comma", "decimal point")
-BOX_HEIGHT = 160
+BOX_HEIGHT = 150
 BOX_HEIGHT_BESIDE_A_FILE = 68
 
 

@@ -74,16 +74,17 @@ def title_of(analysis: Analysis, entries: Entries, width: float) -> str:
     test = analysis.test
     nested = analysis.readings.preparations is not None
     drawn = len(entries.kept)
-    what = "readings" if drawn == entries.count else f"readings ({drawn} of {entries.count})"
+    what = "readings" if drawn == entries.count else f"readings ({drawn} of {entries.count}, evenly by size)"
     if nested:
         what = "injections (ticks) and preparation means"
+    unit = shortened(entries.unit, width / 3, 12)
+    what += f", {unit}" if unit else ""
     if test is not None:
         level = level_text(test.interval.level, entries.sign)
         what += f"; above: {parameter_of(analysis)} with {level} {BOUNDS.get(test.alternative, 'interval')}"
     elif analysis.summary.mean is not None:
         what += "; above: mean"
-    unit = shortened(entries.unit, width / 3, 12)
-    return f"{unit}: {what}" if unit else what
+    return what
 
 
 def span_of(analysis: Analysis, entries: Entries) -> tuple[float, float]:
