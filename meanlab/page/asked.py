@@ -177,7 +177,8 @@ def in_force(fields: Mapping[str, Any]) -> str:
     >>> in_force({"sigma": "0.02", "limit": ""})
     'In force: σ 0.02'
     """
-    named = {"certificate_value": "U", "sigma": "σ", "own_uncertainty": "own u", "limit": "E", "matters": "difference that matters"}
+    named = {"certificate_value": "U", "sigma": "σ", "own_uncertainty": "own u", "limit": "E"}
+    named["matters"] = "difference that matters"
     said = [f"{name} {fields[field].strip()}" for field, name in named.items() if fields.get(field, "").strip()]
     if fields.get("procedure", "rule") != "rule":
         said.append(f"procedure {fields['procedure'].replace('_', ' ')}")

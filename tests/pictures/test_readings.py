@@ -100,7 +100,7 @@ def test_many_readings_are_thinned_evenly_and_it_is_said():
     assert (min(chosen), max(chosen)) == (min(values), max(values))
     assert np.quantile(chosen, [0.25, 0.5, 0.75]) == pytest.approx(np.quantile(values, [0.25, 0.5, 0.75]), abs=0.01)
     drawing = readings_picture(analysis)
-    assert any(f"readings ({MOST_DRAWN} of 3000)" in words.text for words in drawing.words)
+    assert any(f"readings ({MOST_DRAWN} of 3000, evenly by size)" in words.text for words in drawing.words)
     assert len(drawing.marks) <= MOST_DRAWN + 2
 
 
