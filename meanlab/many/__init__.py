@@ -8,13 +8,14 @@ import pandas as pd
 
 from meanlab.core.question import Question
 from meanlab.intake.numerals import Sign
-from meanlab.many.family import holm
+from meanlab.many.family import OUTCOMES, holm, outcomes
 from meanlab.many.one_by_one import decided_alone
+from meanlab.many.opened import Opened
 from meanlab.many.partitions import Parts, judged_in_partitions
 from meanlab.many.samples import Samples, Targets, chosen_columns, samples_of, targets_of
 from meanlab.many.together import blocks
 
-__all__ = ["COLUMNS", "analyse_many", "holm"]
+__all__ = ["COLUMNS", "OUTCOMES", "Opened", "analyse_many", "holm", "outcomes"]
 
 DOUBLES = ("mean", "s", "low", "high", "difference", "statistic", "df", "p")
 COLUMNS = ("n", *DOUBLES, "p_holm", "procedure", "verdict", "flags")

@@ -1,6 +1,9 @@
 """The family of all samples that have a p: Holm's adjustment, and which rejections it takes back."""
 
 import numpy as np
+import pandas as pd
+
+OUTCOMES = ("differs", "agrees", "cannot tell", "not testable")
 
 
 def holm(p: np.ndarray) -> np.ndarray:
@@ -16,3 +19,22 @@ def holm(p: np.ndarray) -> np.ndarray:
     left = np.arange(len(order), 0, -1)
     adjusted[order] = np.minimum(1.0, np.maximum.accumulate(left * p[order])) if len(order) else p[order]
     return adjusted
+
+
+def outcomes(results: pd.DataFrame, alpha: float) -> np.ndarray:
+    """Return what each sample comes to once the family is counted: one of OUTCOMES, shape (samples,).
+
+    "differs" stands after Holm only; a rejection that Holm takes back leaves "agrees" where agreement within ± E was
+    shown, else "cannot tell".
+
+    >>> table = pd.DataFrame({"verdict": ["differs", "differs, within the limit"], "p_holm": [0.2, 0.3]})
+    >>> outcomes(table, 0.05).tolist()
+    ['cannot tell', 'agrees']
+    """
+    verdict = results["verdict"].to_numpy(dtype=object)
+    kept = results["p_holm"].to_numpy(dtype=float) < alpha
+    found = verdict.copy()
+    found[(verdict == "differs") & ~kept] = "cannot tell"
+    within = verdict == "differs, within the limit"
+    found[within] = np.where(kept[within], "differs", "agrees")
+    return found

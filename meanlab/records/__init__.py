@@ -8,6 +8,9 @@ from typing import Any
 
 _HOMES = {
     "written_record": "meanlab.records.document",
+    "written_pages": "meanlab.records.pages",
+    "table_csv": "meanlab.records.tables",
+    "table_xlsx": "meanlab.records.tables",
     "numbers_csv": "meanlab.records.numbers",
     "panel_pdf": "meanlab.records.pdf",
     "panel_png": "meanlab.records.panel",

@@ -45,19 +45,19 @@ def written_record(analysis: Analysis, source: Source | None = None, written: Wr
     source = source or Source(entries=entries_of(analysis.readings))
     written = written or Written()
     texts = panel_texts(analysis)
-    page = _empty_page()
-    _write(page, texts.title, TITLE, bold=True)
-    _write(page, texts.verdict_word, HEADING, bold=True)
-    _write(page, texts.sentence)
+    page = empty_page()
+    write(page, texts.title, TITLE, bold=True)
+    write(page, texts.verdict_word, HEADING, bold=True)
+    write(page, texts.sentence)
     for drawing in pictures(analysis):
-        _draw(page, drawing)
+        place_picture(page, drawing)
     for part in account(analysis, texts, source, written):
         _part(page, part)
     _foot(page, texts.origin)
     _describe(page, analysis, texts.title, written)
     content = BytesIO()
     page.save(content)
-    return _without_moment(content.getvalue())
+    return without_moment(content.getvalue())
 
 
 def pictures(analysis: Analysis) -> tuple[Drawing, ...]:
@@ -70,7 +70,8 @@ def pictures(analysis: Analysis) -> tuple[Drawing, ...]:
     return sampling_distribution(analysis.test, analysis.readings.decimal_sign, noun, width, upper), below
 
 
-def _empty_page() -> Document:
+def empty_page() -> Document:
+    """Return an empty A4 page in the type of the records."""
     page = docx.Document()
     section = page.sections[0]
     section.page_width, section.page_height = PAGE
@@ -88,7 +89,8 @@ def _empty_page() -> Document:
     return page
 
 
-def _write(page: Document, text: str, size: Any = TEXT, bold: bool = False, style: str | None = None) -> Paragraph:
+def write(page: Document, text: str, size: Any = TEXT, bold: bool = False, style: str | None = None) -> Paragraph:
+    """Add a paragraph."""
     paragraph = page.add_paragraph(style=style)
     run = paragraph.add_run(printable(text))
     run.font.size, run.bold = size, bold
@@ -98,13 +100,14 @@ def _write(page: Document, text: str, size: Any = TEXT, bold: bool = False, styl
 def _part(page: Document, part: Part) -> None:
     page.add_heading(printable(part.heading), level=1)
     if part.rows:
-        _table(page, part)
+        table_of(page, part)
     for sentence in part.sentences:
         if sentence:
-            _write(page, sentence, style="List Bullet" if part.listed and len(part.sentences) > 1 else None)
+            write(page, sentence, style="List Bullet" if part.listed and len(part.sentences) > 1 else None)
 
 
-def _table(page: Document, part: Part) -> None:
+def table_of(page: Document, part: Part) -> None:
+    """Add the table of a part, rules between its rows only."""
     rows = [part.columns, *part.rows] if part.columns else list(part.rows)
     table = page.add_table(rows=len(rows), cols=len(rows[0]))
     table.alignment = WD_TABLE_ALIGNMENT.LEFT
@@ -153,7 +156,8 @@ def _lines_between(table: Any) -> None:
     after[0].addprevious(borders)  # the schema of the format fixes the order; every table has one of these
 
 
-def _draw(page: Document, drawing: Drawing) -> None:
+def place_picture(page: Document, drawing: Drawing) -> None:
+    """Add a picture in the width of the text, with its sentence for those who do not see it."""
     shape = page.add_picture(BytesIO(png(drawing)), width=WIDTH)
     shape._inline.docPr.set("descr", printable(drawing.alt))
 
@@ -184,7 +188,7 @@ def _describe(page: Document, analysis: Analysis, title: str, written: Written) 
     facts.comments, facts.language = "", "en"
 
 
-def _without_moment(content: bytes) -> bytes:
+def without_moment(content: bytes) -> bytes:
     """Pack the parts again without the moment at which they were packed."""
     packed = BytesIO()
     with zipfile.ZipFile(BytesIO(content)) as parts, zipfile.ZipFile(packed, "w", zipfile.ZIP_DEFLATED) as again:

@@ -34,7 +34,7 @@ ONLY_CORE = ("intake", "wording")
 # library → the parts of the package that may import it
 HOMES = {
     "streamlit": {"page", "__main__"},
-    "openpyxl": {"intake"},
+    "openpyxl": {"intake", "records"},
     "python_calamine": {"intake"},
     "charset_normalizer": {"intake"},
     "sqlalchemy": {"notebook"},
