@@ -8,7 +8,7 @@ from meanlab.intake.characters import shown
 from meanlab.intake.heading import heading_of
 from meanlab.intake.picked import Picked
 from meanlab.intake.roles import Role, sample_of
-from meanlab.intake.units import same_unit
+from meanlab.intake.units import is_unit, same_unit
 
 
 def with_what_stands_beside(picked: Picked, roles: Sequence[Role]) -> Picked:
@@ -31,9 +31,19 @@ def _name_and_unit(picked: Picked) -> None:
     else:
         units = {heading.unit for heading in headings}
         picked.unit = units.pop() if len(units) == 1 else None
+    if len(headings) == 1 and picked.unit is None:
+        picked.unit = _unit_in_next_heading(picked)
     if picked.name is None and block.table.named:
         named = heading_of(block.table.named)
         picked.name, picked.unit = named.name, picked.unit or named.unit
+
+
+def _unit_in_next_heading(picked: Picked) -> str | None:
+    """A unit as a heading of its own, right of the name and over nothing: "Nitrate", "mg/L"."""
+    block, beside = picked.block, picked.columns[0] + 1
+    text = block.heading_text(beside)
+    over_nothing = text and not any(block.table.text(row, beside) for row in sample_of(picked.rows))
+    return text if over_nothing and is_unit(text) else None
 
 
 def _unit_column(picked: Picked, roles: Sequence[Role]) -> None:

@@ -5,7 +5,7 @@ from dataclasses import dataclass
 
 from meanlab.intake.heading import Heading, heading_of
 from meanlab.intake.long_column import OneColumn
-from meanlab.intake.table import FIRST_ROWS, Table, is_blank, sort_of
+from meanlab.intake.table import FIRST_ROWS, Table, is_blank, parsed, sort_of
 from meanlab.intake.units import is_unit
 from meanlab.intake.words import is_summary
 
@@ -16,7 +16,8 @@ class Block:
 
     heading     row of the headings, None where there is none; ``units`` and ``group`` rows beside it likewise
     data        the rows with data, in order, without headings that come again and rows of computed figures
-    summaries   rows of computed figures ("Mean", "SD"); ``again`` rows where the heading comes again
+    summaries   rows of computed figures ("Mean", "SD"); ``again`` rows where the heading comes again;
+                ``tail`` rows of words below the data
     """
 
     table: Table
@@ -26,6 +27,7 @@ class Block:
     data: Sequence[int]
     summaries: tuple[int, ...] = ()
     again: tuple[int, ...] = ()
+    tail: tuple[int, ...] = ()
 
     @property
     def width(self) -> int:
@@ -164,9 +166,22 @@ def _block(table: Table, above: list[int], start: int, end: int) -> Block:
             summaries.append(row)
         else:
             data.append(row)
+    data, tail = _without_tail(table, data)
     if units is not None and again:
         data = [row for row in data if list(rows[row]) != list(rows[units])]
-    return Block(table, heading, units, group, data, tuple(summaries), tuple(again))
+    return Block(table, heading, units, group, data, tuple(summaries), tuple(again), tail)
+
+
+def _without_tail(table: Table, data: list[int]) -> tuple[list[int], tuple[int, ...]]:
+    """Data without the words below them: rows with one text in the first column, where the others have numbers."""
+    firsts = [sort_of(table, row, 0) for row in data[:FIRST_ROWS]]
+    numbered = sum(sort in ("number", "stamp") for sort in firsts) * 2 > len(firsts)
+    end = len(data)
+    while end and sum(map(bool, table.rows[data[end - 1]])) == 1 and sort_of(table, data[end - 1], 0) == "text":
+        end -= 1
+    parted = end < len(data) and is_blank(table.rows[data[end] - 1])
+    wide = max((len(table.rows[row]) for row in data[:FIRST_ROWS]), default=0) > 1
+    return (data[:end], tuple(data[end:])) if wide and end and (numbered or parted) else (data, ())
 
 
 def _one_column(
@@ -177,7 +192,8 @@ def _one_column(
     different = set(texts[places.start : places.stop])
     name = texts[heading] if heading is not None else ""
     figures = {text for text in different if text[:1].isalpha() and is_summary(text)}
-    if not figures and (not name or name not in different):
+    marked = {text for text in different if text[-1:] in ")]" and is_summary(parsed(text[:60]).remark)}
+    if not figures and not marked and (not name or name not in different):
         return data, (), ()
     again: list[int] = []
     summaries: list[int] = []
@@ -187,6 +203,8 @@ def _one_column(
         if figure_follows or (kept and texts[row] in figures):
             summaries.append(row)
             figure_follows = not figure_follows
+        elif texts[row] in marked:
+            summaries.append(row)
         else:
             (again if name and texts[row] == name else kept).append(row)
     return kept, tuple(summaries), tuple(again)

@@ -4,7 +4,7 @@ from meanlab.intake.blocks import Block
 from meanlab.intake.characters import shown
 from meanlab.intake.choosing import Picked
 from meanlab.intake.given import Given, Read
-from meanlab.intake.table import filled_width
+from meanlab.intake.table import filled_width, sort_of
 
 MOST_ROWS = 20_000
 
@@ -16,6 +16,7 @@ def doubts_about(picked: Picked, given: Given, found: Read) -> tuple[list[str], 
     warnings.extend(_left_out_rows(block))
     warnings.extend(_odd_heading(picked))
     warnings.extend(_odd_lengths(picked))
+    warnings.extend(_texts_beside(picked))
     warnings.extend(_hidden(picked))
     if len(found.numbers) <= MOST_ROWS:
         warnings.extend(_first_unlike(picked, given, found))
@@ -25,6 +26,9 @@ def doubts_about(picked: Picked, given: Given, found: Read) -> tuple[list[str], 
     above = sum(any(cells) for cells in block.table.rows[: min(first, 2000)])
     if above and not block.table.turned:
         notes.append(f"Above the heading {_counted(above, 'line was', 'lines were')} not read.")
+    if block.tail:
+        named = ", ".join(f'"{shown(" ".join(filter(None, block.table.rows[row])))}"' for row in block.tail[:3])
+        notes.append(f"Below the table {_counted(len(block.tail), 'line was', 'lines were')} not read: {named}.")
     if block.table.labels:
         count = len(set(block.table.labels.values()) - {""})
         notes.append(f"{count} lines name preparations; readings of one preparation are not independent.")
@@ -74,6 +78,19 @@ def _odd_lengths(picked: Picked) -> list[str]:
         return []
     where = ", ".join(f"{table.place(row, 0)} has {count}" for row, count in list(odd.items())[:5])
     return [f"Rows with another number of fields than the {width} of the heading: {where}. Check them in the file."]
+
+
+def _texts_beside(picked: Picked) -> list[str]:
+    """Words right of readings without a heading belong to them, "5.02; rejected", and are said."""
+    table, block = picked.block.table, picked.block
+    if block.heading is not None or table.sheet is not None or len(picked.columns) != 1 or not table.separator:
+        return []
+    column = picked.columns[0] + 1
+    rows = [row for row in picked.rows[:MOST_ROWS] if sort_of(table, row, column) == "text"]
+    if not rows or len(rows) == len(picked.rows):
+        return []
+    where = ", ".join(f'{table.place(row, column)} "{shown(table.text(row, column))}"' for row in rows[:5])
+    return [f"Words beside the readings were not read: {where}. Leave a reading out by hand, with its cause."]
 
 
 def _hidden(picked: Picked) -> list[str]:

@@ -46,7 +46,7 @@ _WORD_AND_LIMIT = re.compile(
     rf"(?P<word><?\s?[^\W\d][^\d(<≤:=]*?)\s*[(<≤:=]*\s*(?P<number>{NUMERAL}[^()]*)\)?", re.ASCII
 )
 _ABOUT = re.compile(
-    r"(?:~|≈|≅|∼|ca\.?(?=[\s\d])|circa\b|about\b|approx(?:\.|imately)?(?=\s)|around\b|etwa\b|roughly\b)\s*",
+    r"(?:[*†‡!?](?=[\d.+-])|~|≈|≅|∼|ca\.?(?=[\s\d])|circa\b|about\b|approx(?:\.|imately)?(?=\s)|around\b|etwa\b|roughly\b)\s*",
     re.IGNORECASE,
 )
 _QUOTES = "'\"“”„‘’‚«»"
@@ -57,8 +57,12 @@ _LIMIT = re.compile(
     re.IGNORECASE,
 )
 _UNCERTAINTY = re.compile(
-    rf"\(?\s*(?:±|\+\s?/\s?-|\+-|-/\+)\s*(?:{NUMERAL})(?:[eE][+-]?\d+)?\s*(?P<unit>.*?)\)?", re.ASCII
+    rf"\(?\s*(?:±|\+\s?/\s?-|\+-|-/\+)\s*(?:{NUMERAL})(?:[eE][+-]?\d+)?\s*(?P<unit>.*?)\)?"
+    r"(?:[,;]?\s*\(?k\s?=\s?\d+(?:[.,]\d+)?\)?)?",
+    re.ASCII,
 )
+_WORD_BEHIND = re.compile(r"[,:]\s+[^\W\d]")
+_DASH_AND_WORD = re.compile(r"(?:-+|<-+)\s+[^\W\d]")
 _LAST_DIGITS = re.compile(r"\(\d{1,4}\)", re.ASCII)
 _MONTH = (
     r"(?:jan|feb|mar|apr|may|jun|jul|aug|sep|sept|oct|nov|dec|mär|mai|okt|dez|january|february|march|april|june|july|"
@@ -133,6 +137,8 @@ def parse(text: str) -> Parsed:
 def _word(text: str) -> Parsed | None:
     if not text or is_missing_mark(text):
         return MISSING
+    if len(text) > 2 and set(text) <= {"<"} | {">"} and len(set(text)) == 1:
+        return Parsed("below" if text[0] == "<" else "above", sort="unclear")
     if text[0] == "#" and set(text) == {"#"}:
         return Parsed("unread", sort="width") if len(text) > 1 else Parsed("unread", sort="text")
     word = plain_word(text)
@@ -227,7 +233,8 @@ def _with_rest(rest: str, as_reading: Callable[..., Parsed], signed: bool) -> Pa
         return as_reading()
     if rest == "-" and not signed:
         return as_reading(remark="-", sort="trailing minus", negative=True)
-    if rest[0] in ".,'0123456789_:" or rest in ("e", "E") or (rest[0] == "/" and _DIGIT.match(rest[1:2])):
+    joined = (rest[0] in ".,'0123456789_:" and not _WORD_BEHIND.match(rest)) or rest in ("e", "E")
+    if joined or (rest[0] == "/" and _DIGIT.match(rest[1:2])):
         return None
     if _LAST_DIGITS.match(rest):
         tail = rest[rest.index(")") + 1 :].strip()
@@ -235,7 +242,8 @@ def _with_rest(rest: str, as_reading: Callable[..., Parsed], signed: bool) -> Pa
     body = rest.strip()
     uncertainty = _UNCERTAINTY.fullmatch(body)
     if uncertainty and (not uncertainty["unit"] or is_unit(uncertainty["unit"])):
-        return as_reading(uncertainty["unit"], body, "uncertainty")
+        unit = uncertainty["unit"] if uncertainty["unit"] != "%" else ""  # ± 3 % may be relative
+        return as_reading(unit, body, "uncertainty")
     bracketed = _UNIT_IN_BRACKETS.fullmatch(body)
     if bracketed and is_unit(bracketed[1].strip()):
         return as_reading(bracketed[1].strip())
@@ -256,14 +264,14 @@ def _with_unit_and_remark(rest: str, body: str, as_reading: Callable[..., Parsed
             return as_reading(unit, remark, "uncertainty")
         if _is_remark(remark):
             return as_reading(unit, remark, "flag")
-    if _is_remark(body) and (rest[0] in " \xa0(*" or not rest[0].isalnum() or len(body) == 1):
+    if _is_remark(body) and (not rest[0].isalnum() or len(body) == 1):
         return as_reading(remark=body, sort="flag")
     return None
 
 
 def _is_remark(text: str) -> bool:
     """A remark is short and holds no number of its own, except in brackets or behind a comment sign."""
-    if len(text) > MOST_REMARK or text[0] in "-+~^=<>%":
+    if len(text) > MOST_REMARK or (text[0] in "-+~^=<>%" and not _DASH_AND_WORD.match(text)):
         return False
     if text.startswith(("//", "#", "(", "[", "!", "*")):
         return True

@@ -17,9 +17,12 @@ _BULLET = re.compile(r"[•·‣▪◦*]\s+")
 _STAMP = re.compile(rf"[\[(]?(?:{STAMP})[\])]?(?:\s*[,;|=]\s*|\s+|:\s+)(?=\S)", re.IGNORECASE | re.ASCII)
 _STAMP_ALONE = re.compile(rf"[\[(]?(?:{STAMP})[\])]?[,;|=:]?\s", re.IGNORECASE | re.ASCII)
 _PATTERNS = {"number": _LIST_NUMBER, "stamp": _STAMP_ALONE}
+_DASH = re.compile(r"\d{1,4}\s+-\s+(?=[\d<>.+])", re.ASCII)
+_BEGINNINGS = (("number", _LIST_NUMBER), ("bullet", _BULLET), ("stamp", _STAMP), ("dash", _DASH))
 _BARE_NUMBER = re.compile(r"-?\d+(?:[.,]\d+)?", re.ASCII)
 _QUICK_LABEL = re.compile(r"[^\W\d_][\w#/-]*(?: [\w#/-]+){0,2}")
 _QUICK = Parsed("reading")
+_NO_LABELS = frozenset({"minus", "negative", "neg", "neg.", "not", "no", "nearly", "almost", "half", "twice", "times"})
 _DECIMALS = re.compile(r"\d[.,]\d")
 MOST_LABEL = 32
 
@@ -46,7 +49,7 @@ def take_apart(line: str) -> list[Labelled]:
     [('label', 'QC-1', '5.02')]
     """
     found = []
-    for sort, pattern in (("number", _LIST_NUMBER), ("bullet", _BULLET), ("stamp", _STAMP)):
+    for sort, pattern in _BEGINNINGS:
         start = pattern.match(line)
         rest = line[start.end() :] if start else ""
         if start and rest and (parsed := parse(rest)).kind != "unread":
@@ -93,6 +96,8 @@ def _by_label(line: str) -> list[Labelled]:
 def _is_label(text: str) -> bool:
     if not text or _DECIMALS.search(text) or any(mark in text for mark in "±<>≤≥"):
         return False
+    if text.split()[0].casefold() in _NO_LABELS:
+        return False
     return text[0].isalpha() or (bool(re.match(r"\d+[-/A-Za-z]", text)) and not parse(text).numeral)
 
 
@@ -109,6 +114,9 @@ def common_style(lines: Sequence[list[Labelled]], plain: int) -> str:
     numbers = [int(found[0]) for label in counts.get("number", ()) if (found := re.search(r"\d+", label))]
     if any(b <= a for a, b in pairwise(numbers)) or (len(numbers) == 1 and numbers[0] > 1):
         del counts["number"]
+    dashed = [int(label.split()[0]) for label in counts.get("dash", ())]
+    if dashed != list(range(1, len(dashed) + 1)) or len(dashed) < 3:
+        counts.pop("dash", None)  # "10 - 12" is a range, "1 - 5.02", "2 - 5.04", "3 - 4.98" are numbered lines
     best = max(counts, key=lambda sort: len(counts[sort]), default="")
     most = len(counts[best]) if best else 0
     return best if most >= max(plain, 1) and (most > 1 or not plain) else ""

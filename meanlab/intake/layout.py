@@ -13,7 +13,7 @@ from meanlab.intake.lines import Lines, is_entry, lines_of, sample, split_lines
 from meanlab.intake.long_column import OneColumn, long_column
 from meanlab.intake.roles import is_label_word
 from meanlab.intake.separators import GAPS, PAIRS, separator_of
-from meanlab.intake.table import Table
+from meanlab.intake.table import Table, parsed
 
 _FIELD_IN_QUOTES = re.compile(r'"(?:[^"]|"")*"')
 _QUOTE_BEGINS_FIELD = re.compile(r'(?:^|[\n\r\t;,])\s*"')
@@ -21,9 +21,16 @@ _STYLES = {
     "number": "The numbers at the beginning of the lines were taken for list numbers.",
     "stamp": "The times at the beginning of the lines were taken for the order of the readings, not for readings.",
     "label": "The words before the readings were taken for labels.",
+    "dash": "The numbers at the beginning of the lines were taken for list numbers.",
     "bullet": "The marks at the beginning of the lines were taken for list marks.",
 }
+_NAME_OF_LIST = re.compile(
+    r"([^\W\d_][^:=,;\t\d]{0,40}?(?:\([^()]*\)|\[[^\[\]]*\])?)\s*(?:[:=]|<-)\s*(?=[-+<>≤≥−]?\s?[.\d]|c?[\[({])"
+)
+_BRACKETS = re.compile(r"c?[\[({]([^\[\](){}±]*)[\])}];?")
+_AND = re.compile(r",?\s+(?:and|und|et|&)\s+")
 MOST_WIDTH = 2000
+MOST_LIST = 1_000_000
 
 
 def table_of(text: str, decimal: str | None = None) -> Table:
@@ -40,24 +47,43 @@ def table_of(text: str, decimal: str | None = None) -> Table:
         quoted = _quoted(text)
         if quoted is not None:
             return quoted
-    lines = lines_of(_without_list_brackets(text))
+    text, named = _list_on_one_line(text)
+    lines = lines_of(text)
     separator = separator_of(lines.texts, decimal)
     if not separator:
         return _one_a_line(lines)
     if separator == PAIRS:
         lines.remarks.append("Commas are both decimal signs and separators: each pair was read as one number.")
     rows = _by_blanks(lines.texts) if separator == " " else [_fields(line, separator) for line in lines.texts]
+    rows = [_without_labels(rows[0])] if len(rows) == 1 else rows
     mark = "," if separator in (", ", PAIRS) else separator
-    return Table(rows, lines.numbers, None, mark, tuple(lines.remarks), tuple(lines.notes))
+    return Table(rows, lines.numbers, None, mark, tuple(lines.remarks), tuple(lines.notes), named)
 
 
-def _without_list_brackets(text: str) -> str:
-    """A list on one line in brackets: "[5.02, 5.04, 4.98]"."""
+def _list_on_one_line(text: str) -> tuple[str, str]:
+    """Return a list on one line without its brackets and its name: "Nitrate: 5.02, 5.04", "x = [5.02, 5.04]"."""
     bare = text.strip()
-    inside, pair = bare[1:-1], bare[:1] + bare[-1:]
-    if pair not in ("[]", "()", "{}") or "\n" in bare or any(mark in inside for mark in "[](){}±"):
-        return text
-    return inside if any(mark in inside for mark in ",; \t") else text
+    if "\n" in bare or "\r" in bare or len(bare) > MOST_LIST:
+        return text, ""
+    name = _NAME_OF_LIST.match(bare)
+    inside = bare[name.end() :] if name else bare
+    brackets = _BRACKETS.fullmatch(inside)
+    inside = brackets[1] if brackets else inside
+    if not name and not brackets and _AND.search(inside):
+        listed = _AND.sub(", ", inside)
+        return (listed, "") if all(is_entry(part.strip()) for part in listed.split(", ")) else (text, "")
+    if (not name and not brackets) or not any(mark in inside.strip() for mark in ",; \t|"):
+        return text, ""
+    return (inside, name[1].strip() if name else "") if separator_of([inside], ".") else (text, "")
+
+
+def _without_labels(cells: list[str]) -> list[str]:
+    """Entries beside each other without the labels before them: "Rep1=5.02", "Rep2=5.04"."""
+    filled = [cell for cell in cells if cell]
+    apart = [take_apart(one_spelling(cell)) for cell in filled]
+    if len(filled) < 2 or not all(ways and ways[0].sort in ("label", "number") for ways in apart):
+        return cells
+    return [ways[0].entry for ways in apart]
 
 
 def _fields(line: str, separator: str) -> list[str]:
@@ -97,9 +123,7 @@ def _one_a_line(lines: Lines) -> Table:
     lines, preparations = without_group_lines(lines)
     texts = [line.strip() for line in lines.texts]
     looked_at = [text for text in dict.fromkeys(sample(texts)) if text]
-    apart: dict[str, list[Labelled]] = {
-        text: take_apart(one_spelling(text)) for text in looked_at if not is_entry(text) or text[0] in "([#*•"
-    }
+    apart: dict[str, list[Labelled]] = {text: take_apart(one_spelling(text)) for text in looked_at if _may_begin(text)}
     plain = sum(is_entry(text) and not apart.get(text) for text in looked_at)
     style = common_style(list(apart.values()), plain)
     names: set[str] = set()
@@ -132,11 +156,16 @@ def _without_label_word(cells: list[str]) -> list[str]:
     return [" ".join(words[1:])] if len(words) > 1 and is_label_word(words[0]) else cells
 
 
+def _may_begin(text: str) -> bool:
+    """Tell whether something may stand before the entry of a line."""
+    return text[0] in "([#*•" or not is_entry(text) or parsed(text).sort == "span"
+
+
 def _way(text: str, style: str) -> Labelled | None:
     quick = quickly_apart(text, style)
     if quick is not None or not text:
         return quick
-    if is_entry(text) and text[0] not in "([#*•":
+    if not _may_begin(text):
         return None
     return next((way for way in take_apart(one_spelling(text)) if way.sort in (style, "summary")), None)
 

@@ -47,7 +47,9 @@ def lines_of(text: str) -> Lines:
     left: list[tuple[int, str]] = []
     for number, line in enumerate(raw, 1):
         bare = line.strip()
-        if not bare or bare[0] not in "#/;-=_+|:" or not _is_passed_over(bare, numbered):
+        if set(bare) == {"-"} and kept and sort_of_text(kept[-1][1].strip()) in _ENTRIES:
+            kept.append((number, line))  # dashes between readings stand for a missing one
+        elif not bare or bare[0] not in "#/;-=_+|:" or not _is_passed_over(bare, numbered):
             kept.append((number, line))
         elif bare[0] == "#" and heading_of(bare.lstrip("# ")).unit:
             kept.append((number, bare.lstrip("# ")))

@@ -9,7 +9,7 @@ from typing import Literal
 
 Sign = Literal[".", ","]
 
-NUMERAL = r"(?:[1-9]\d{0,2}(?: \d{3})+(?!\d)(?:[.,]\d*)?|\d(?:\d|[.,'\xa0](?=\d))*(?:[.,](?!\d))?|[.,]\d+)"
+NUMERAL = r"(?:[1-9]\d{0,2}(?: \d{3})+(?!\d)(?:[.,]\d+)?|\d+[.,](?=\s*\Z)|\d(?:\d|[.,'\xa0](?=\d))*|[.,]\d+)"
 
 _FRACTION = r"(?:\d{3}(?:\xa0\d{3})*(?:\xa0\d{1,3})?|\d*)"
 _UNDER: Mapping[str, re.Pattern[str]] = {

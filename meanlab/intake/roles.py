@@ -42,7 +42,10 @@ _OTHER = word_set(
 _ANALYTE = word_set("parameter analyte test compound element component quantity messgröße determinand type typ")
 _QUALIFIER = word_set("qualifier qual operatorsign sign vorzeichen symbol modifier relation lessthan <>")
 _MARKS = word_set("< > <= >= =< => ≤ ≥ = ~")
+_LIMITS = _MARKS - {"=", "~"}
 _RUNNING = re.compile(r"(.*?)[\s_.#-]*(\d{1,3}|[a-hA-H]|[ivx]{1,4})", re.DOTALL)
+_DURATION = re.compile(r"\d+(?:[.,]\d+)?\s?(?:s|sec|min|h|ms)", re.ASCII)
+_LISTED = re.compile(r"#\d{1,6}[.):]?|\(?\d{1,6}(?:\.|\)|:)", re.ASCII)
 _WHOLE = re.compile(r"\d{1,12}", re.ASCII)
 MOST_COLUMNS = 5000
 
@@ -85,14 +88,18 @@ def _role_of_filled(block: Block, column: int, texts: list[str], sorts: Counter[
     heading = block.heading_at(column)
     word = plain_word(heading.name or heading.text)
     marks = {one_spelling(text) for text in texts}
-    if marks <= _MARKS or (word in _QUALIFIER and not sorts["number"]):
+    if (marks <= _MARKS and marks & _LIMITS) or (word in _QUALIFIER and not sorts["number"]):
         return "qualifier"
     if word in _UNIT or (len(texts) > 1 and not word and all(is_unit(one) and is_unmistakable(one) for one in marks)):
         return "unit"
     if sorts["stamp"] * 2 >= filled or (word in _TIME and heading.text):
         return "time"
+    if len(texts) > 1 and all(_DURATION.fullmatch(text) for text in texts):
+        return "time"
     if word in PREPARATIONS and 1 < len(marks) < len(texts):
         return "preparation"
+    if all(_LISTED.fullmatch(text) for text in texts) and is_count([text.strip("#(.):") for text in texts]):
+        return "counter"
     numeric = sorts["number"] + sorts["limit"]
     if not numeric or (numeric + sorts["missing"] + sorts["word"]) * 2 < filled:
         return "analyte" if word in _ANALYTE else "label" if word in _LABEL else "text"

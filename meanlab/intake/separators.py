@@ -16,6 +16,8 @@ GAPS = re.compile(r"\s{2,}|\t")
 _DIGIT = re.compile(r"\d")
 _DECIMAL_COMMA_LIST = re.compile(r"\d,\d.*,\s|,\s.*\d,\d")
 _COUNTED = re.compile(r"(\d{1,3}) \d{3}")
+_IN_BRACKETS = re.compile(r"\[[^\[\]]*\]|\([^()]*\)")
+_CODE = re.compile(r"\d+[A-Za-z]", re.ASCII)
 PAIRS = ",,"  # commas are both decimal signs and separators
 _NUMBERS = ("number", "limit")
 
@@ -42,7 +44,7 @@ def separator_of(lines: Sequence[str], decimal: str | None = None) -> str:
     if any("\t" in line for line in filled):
         return "\t"
     for mark in (";", "|"):
-        if sum(mark in line for line in filled) * 2 >= len(filled):
+        if sum(mark in _IN_BRACKETS.sub("", line) for line in filled) * 2 >= len(filled):
             return mark
     entries = [line for line in filled if is_entry(line)]
     if any("," in line for line in filled):
@@ -90,7 +92,8 @@ def _end_in_numbers(many: list[str]) -> bool:
 
 
 def _more_than_one_number(many: list[str]) -> bool:
-    counts = [sum(sort_of_text(part) in (*_NUMBERS, "stamp") for part in line.split()) for line in many]
+    words = [[word for word in line.split() if not _CODE.fullmatch(word)] for line in many]
+    counts = [sum(sort_of_text(word) in (*_NUMBERS, "stamp") for word in line) for line in words]
     return sum(count > 1 for count in counts) * 2 > len(many)
 
 
@@ -105,7 +108,7 @@ def _comma(filled: list[str], decimal: str | None) -> str:
     data = [line for line in filled if _DIGIT.search(line)]
     heading = _heading_fields(filled)
     is_quantity = len(heading) == 2 and heading_of(", ".join(heading)).unit in (heading[1], heading[1].strip("()"))
-    under_heading = len(heading) > 1 and not is_quantity
+    under_heading = len(heading) > 1 and not is_quantity and not _is_comma_of_prose(filled, data)
     if len(filled) == 1 or (len(data) == 1 and not under_heading and data[0] == filled[-1]):
         return _comma_in_a_row(data[0] if data else filled[0], decimal)
     if any(_DECIMAL_COMMA_LIST.search(line) for line in data) and not any(is_entry(line) for line in data):
@@ -116,6 +119,16 @@ def _comma(filled: list[str], decimal: str | None) -> str:
         if fitting * 2 >= len(data):
             return ","
     return "," if _comma_by_rows(data) else ""
+
+
+def _is_comma_of_prose(filled: list[str], data: list[str]) -> bool:
+    """Tell whether the comma of a heading belongs to its words: "Nitrat, gesamt [mg/l]" over "5,02"."""
+    words = [line for line in filled if "," in line and line not in data and not _DIGIT.search(line)][-1:]
+    words = words or [line for line in filled[:1] if not is_entry(line)]
+    if not words or any(mark != ", " for mark in re.findall(r",\s?", words[0])) or any(", " in line for line in data):
+        return False
+    firsts = [line.split(",")[0].strip() for line in data if line not in words]
+    return firsts != [str(i) for i in range(1, len(firsts) + 1)]
 
 
 def _comma_by_rows(data: list[str]) -> bool:

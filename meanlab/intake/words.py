@@ -12,10 +12,10 @@ def word_set(words: str) -> frozenset[str]:
 
 
 _DROPPED = re.compile(r"[\s\xa0._\-–—/'\"()\[\]:;]+")
-_NO_LETTERS = re.compile(r"[-–—―]{1,4}|\.{1,3}|…|\?{1,3}|/{1,3}|∅")
+_NO_LETTERS = re.compile(r"[-–—―]{1,12}|\.{1,3}|…|\?{1,3}|/{1,3}|∅")
 
 MISSING = word_set(
-    "na nan null none missing void empty blankcell ka kA nb nm nr tbd fehlt fehlend entfällt leer notmeasured "
+    "na <na> nan null none missing void empty blankcell ka kA nb nm nr tbd fehlt fehlend entfällt leer notmeasured "
     "notdetermined notanalysed notanalyzed nottested notavailable notapplicable notreported notrecorded nodata "
     "novalue noresult noreading nosample nichtgemessen nichtbestimmt nichtanalysiert nichtauswertbar "
     "nichtverfügbar keineangabe keinwert keinmesswert nonmesuré nondéterminé sindato missingvalue samplelost "
