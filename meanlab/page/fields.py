@@ -58,8 +58,15 @@ FIELDS: Mapping[str, Any] = MappingProxyType(
         "plan_half_width": "",
         "plan_s": "",
         "plan_power": "80 %",
+        "many_sheet": None,
+        "many_values": [],
+        "many_samples": [],
+        "many_target_column": None,
+        "many_preparation": None,
+        "many_filter": "all",
     }
 )
+MANY_FIELDS = tuple(name for name in FIELDS if name.startswith("many_"))
 READINGS_FIELDS = (
     "readings_text",
     "decimal_sign",
@@ -84,4 +91,4 @@ BENCH_FIELDS: Mapping[str, str] = MappingProxyType(
     }
 )
 # Fields that no sample set and no opened entry changes.
-STAYING = ("part", "written_by", "written_instrument", "written_method")
+STAYING = ("part", "written_by", "written_instrument", "written_method", *MANY_FIELDS)

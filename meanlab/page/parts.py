@@ -10,6 +10,7 @@ from meanlab.page import (
     checks_part,
     enough_part,
     entries_part,
+    many_part,
     notebook_part,
     others_part,
     state,
@@ -26,6 +27,7 @@ PARTS: Mapping[str, Callable[[Outcome | None], None]] = MappingProxyType(
         "Enough readings?": enough_part.draw,
         "Uncertainty": uncertainty_part.draw,
         "Agreement": agreement_part.draw,
+        "Many samples": many_part.draw,
         "Notebook": notebook_part.draw,
     }
 )

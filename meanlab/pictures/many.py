@@ -29,11 +29,17 @@ class Compared:
 
 
 def many_picture(
-    samples: Sequence[Compared], limit: float | None, sign: str = ".", unit: str = "", noun: str = "target"
+    samples: Sequence[Compared],
+    limit: float | None,
+    sign: str = ".",
+    unit: str = "",
+    noun: str = "target",
+    words: Mapping[str, str] = MappingProxyType({}),
 ) -> Drawing | None:
     """Return all differences in rising order with their intervals; None where there is none.
 
     Of more than 400 samples all that differ are drawn, and of the others as many as have room, evenly by rank.
+    ``words`` are what the outcomes are called where it is not by their keys.
     """
     rising = sorted(samples, key=lambda one: one.difference)
     drawn = _chosen(rising)
@@ -44,10 +50,15 @@ def many_picture(
     right, step = WIDTH - SIDE, (WIDTH - SIDE - left - 8) / len(drawn)
     title = f"difference from the {noun}" + (f", {unit}" if unit else "")
     parts = [upright(scale, left, title, sign, right), _guides(scale, limit, left, right)]
-    parts += [_sample(one, scale, left + 8 + step * (place + 0.5), step, sign) for place, one in enumerate(drawn)]
+    parts += [
+        _sample(one, scale, left + 8 + step * (place + 0.5), step, sign, words) for place, one in enumerate(drawn)
+    ]
     said = f"{len(samples):,} samples" if len(drawn) == len(samples) else f"{len(drawn)} of {len(samples):,} samples"
-    parts += [_key(drawn), Drawing(WIDTH, HEIGHT, words=(Words(left, HEIGHT - 10, f"{said}, by difference", "left"),))]
-    return together(WIDTH, HEIGHT, parts, _alt(samples, drawn, limit))
+    parts += [
+        _key(drawn, words),
+        Drawing(WIDTH, HEIGHT, words=(Words(left, HEIGHT - 10, f"{said}, by difference", "left"),)),
+    ]
+    return together(WIDTH, HEIGHT, parts, _alt(samples, drawn, limit, words))
 
 
 def _chosen(rising: Sequence[Compared]) -> list[Compared]:
@@ -82,31 +93,32 @@ def _guides(scale: Scale, limit: float | None, left: float, right: float) -> Dra
     return Drawing(right, scale.start, tuple(strokes), words=tuple(words))
 
 
-def _sample(one: Compared, scale: Scale, x: float, step: float, sign: str) -> Drawing:
+def _sample(one: Compared, scale: Scale, x: float, step: float, sign: str, words: Mapping[str, str]) -> Drawing:
     low = scale.start if one.low is None else scale.px(one.low)
     high = scale.end if one.high is None else scale.px(one.high)
     width = 1.0 if step > 4 else 0.7
     size = max(3.0, min(8.0, step))
-    says = f"{one.name}: {significant(one.difference, 3, sign)}, {one.outcome}"
+    says = f"{one.name}: {significant(one.difference, 3, sign)}, {words.get(one.outcome, one.outcome)}"
     mark = Mark(x, scale.px(one.difference), SHAPES.get(one.outcome, "circle"), size, says)
     return Drawing(x, scale.start, (line(x, low, x, high, width=width),), marks=(mark,))
 
 
-def _key(drawn: Sequence[Compared]) -> Drawing:
+def _key(drawn: Sequence[Compared], called: Mapping[str, str]) -> Drawing:
     """What the marks mean, right above the picture."""
     marks, words, x = [], [], WIDTH - SIDE
-    for outcome, shape in reversed(SHAPES.items()):
+    for outcome, shape in reversed(list(SHAPES.items())):
         if any(one.outcome == outcome for one in drawn):
-            words.append(Words(x, TOP - 28, outcome, "right"))
-            x -= width_of(outcome, 12.0) + 12
+            name = called.get(outcome, outcome)
+            words.append(Words(x, TOP - 28, name, "right"))
+            x -= width_of(name, 12.0) + 12
             marks.append(Mark(x, TOP - 28, shape, 8.0))
             x -= 20
     return Drawing(WIDTH, TOP, marks=tuple(marks), words=tuple(words))
 
 
-def _alt(samples: Sequence[Compared], drawn: Sequence[Compared], limit: float | None) -> str:
+def _alt(samples: Sequence[Compared], drawn: Sequence[Compared], limit: float | None, words: Mapping[str, str]) -> str:
     counts = [(outcome, sum(one.outcome == outcome for one in samples)) for outcome in SHAPES]
-    said = ", ".join(f"{count:,} {outcome}" for outcome, count in counts if count)
+    said = ", ".join(f"{count:,} {words.get(outcome, outcome)}" for outcome, count in counts if count)
     low, high = drawn[0].difference, drawn[-1].difference
     against = "" if limit is None else f", held against ± E = {significant(limit, 3)}"
     part = "" if len(drawn) == len(samples) else f" {len(drawn)} are drawn: those that differ first."
