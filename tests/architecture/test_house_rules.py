@@ -141,3 +141,9 @@ def test_nothing_that_is_built_is_kept():
     except (OSError, subprocess.CalledProcessError):
         pytest.skip("not a checkout")
     assert [name for name in tracked if "__pycache__" in name or name.endswith((".pyc", ".db"))] == []
+
+
+def test_no_two_test_files_bear_one_name():
+    """pytest imports test files and their helpers by their bare names, so each name stands once."""
+    names = [path.name for path in (TOP / "tests").rglob("*.py") if path.name != "conftest.py"]
+    assert sorted(names) == sorted(set(names))
