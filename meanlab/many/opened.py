@@ -1,6 +1,7 @@
 """Single samples out of a table: their readings and their question, as one analysis takes them."""
 
 from collections.abc import Hashable, Mapping
+from functools import cached_property
 from typing import Any
 
 import numpy as np
@@ -42,7 +43,13 @@ class Opened:
 
     def name(self, place: int) -> str:
         """Return the name of a sample: its labels with commas between."""
-        return ", ".join(str(label) for label in self._samples.labels.iloc[place])
+        return self.names[place]
+
+    @cached_property
+    def names(self) -> list[str]:
+        """The names of all samples."""
+        labels = self._samples.labels
+        return [", ".join(map(str, one)) for one in zip(*(labels[name].tolist() for name in labels), strict=True)]
 
     def readings(self, place: int) -> ReadingSet:
         """Return the readings of a sample; raises ReadingsComplaint where it has none or one cannot be read."""
@@ -56,7 +63,7 @@ class Opened:
         """Return the entries of a sample as typed, each with the label of its preparation ("" without)."""
         cells, labels = self._samples.cells, self._samples.preparations
         return [
-            (as_typed(cells.given[entry]).strip(), "" if labels is None else str(labels[entry]))
+            (_typed(cells.given[entry], cells.sign), "" if labels is None else str(labels[entry]))
             for entry in self._samples.entries(place)
         ]
 
@@ -64,3 +71,8 @@ class Opened:
         """Return the targets as doubles, nan where there is none, shape (samples,)."""
         numbers = [np.nan if one is None else float(one) for one in self._targets.exact]
         return np.array([*numbers, np.nan])[self._targets.code]
+
+
+def _typed(entry: Any, sign: str) -> str:
+    """The text of an entry; a stored number with the decimal sign of the texts beside it."""
+    return entry.strip() if isinstance(entry, str) else as_typed(entry).replace(".", sign)

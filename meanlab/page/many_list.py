@@ -1,6 +1,8 @@
 """The rows of a run: sorted, filtered, chosen, and one opened by a click; every text in it stays text."""
 
+from collections.abc import Mapping
 from math import isfinite
+from typing import Any
 
 import numpy as np
 import pandas as pd
@@ -68,7 +70,7 @@ _CSS = """
 .room { max-height: 460px; overflow: auto; }
 table { border-collapse: collapse; width: 100%; font-size: 13px; line-height: 18px; color: var(--st-text-color); }
 th { text-align: left; font-weight: 600; position: sticky; top: 0; background: var(--st-background-color); }
-th, td { padding: 3px 12px 3px 0; vertical-align: top; white-space: nowrap; }
+th, td { padding: 1px 12px 1px 0; vertical-align: middle; white-space: nowrap; }
 td:last-child { white-space: normal; overflow-wrap: anywhere; min-width: 160px; }
 tbody tr { border-top: 1px solid var(--st-border-color); }
 button {
@@ -104,7 +106,11 @@ def draw(ran: Ran) -> np.ndarray:
     column, falling = state.widget(SORT) or ("", False)
     headings = [[key, label, ("down" if falling else "up") if key == column else ""] for key, label in HEADINGS]
     shown = places[start : start + SHOWN]
-    rows = [[int(place), int(place) in chosen, *texts_of(ran, int(place))] for place in shown]
+    found = ran.results.iloc[shown].to_dict("records")
+    rows = [
+        [int(place), int(place) in chosen, *texts_of(ran, int(place), row)]
+        for place, row in zip(shown, found, strict=True)
+    ]
     _list(
         data={"headings": headings, "rows": rows}, key="many_list",
         on_sort_change=_sort, on_open_change=lambda: _open(ran), on_pick_change=lambda: _pick(ran),
@@ -119,9 +125,9 @@ def chosen_of(ran: Ran) -> set[int]:
     return set(chosen) if mark == id(ran.results) else set()
 
 
-def texts_of(ran: Ran, place: int) -> list[str]:
-    """Return one row as texts, in the order of the headings."""
-    row, sign, alpha = ran.results.iloc[place], ran.sign, ran.question.alpha
+def texts_of(ran: Ran, place: int, row: Mapping[Any, Any]) -> list[str]:
+    """Return one row of the result as texts, in the order of the headings."""
+    sign, alpha = ran.sign, ran.question.alpha
     places = _places(row)
 
     def number(value: float) -> str:
@@ -142,12 +148,12 @@ def texts_of(ran: Ran, place: int) -> list[str]:
     return [
         ran.opened.name(place), str(row["n"]), number(row["mean"]),
         "–" if pd.isna(s) else significant(s, 2, sign), "–" if pd.isna(target) else f"{target:.12g}".replace(".", sign),
-        apart, interval, p(row["p"]), p(row["p_holm"]), PROCEDURE_NAMES.get(row["procedure"], "–"),
+        apart, interval, p(row["p"]), p(row["p_holm"]), PROCEDURE_NAMES.get(str(row["procedure"]), "–"),
         ran.words[ran.outcomes[place]], row["flags"],
     ]  # fmt: skip
 
 
-def _places(row: pd.Series) -> int | None:
+def _places(row: Mapping[Any, Any]) -> int | None:
     """Decimal places by the half-width of the interval, two digits; None where there is none."""
     ends = [abs(row[name] - row["mean"]) for name in ("low", "high") if not pd.isna(row[name])]
     width = max((end for end in ends if isfinite(end) and end > 0), default=0.0)

@@ -3,7 +3,7 @@
 from typing import Any
 
 from meanlab.core.complaints import Complaint
-from meanlab.page import state
+from meanlab.page import focus, state
 from meanlab.page.many_run import Ran
 from meanlab.page.many_table import OPENED
 
@@ -36,6 +36,7 @@ def open_sample(ran: Ran, place: int) -> None:
         fields |= {"column": 1, "preparation": HEADING[0]}
     state.note(OPENED, fields["readings_text"])
     state.open_set("", fields)
+    focus.jump("page")
     before = state.working().previous
     if before is not None:
         before["cause"] = f'sample "{ran.opened.name(place)}" was opened'
