@@ -112,7 +112,7 @@ def test_filter_sort_and_open(judged, samples):
     expect(rows_of(judged)).to_have_count(DIFFERING, timeout=PATIENCE)
     rows_of(judged).nth(1).get_by_role("button").click()
     expect(panel).to_contain_text("lot 1800", timeout=PATIENCE)
-    judged.locator(".st-key-put_back button").click()
+    judged.get_by_role("button", name="Put back the previous readings").click()
     expect(panel).to_contain_text("lot 1900", timeout=PATIENCE)
 
 
