@@ -9,7 +9,7 @@ from meanlab.page import cache, clock, entry_list, entry_view, notebook_care, re
 from meanlab.page.cache import Outcome
 
 MOST_DRAWN = 100
-CHOSEN, EARLIER = "entry_chosen", "entries_before"
+CHOSEN, _SEARCHED = "entry_chosen", "entries_searched"
 
 
 def draw(found: Outcome | None) -> None:
@@ -63,12 +63,23 @@ def _latest(book: Notebook) -> tuple[Sequence[Listed], str]:
 
 
 def _searched(book: Notebook, text: str) -> tuple[Sequence[Listed], str]:
-    found = book.search(text, latest=MOST_DRAWN + 1)
+    found = _found(book, text)
     if not found:
         return (), "No entry holds all of these words."
     if len(found) > MOST_DRAWN:
         return found[1:], f"The latest {MOST_DRAWN} that were found; more words find fewer."
     return found, "1 entry found" if len(found) == 1 else f"{len(found)} entries found"
+
+
+def _found(book: Notebook, text: str) -> Sequence[Listed]:
+    """Search once as long as words and notebook stay the same."""
+    asked_for = (text, len(book.entries()))
+    kept = state.widget(_SEARCHED)
+    if kept is None or kept[0] != asked_for:
+        kept = (asked_for, book.search(text, latest=MOST_DRAWN + 1))
+        state.note(_SEARCHED, kept)
+    found: Sequence[Listed] = kept[1]
+    return found
 
 
 def _who_sees_it(book: Notebook) -> str:

@@ -23,6 +23,12 @@ def content_of(path: Path, number: int) -> bytes:
         return connection.execute("SELECT content FROM entry_content WHERE number = ?", (number,)).fetchone()[0]
 
 
+def test_a_content_that_became_text_is_found(tampered):
+    """SQLite keeps a text in any column: a content written back as text is found, and no failure of ours."""
+    found = tampered("UPDATE entry_content SET content = CAST(content AS TEXT) WHERE number = 2")
+    assert found == ["Entry 2: its content is not what was saved."]
+
+
 def test_a_whole_notebook_has_no_problem(tampered):
     """Left as it was saved, nothing is found, the amendment included."""
     assert tampered() == []
