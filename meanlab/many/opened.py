@@ -67,6 +67,10 @@ class Opened:
             for entry in self._samples.entries(place)
         ]
 
+    def target_text(self, place: int) -> str:
+        """Return the target of a sample as it was given, "–" where it has none."""
+        return _typed(self._targets.of(place), self.sign) if self._targets.usable[place] else "–"
+
     def targets(self) -> np.ndarray:
         """Return the targets as doubles, nan where there is none, shape (samples,)."""
         numbers = [np.nan if one is None else float(one) for one in self._targets.exact]

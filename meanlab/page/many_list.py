@@ -78,7 +78,7 @@ button {
   cursor: pointer; text-align: left; text-decoration: underline; max-width: 320px; white-space: normal;
 }
 button:focus-visible, input:focus-visible { outline: 2px solid var(--st-text-color); outline-offset: 1px; }
-input { width: 18px; height: 18px; }
+input { width: 18px; height: 18px; accent-color: var(--st-text-color); }
 """
 _HTML = """
 <div class="room" tabindex="0" role="group" aria-label="Samples"><table><thead></thead><tbody></tbody></table></div>
@@ -143,11 +143,10 @@ def texts_of(ran: Ran, place: int, row: Mapping[Any, Any]) -> list[str]:
     interval = interval_text(Interval(low, high, 1 - alpha, 1 - alpha), places or 3, sign) if tested else "–"
     difference = row["difference"]
     apart = number(difference) if pd.isna(difference) or places is None else signed_text(difference, places, sign)
-    target = ran.targets[place]
     s = row["s"]
     return [
         ran.opened.name(place), str(row["n"]), number(row["mean"]),
-        "–" if pd.isna(s) else significant(s, 2, sign), "–" if pd.isna(target) else f"{target:.12g}".replace(".", sign),
+        "–" if pd.isna(s) else significant(s, 2, sign), ran.opened.target_text(place),
         apart, interval, p(row["p"]), p(row["p_holm"]), PROCEDURE_NAMES.get(str(row["procedure"]), "–"),
         ran.words[ran.outcomes[place]], row["flags"],
     ]  # fmt: skip

@@ -1,5 +1,7 @@
 """A table of many samples gives row by row the numbers of ``analyse``, and Holm's adjustment over the rows."""
 
+from decimal import Decimal
+
 import numpy as np
 import pandas as pd
 import pytest
@@ -186,3 +188,35 @@ def test_the_flag_of_a_rejection_that_holm_takes_back():
     assert flagged.any()
     assert (flagged == ((found["p"] < 0.05) & (found["p_holm"] >= 0.05))).all()
     assert (found.loc[flagged, "verdict"] == "differs").all()
+
+
+@pytest.mark.parametrize(
+    ("column", "readings"),
+    [
+        (pd.Series([5, 4, 7, None], dtype="Int64"), [5, 4, 7]),
+        (pd.Series([5.5, None, 4.25, 4.0], dtype="Float64"), [5.5, 4.25, 4.0]),
+        (pd.Series(["5.50", "4.25", "4.0"], dtype="category"), ["5.50", "4.25", "4.0"]),
+        (pd.Series([Decimal("5.50"), Decimal("4.25"), Decimal("4")]), ["5.50", "4.25", "4"]),
+        (pd.Series([5.5, "4,25", None, " 4 "], dtype=object), ["5.5", "4.25", "4"]),
+        (pd.Series([0.1, 0.2, 0.4], dtype="float32"), [0.1, 0.2, 0.4]),
+        (pd.Series([10**17, 10**17 + 2, 10**17 + 8]), [10**17, 10**17 + 2, 10**17 + 8]),
+        (pd.Series([0.1 + 0.2, 1 / 3, 0.3]), [0.1 + 0.2, 1 / 3, 0.3]),
+        (pd.Series(["1,234.5", "1,250", "1,300"]), ["1234.5", "1250", "1300"]),
+        (pd.Series(["5.1 mg/L", "5.2 mg/L", "5.4 mg/L"]), ["5.1", "5.2", "5.4"]),
+    ],
+    ids=["whole", "nullable", "categories", "decimals", "mixed", "narrow", "long", "computed", "thousands", "units"],
+)
+def test_every_kind_of_column(column, readings):
+    """Stored numbers of any kind, decimals and texts with units or thousands marks: the row is that of the readings."""
+    found = analyse_many(pd.DataFrame({"batch": "A", "x": column}), "x", "batch", Question("4.9"))
+    assert_row_is(found.iloc[0], analyse(readings, Question("4.9")))
+
+
+@pytest.mark.parametrize(
+    "entries", [[1.0, float("inf")], [True, False], ["5", "12:30"], [complex(1, 2), 3], [[1], [2]], [5e-324, 1.0]]
+)
+def test_what_is_no_reading_leaves_a_row_with_the_entry_in_its_reason(entries):
+    """No other exception, no number: the sample is not testable, and its flags quote what could not be read."""
+    found = analyse_many(pd.DataFrame({"batch": "A", "x": pd.Series(entries)}), "x", "batch", Question("1"))
+    assert found["verdict"].tolist() == ["not testable"]
+    assert any(str(entry) in found.loc[0, "flags"] for entry in entries)
