@@ -21,11 +21,14 @@ from meanlab.page.working import (
     Reopened,
     Working,
     alike,
+    as_kept,
+    bring_back,
     digests,
     empty,
     note_times,
     nothing_typed,
     replaced,
+    snapshot,
     times_stand,
 )
 
@@ -162,7 +165,7 @@ def put_back() -> None:
     before = now.previous
     if before is None:
         return
-    now.previous = _snapshot("the previous readings were put back", before["with_question"])
+    now.previous = snapshot(now, "the previous readings were put back", before["with_question"])
     for name, given in before["fields"].items():
         if name in FIELDS:
             put(name, given)
@@ -219,16 +222,7 @@ def keep() -> None:
     if len(now.fields["readings_text"]) > MOST_KEPT_CHARACTERS:
         now.trouble = "Not saved: the text is longer than 10 MB."
         return
-    content = {
-        "fields": now.fields,
-        "file": now.file,
-        "left_out": now.left_out,
-        "previous": now.previous,
-        "first": now.first,
-        "looks": now.looks,
-        "set_times": now.set_times,
-        "entry": now.entry,
-    }
+    content = as_kept(now)
     mark = sha256(repr(content).encode()).hexdigest()
     if mark == now.last_kept or (not now.key and nothing_typed(now)):
         return
@@ -259,16 +253,8 @@ def _brought_back() -> Working:
             now = empty(*_bench())
             now.notice = "Nothing is kept under this address; this is an empty page."
             return now
-        now.fields |= {name: given for name, given in kept.state["fields"].items() if name in FIELDS}
-        now.file, now.left_out = kept.state["file"], kept.state["left_out"]
-        now.previous = kept.state["previous"]
-        now.first, now.looks = kept.state.get("first"), kept.state.get("looks", 1)
-        now.key, now.saved = key, kept.saved
-        now.entry = kept.state.get("entry")
-        if "set_times" in kept.state:
-            times_stand(now, kept.state["set_times"])
-        else:
-            note_times(now, kept.saved)
+        bring_back(now, kept)
+        now.key = key
         for digest in digests(now):
             content = states.load_file(key, digest)
             if content is not None:
@@ -301,22 +287,7 @@ def _set_aside(cause: str, with_question: bool = False) -> None:
     now = working()
     now.notice = ""
     if now.fields["readings_text"].strip() or now.file is not None:
-        now.previous = _snapshot(cause, with_question)
-
-
-def _snapshot(cause: str, with_question: bool) -> dict[str, Any]:
-    now = working()
-    names = [name for name in FIELDS if name not in STAYING] if with_question else READINGS_FIELDS
-    return {
-        "cause": cause,
-        "with_question": with_question,
-        "fields": {name: deepcopy(now.fields[name]) for name in names},
-        "file": now.file,
-        "left_out": dict(now.left_out),
-        "first": now.first,
-        "looks": now.looks,
-        "set_times": dict(now.set_times),
-    }
+        now.previous = snapshot(now, cause, with_question)
 
 
 def _empty_page(fields: Mapping[str, Any]) -> None:

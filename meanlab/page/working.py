@@ -6,8 +6,9 @@ from dataclasses import dataclass, field
 from datetime import datetime
 from typing import Any
 
+from meanlab.notebook import Kept
 from meanlab.page import question_times
-from meanlab.page.fields import FIELDS
+from meanlab.page.fields import FIELDS, READINGS_FIELDS, STAYING
 
 
 @dataclass
@@ -88,6 +89,48 @@ def times_stand(now: Working, times: Mapping[str, str]) -> None:
     """Take the times of parts that were brought back, not set anew."""
     now.set_times = dict(times)
     now.looked_at = question_times.parts_of(now.fields, now.file, now.left_out)
+
+
+def as_kept(now: Working) -> dict[str, Any]:
+    """Return what is kept of a page."""
+    return {
+        "fields": now.fields,
+        "file": now.file,
+        "left_out": now.left_out,
+        "previous": now.previous,
+        "first": now.first,
+        "looks": now.looks,
+        "set_times": now.set_times,
+        "entry": now.entry,
+    }
+
+
+def bring_back(now: Working, kept: Kept) -> None:
+    """Bring back what was kept of a page; an earlier version kept less."""
+    now.fields |= {name: given for name, given in kept.state["fields"].items() if name in FIELDS}
+    now.file, now.left_out = kept.state["file"], kept.state["left_out"]
+    now.previous = kept.state["previous"]
+    now.first, now.looks = kept.state.get("first"), kept.state.get("looks", 1)
+    now.entry, now.saved = kept.state.get("entry"), kept.saved
+    if "set_times" in kept.state:
+        times_stand(now, kept.state["set_times"])
+    else:
+        note_times(now, kept.saved)
+
+
+def snapshot(now: Working, cause: str, with_question: bool) -> dict[str, Any]:
+    """Return what can be put back of a page: its readings, and its question where that is taken away too."""
+    names = [name for name in FIELDS if name not in STAYING] if with_question else READINGS_FIELDS
+    return {
+        "cause": cause,
+        "with_question": with_question,
+        "fields": {name: deepcopy(now.fields[name]) for name in names},
+        "file": now.file,
+        "left_out": dict(now.left_out),
+        "first": now.first,
+        "looks": now.looks,
+        "set_times": dict(now.set_times),
+    }
 
 
 def nothing_typed(now: Working) -> bool:
