@@ -89,7 +89,7 @@ def _unread(one: Parsed) -> str:
         "lost power": "has lost the raised exponent of its power of ten: write it like 1.2e3.",
         "malformed": "is not a number: check its points and commas.",
         "long": "is a text, not a number.",
-    }.get(one.sort, "is not a number." + (meant or one.remark))
+    }.get(one.sort, "is not a number" + (f".{meant}" if meant else f": {one.remark.lstrip()}" if one.remark else ": correct it, or it stays out."))
 
 
 def about(sort: str, given: "Given", places: Sequence[int], each: Sequence[Parsed]) -> str:

@@ -24,7 +24,7 @@ def settled(known: Mapping[Hashable, Parsed], counts: Counter[Any], heading_unit
     carried: Counter[str] = Counter()
     for key, one in known.items():
         if one.numeral:
-            carried[one.remark if one.sort == "flag" else one.unit] += counts[key]
+            carried[_behind(one)] += counts[key]
     total = carried.total()
     word = next(iter(carried), "")
     if len(carried) == 1 and total > 1 and _is_open_unit(word) and not heading_unit:
@@ -33,7 +33,11 @@ def settled(known: Mapping[Hashable, Parsed], counts: Counter[Any], heading_unit
             for key, one in known.items()
         }
     usual = {unit for unit, times in carried.items() if times * 2 > total and not _is_foreign(unit, heading_unit)}
-    return {key: one if one.unit in usual else _without_letter(key, one) for key, one in known.items()}
+    return {key: one if _behind(one) in usual else _without_letter(key, one) for key, one in known.items()}
+
+
+def _behind(one: Parsed) -> str:
+    return one.remark if one.sort == "flag" else one.unit
 
 
 def _text_of(key: Any) -> str:

@@ -36,7 +36,6 @@ HOMES = {
     "streamlit": {"page", "__main__"},
     "openpyxl": {"intake", "records"},
     "python_calamine": {"intake"},
-    "charset_normalizer": {"intake"},
     "sqlalchemy": {"notebook"},
     "platformdirs": {"notebook", "__main__"},
     "plotly": {"pictures/for_page", "page"},
