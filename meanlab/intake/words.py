@@ -73,11 +73,14 @@ def is_missing_mark(text: str) -> bool:
     return bool(_NO_LETTERS.fullmatch(text)) or plain_word(text) in MISSING
 
 
+_FILLERS = frozenset({"the", "was", "is", "were", "are", "our"})
+
+
 def is_summary(label: str) -> bool:
     """Tell whether a label names a figure computed from readings: "Mean", "SD", "n", "Mittelwert:".
 
     >>> is_summary("Std. dev. ="), is_summary("RSD (%)"), is_summary("Nitrate")
     (True, True, False)
     """
-    word = plain_word(label).rstrip("=")
+    word = plain_word(" ".join(word for word in label.split() if word.casefold() not in _FILLERS)).rstrip("=")
     return word in SUMMARY

@@ -185,3 +185,18 @@ def test_the_intake_starts_without_the_heavy_libraries():
     asked = f"import sys, meanlab.intake; print([name for name in {heavy.split()!r} if name in sys.modules])"
     done = subprocess.run([sys.executable, "-c", asked], capture_output=True, text=True, check=True)
     assert done.stdout.strip() == "[]"
+
+
+@pytest.mark.parametrize(
+    ("text", "said"),
+    [
+        ("Dear colleague, samples 3 and 4 were fine.", "is not a number"),
+        ("Dear all,\nthe mean was 5.02\nregards", "computed figures"),
+        ("The samples were fine and we all went home at 5.", "is not a number"),
+    ],
+)
+def test_a_letter_is_no_column_of_readings(text, said):
+    """A number inside a sentence is no reading."""
+    found = meanlab.read(text)
+    assert found.refused
+    assert said in found.reason
