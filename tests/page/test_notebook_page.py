@@ -3,6 +3,7 @@
 import json
 import sqlite3
 from contextlib import closing
+from hashlib import sha256
 from pathlib import Path
 
 import pytest
@@ -138,6 +139,25 @@ def test_an_entry_opens_with_readings_and_question_and_the_page_before_can_be_pu
     assert page.text_area(key="readings_text").value == "7.1\n7.2\n7.3"
     assert page.text_input(key="target").value == "7.0"
     assert page.selectbox(key="target_kind").value == "nominal value"
+
+
+def test_an_entry_of_a_file_opens_with_its_file_in_a_new_page(twelve):
+    """The entry holds name, checksum and column; the file that another page still keeps comes back with it."""
+    content = "Run,Nitrate,Nitrite\n" + "".join(f"{n},{text},0.1\n" for n, text in enumerate(twelve.split(), 1))
+    page = opened()
+    page.get("file_uploader")[0].upload("runs.csv", content.encode(), "text/csv").run()
+    page.selectbox(key="column").set_value(1)
+    page.text_input(key="target").set_value("5.000").run()
+    save(page)
+    source = Notebook().entry(Notebook().entries()[0].key).source
+    assert (source.file_name, source.size, source.text) == ("runs.csv", len(content), "")
+    assert source.checksum == sha256(content.encode()).hexdigest()
+    fresh = show_notebook(opened(), 1)
+    fresh.button(key="entry_open").click().run()
+    assert "From <b>runs.csv</b>" in said(fresh)
+    assert fresh.selectbox(key="column").value == 1
+    assert "t(11) = 4.08" in said(fresh)
+    assert "Entry 1 saved" in said(fresh)
 
 
 def test_what_was_set_after_stays_so_when_the_entry_is_opened(twelve):
