@@ -88,7 +88,7 @@ def _by_label(line: str) -> list[Labelled]:
         if not _is_label(bare) or len(bare) > MOST_LABEL:
             continue
         parsed = parse(rest)
-        if parsed.sort == "flag" and count > 1 and parsed.remark[:1].isalpha() and " " in parsed.remark:
+        if parsed.sort == "flag" and count > 2 and parsed.remark[:1].isalpha() and " " in parsed.remark:
             continue  # words before and words behind: a sentence that happens to hold a number
         if (parsed.numeral and (is_clean(parsed) or parsed.sort == "flag")) or parsed.kind == "missing":
             return [Labelled("summary" if is_summary(bare) else "label", bare, rest, parsed)]
