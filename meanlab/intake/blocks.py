@@ -2,6 +2,7 @@
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import cached_property
 
 from meanlab.intake.heading import Heading, heading_of
 from meanlab.intake.long_column import OneColumn
@@ -29,7 +30,7 @@ class Block:
     again: tuple[int, ...] = ()
     tail: tuple[int, ...] = ()
 
-    @property
+    @cached_property
     def width(self) -> int:
         """How many columns the block has."""
         rows = self.table.rows

@@ -17,6 +17,7 @@ from meanlab.intake.plain_column import read_plain
 from meanlab.intake.suffixes import settled
 from meanlab.intake.units import same_unit
 
+MOST_SURE = 30  # characters of a number without a power of ten that cannot pass any limit
 _BELOW_MARKS = ("<", "<=", "=<", "≤", "u", "nd")
 _ABOVE_MARKS = (">", ">=", "=>", "≥")
 
@@ -102,21 +103,24 @@ def _number_of(one: Parsed, key: Any, sign: DecimalSign, given: Given) -> str | 
     if plain is None:
         return None
     text = f"{'-' if one.minus else ''}{plain}{f'E{one.exponent}' if one.power else ''}"
-    try:
-        exact(text)
-    except ReadingsComplaint:
-        return None
+    if len(text) > MOST_SURE or one.power:
+        try:
+            exact(text)
+        except ReadingsComplaint:
+            return None
     return text
 
 
 def _typical(known: dict[Hashable, Parsed], numbers: dict[Hashable, str | None], sign: DecimalSign) -> float:
-    """Size of the readings that no thousands mark has a part in."""
+    """Size of the readings that no thousands mark has a part in; 0 where it is not needed."""
+    if not sign.thousands:
+        return 0.0
     sizes = sorted(
         abs(float(numbers[key] or 0))
         for key, one in known.items()
         if one.kind == "reading" and numbers[key] and leaning(one.numeral) != "either"
     )
-    return sizes[len(sizes) // 2] if sizes and sign.thousands else 0.0
+    return sizes[len(sizes) // 2] if sizes else 0.0
 
 
 def _checked(

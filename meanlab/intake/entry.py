@@ -35,6 +35,7 @@ POWER = (
 )
 _READING = re.compile(rf"(?P<sign>[+-](?P<gap>\s*))?(?P<numeral>{NUMERAL})(?:{POWER})?", re.ASCII)
 _BARE = re.compile(r"[+-]?\d{1,30}(?:[.,]\d{1,30})?", re.ASCII)
+_BARE_WITH_UNIT = re.compile(r"([+-]?\d{1,30}(?:[.,]\d{1,30})?)(?: ([^\W\d_][^\s\d]*)| ?([%‰]))", re.ASCII)
 _LOST_POWER = re.compile(rf"[+-]?(?:{NUMERAL})\s?[x×*·⋅]\s?10\d{{1,2}}(?!\d)", re.ASCII)
 _ERROR_CODE = re.compile(r"err(?:or)?[ -]?\d{0,4}|e\d{2,3}", re.IGNORECASE | re.ASCII)
 _RANGE = re.compile(
@@ -127,6 +128,9 @@ def parse(text: str) -> Parsed:
     """
     if _BARE.fullmatch(text):
         return Parsed("reading", text.lstrip("+-"), text[0] == "-")
+    with_unit = _BARE_WITH_UNIT.fullmatch(text)
+    if with_unit and is_unit(unit := with_unit[2] or with_unit[3]):
+        return Parsed("reading", with_unit[1].lstrip("+-"), text[0] == "-", unit=unit)
     if len(text) > MOST_CHARACTERS:
         return Parsed("unread", sort="long")
     if len(text) > 1 and text[0] in _QUOTES:

@@ -9,7 +9,7 @@ from meanlab.intake.table import sort_of_text
 from meanlab.intake.words import plain_word
 
 _RUNNING = re.compile(r"(?P<stem>[^\W\d_][^\d:]*?)[\s_.#-]*(?P<mark>\d{1,3}|[A-Za-z]|[IVX]{1,4})\s*:?")
-MOST_LINES = 20_000
+MOST_LINES = 200_000
 
 
 def preparation_of(text: str) -> str:

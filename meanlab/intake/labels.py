@@ -6,7 +6,8 @@ from dataclasses import dataclass
 from itertools import pairwise
 
 from meanlab.intake.entry import STAMP, Parsed, parse
-from meanlab.intake.words import is_summary
+from meanlab.intake.units import is_unit
+from meanlab.intake.words import FLAGS, is_summary
 
 _LIST_NUMBER = re.compile(
     r"(?:\(\d{1,6}\)|\[\d{1,6}\]|#\s?\d{1,6}[.):]?|(?:no|nr)\.?\s?\d{1,6}[.):]?"
@@ -20,11 +21,14 @@ _PATTERNS = {"number": _LIST_NUMBER, "stamp": _STAMP_ALONE}
 _DASH = re.compile(r"\d{1,4}\s+-\s+(?=[\d<>.+])", re.ASCII)
 _BEGINNINGS = (("number", _LIST_NUMBER), ("bullet", _BULLET), ("stamp", _STAMP), ("dash", _DASH))
 _BARE_NUMBER = re.compile(r"-?\d+(?:[.,]\d+)?", re.ASCII)
-_QUICK_LABEL = re.compile(r"[^\W\d_][\w#/-]*(?: [\w#/-]+){0,2}")
+_QUICK_LINE = re.compile(
+    r"([^\W\d_][\w#/-]*(?: [\w#/-]+){0,2})(?:\s?[:=]\s?| )(-?\d+(?:[.,]\d+)?(?:\s?([^\W\d_%][^\s\d]*|%))?)"
+)
 _QUICK = Parsed("reading")
 _NO_LABELS = frozenset({"minus", "negative", "neg", "neg.", "not", "no", "nearly", "almost", "half", "twice", "times"})
 _DECIMALS = re.compile(r"\d[.,]\d")
 MOST_LABEL = 32
+MOST_WORDS = 3
 
 
 @dataclass(frozen=True, slots=True)
@@ -62,19 +66,20 @@ def take_apart(line: str) -> list[Labelled]:
 def quickly_apart(line: str, style: str) -> Labelled | None:
     """Return the commonest beginnings of a known style before a bare number; None where a closer look is needed.
 
-    >>> quickly_apart("QC-1 5.02", "label").entry
-    '5.02'
+    >>> quickly_apart("QC-1: 5.02 mg/L", "label").entry
+    '5.02 mg/L'
     """
+    if style == "label":
+        found = _QUICK_LINE.fullmatch(line)
+        if not found or (found[3] and not is_unit(found[3])) or len(found[1]) > MOST_LABEL or is_summary(found[1]):
+            return None
+        return Labelled(style, found[1], line[found.start(2) :], _QUICK) if _is_label(found[1]) else None
     before, blank, entry = line.rpartition(" ")
-    if not blank or not _BARE_NUMBER.fullmatch(entry):
+    if not blank or style not in _PATTERNS or not _BARE_NUMBER.fullmatch(entry):
         return None
     before = before.strip()
-    if style in _PATTERNS:
-        whole = _PATTERNS[style].fullmatch(before + " " if style == "stamp" else before)
-        return Labelled(style, before, entry, _QUICK) if whole else None
-    bare = before.rstrip(" :=")
-    plain = style == "label" and len(bare) <= MOST_LABEL and bare[:1].isalpha() and _QUICK_LABEL.fullmatch(bare)
-    return Labelled(style, bare, entry, _QUICK) if plain and not is_summary(bare) else None
+    whole = _PATTERNS[style].fullmatch(before + " " if style == "stamp" else before)
+    return Labelled(style, before, entry, _QUICK) if whole else None
 
 
 def _by_label(line: str) -> list[Labelled]:
@@ -82,17 +87,23 @@ def _by_label(line: str) -> list[Labelled]:
     words = line.replace(":", ": ").replace("=", "= ").split()
     if len(words) < 2 or len(line) > 80:
         return []
-    for count in range(min(len(words) - 1, 5), 0, -1):
+    for count in range(min(len(words) - 1, MOST_WORDS + 2), 0, -1):
         label, rest = " ".join(words[:count]), " ".join(words[count:])
         bare = label.rstrip(" :=")
-        if not _is_label(bare) or len(bare) > MOST_LABEL:
+        if not _is_label(bare) or len(bare) > MOST_LABEL or (count > MOST_WORDS and label[-1] not in ":="):
             continue
         parsed = parse(rest)
-        if parsed.sort == "flag" and count > 2 and parsed.remark[:1].isalpha() and " " in parsed.remark:
-            continue  # words before and words behind: a sentence that happens to hold a number
-        if (parsed.numeral and (is_clean(parsed) or parsed.sort == "flag")) or parsed.kind == "missing":
+        if (parsed.numeral and (is_clean(parsed) or _is_marked(parsed, label))) or parsed.kind == "missing":
             return [Labelled("summary" if is_summary(bare) else "label", bare, rest, parsed)]
     return []
+
+
+def _is_marked(parsed: Parsed, label: str) -> bool:
+    """Tell whether a mark or a remark stands behind a labelled reading, and not the next words of a sentence."""
+    mark = parsed.remark
+    is_mark = len(mark) < 3 or not mark[0].isalpha() or mark.casefold() in FLAGS
+    is_code = len(label.split()) < 3 and any(map(str.isdigit, label))
+    return parsed.sort == "flag" and (is_mark or is_code)
 
 
 def _is_label(text: str) -> bool:

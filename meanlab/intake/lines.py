@@ -16,6 +16,7 @@ _RULER = re.compile(r"[\s|:+=_-]{5,}|(?:[-=_]{2,}[\s|+]+)+[-=_]{2,}|[|+][-=_:|+\
 _ENTRIES = frozenset({"number", "limit", "missing", "word", "stamp"})
 _SINGLE = frozenset({"lost power", "span", "formula", "width", "infinite"})
 SAMPLE = 400
+MOST_HEADING_LINES = 60
 
 
 @dataclass
@@ -51,7 +52,7 @@ def lines_of(text: str) -> Lines:
             kept.append((number, line))  # dashes between readings stand for a missing one
         elif not bare or bare[0] not in "#/;-=_+|:" or not _is_passed_over(bare, numbered):
             kept.append((number, line))
-        elif bare[0] == "#" and heading_of(bare.lstrip("# ")).unit:
+        elif bare[0] == "#" and number <= MOST_HEADING_LINES and heading_of(bare.lstrip("# ")).unit:
             kept.append((number, bare.lstrip("# ")))
         elif not _RULER.fullmatch(bare):
             left.append((number, bare))

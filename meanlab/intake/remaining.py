@@ -4,18 +4,18 @@ from collections import Counter
 from collections.abc import Sequence
 from typing import Any
 
+from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.blocks import Block
 from meanlab.intake.characters import shown
 from meanlab.intake.numerals import under
 from meanlab.intake.picked import NothingToRead, Picked
-from meanlab.intake.roles import Role, is_count, listed, replicates, sample_of
+from meanlab.intake.roles import MOST_COLUMNS, Role, is_count, listed, replicates, sample_of
 from meanlab.intake.separators import ChoiceNeeded
-from meanlab.intake.table import parsed, sort_of
+from meanlab.intake.table import parsed
 
 MOST_CHOICES = 200
 MOST_POOLED = 400
 SPREAD = 1.25  # columns of one quantity, typed into a few lines, have medians within this factor
-_ENTRIES = ("number", "limit", "odd")
 
 
 def remaining(block: Block, rows: Sequence[int], roles: list[Role], filtered: bool) -> Picked:
@@ -23,11 +23,11 @@ def remaining(block: Block, rows: Sequence[int], roles: list[Role], filtered: bo
 
     Raises NothingToRead where there is none, ChoiceNeeded where there are several.
     """
+    if block.width > MOST_COLUMNS:
+        raise IntakeComplaint(
+            f"The table has {block.width:,} columns; at most {MOST_COLUMNS:,} are looked at. Choose one by its heading."
+        )
     filled = [i for i, role in enumerate(roles) if role.role != "empty"]
-    if block.heading is None and len(rows) == 1 and len(filled) > 1:
-        beside = [i for i in filled if sort_of(block.table, rows[0], i) in _ENTRIES]
-        if len(beside) > 1:
-            return Picked(block, rows, filled, is_pool=True)
     hidden = block.table.sheet.hidden_columns if block.table.sheet else frozenset()
     readings = [i for i, role in enumerate(roles) if role.role == "readings"]
     readings = [i for i in readings if i not in hidden] or readings or _last_resort(block, roles, filled)

@@ -7,6 +7,7 @@ from functools import lru_cache
 from meanlab.intake.characters import one_spelling
 from meanlab.intake.entry import Parsed, parse
 from meanlab.intake.grid import Cell, Sheet
+from meanlab.intake.long_column import OneColumn
 from meanlab.intake.numerals import leaning, under
 
 FIRST_ROWS = 400
@@ -27,7 +28,8 @@ class Table:
     remarks    what must be seen about the whole table; ``notes`` what is neutral
     named      the name that stands before every entry of a text with one entry a line
     labels     label of the preparation each line belongs to, by number of line
-    turned     True where rows and columns of the text or sheet have changed places
+    turned     True where rows and columns of the text or sheet have changed places; ``first`` is the row then that
+               the first column was
     """
 
     rows: Sequence[Sequence[str]]
@@ -39,6 +41,7 @@ class Table:
     named: str = ""
     labels: Mapping[int, str] | None = None
     turned: bool = False
+    first: int = 0
 
     @property
     def name(self) -> str:
@@ -59,14 +62,14 @@ class Table:
         """Return a cell as the workbook has it; None in a text and beyond the end of a row."""
         if self.sheet is None:
             return None
-        row, column = (column, row) if self.turned else (row, column)
+        row, column = (column + self.first, row) if self.turned else (row, column)
         cells = self.sheet.rows[row]
         return cells[column] if column < len(cells) else None
 
     def place(self, row: int, column: int) -> str:
         """Return where a cell stands, in words: "line 3" or "B7"."""
         if self.turned:
-            row, column = column, row
+            row, column = column + self.first, row
         if self.lines is not None:
             return f"line {self.lines[row]}" + (f", field {column + 1}" if self.turned else "")
         return f"{column_letters(column)}{row + 1}"
@@ -146,6 +149,11 @@ def is_blank(cells: Sequence[str]) -> bool:
 
 def upright(table: Table) -> Table:
     """Return a table whose quantities stand in rows, "Nitrate; 5.02; 5.04; 4.98", with rows and columns exchanged."""
+    if isinstance(table.rows, OneColumn) and table.sheet is None:
+        return table
+    alone = _only_row(table)
+    if alone is not None:
+        return alone
     rows = [row for row in range(min(len(table.rows), MOST_TURNED + 1)) if not is_blank(table.rows[row])]
     if not rows or len(rows) > MOST_TURNED or len(table.rows) > 100 or (table.separator == "" and table.sheet is None):
         return table
@@ -158,6 +166,21 @@ def upright(table: Table) -> Table:
         if len(rows) > 1 and not counted and not 0 < max(numbers) < CLOSE * min(numbers):
             return table
     return table.turn()
+
+
+def _only_row(table: Table) -> Table | None:
+    """A row of entries beside each other, alone in its table, as a column; None where there are more rows."""
+    filled = [row for row in range(min(len(table.rows), 2000)) if not is_blank(table.rows[row])][:2]
+    if len(filled) != 1 or len(table.rows) > 2000 or len(table.rows[filled[0]]) < 2:
+        return None
+    row = filled[0]
+    sorts = [sort_of(table, row, column) for column in range(min(len(table.rows[row]), FIRST_ROWS))]
+    if sum(sort in ("number", "limit", "odd") for sort in sorts) < 2:
+        return None
+    texts = list(table.rows[row])
+    while not texts[-1]:
+        texts.pop()
+    return replace(table, rows=OneColumn(texts), turned=True, first=row)
 
 
 def _size(text: str) -> float:
