@@ -22,6 +22,7 @@ MOST_PLACES = 15
 MOST_DIGITS = 15  # that a double always carries
 PLAIN, MISSING, LONG, ODD = 0, 1, 2, 3
 WIDE = 99
+AT_A_TIME = 2**16  # numbers that stay in the processor's cache
 
 
 @dataclass(frozen=True)
@@ -125,6 +126,14 @@ def decimal_places(numbers: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
     >>> decimal_places(np.array([5.02, 12.0, 0.1 + 0.2]))[0].tolist()
     [2, 0, 99]
     """
+    parts = [_places_of_some(numbers[start : start + AT_A_TIME]) for start in range(0, len(numbers), AT_A_TIME)]
+    if not parts:
+        return np.zeros(0, dtype=np.int8), np.zeros(0)
+    places, whole = (np.concatenate(side) for side in zip(*parts, strict=True))
+    return places, whole
+
+
+def _places_of_some(numbers: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
     places = np.full(len(numbers), WIDE, dtype=np.int8)
     whole = np.zeros(len(numbers))
     rest, left = np.arange(len(numbers)), numbers
