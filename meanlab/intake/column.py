@@ -123,12 +123,19 @@ def _typical(known: dict[Hashable, Parsed], numbers: dict[Hashable, str | None],
     return sizes[len(sizes) // 2] if sizes else 0.0
 
 
+def _why_no_number(numeral: str, sign: DecimalSign) -> str:
+    if leaning(numeral) == "malformed":
+        return "malformed"
+    fits_other = under(numeral, sign.sign) is None and under(numeral, "," if sign.sign == "." else ".") is not None
+    return "other sign" if fits_other else "range"
+
+
 def _checked(
     one: Parsed, number: str | None, sign: DecimalSign, typical: float, is_text: bool
 ) -> tuple[Parsed, str | None]:
     """An entry whose numeral cannot be read, or only by a thousands mark that nothing supports, is not read."""
     if number is None:
-        return Parsed("unread", sort="malformed" if leaning(one.numeral) == "malformed" else "range"), ""
+        return Parsed("unread", sort=_why_no_number(one.numeral, sign)), ""
     if typical and is_text and one.numeral and leaning(one.numeral) == "either":
         other = "," if sign.sign == "." else "."
         if other in one.numeral and not 1 / FARTHEST < abs(float(number)) / typical < FARTHEST:

@@ -88,8 +88,9 @@ def _unread(one: Parsed) -> str:
         "thousands": f"could be {one.meant} or have a thousands mark: type it without one.",
         "lost power": "has lost the raised exponent of its power of ten: write it like 1.2e3.",
         "malformed": "is not a number: check its points and commas.",
+        "other sign": "does not fit the decimal sign of this column: choose the other one, or correct it.",
         "long": "is a text, not a number.",
-    }.get(one.sort, "is not a number" + (f".{meant}" if meant else f": {one.remark.lstrip()}" if one.remark else ": correct it, or it stays out."))
+    }.get(one.sort, f"is not a number.{meant}" if meant else "is not a number: correct it, or it stays out.")
 
 
 def about(sort: str, given: "Given", places: Sequence[int], each: Sequence[Parsed]) -> str:

@@ -87,6 +87,8 @@ def _counts(found: Intake | None) -> None:
         return
     if found.refused:
         say(found.reason)
+        if state.value("decimal_sign") != SIGNS[0]:
+            draw_sign()
         return
     if asks_for_sign(found):
         say(found.reason)

@@ -108,8 +108,7 @@ def find_file(digest: str) -> bytes | None:
 def use_file(name: str, content: bytes) -> None:
     """Take the readings from a file from now on."""
     _set_aside("a file was opened")
-    for pick in PICKS:
-        put(pick, deepcopy(FIELDS[pick]))
+    _forget_picks()
     put("readings_text", "")
     _take_file(name, content)
     _forget_looks()
@@ -273,14 +272,22 @@ def _take_in(now: Working, name: str, given: Any) -> None:
             _set_aside("readings were pasted in place of a file")
             now.file = None
             now.left_out, now.first = {}, None
+            _forget_picks()
         elif replaced(before, given):
             _set_aside("the readings were replaced")
             now.left_out = {}
+            _forget_picks()
     elif name == "readings_text" and before.strip():
         _set_aside("the readings were cleared")
         now.left_out = {}
         _forget_looks()
     now.fields[name] = given
+
+
+def _forget_picks() -> None:
+    """Forget what was chosen in other readings: their decimal sign, column, rows and preparations."""
+    for pick in PICKS:
+        put(pick, deepcopy(FIELDS[pick]))
 
 
 def _set_aside(cause: str, with_question: bool = False) -> None:

@@ -246,3 +246,15 @@ def test_what_is_typed_into_a_part_is_there_when_the_part_comes_back():
         assert shown.text_input(key="plan_difference").value == "1.5"
         shown.text_input(key="plan_difference").set_value("").run()
         assert shown.text_input(key="plan_difference").value == ""
+
+
+def test_a_decimal_sign_is_asked_for_where_nothing_shows_it_and_forgotten_with_the_readings():
+    """ "1,234" alone asks, one click settles it, and other readings are read as they are written."""
+    page = typed(opened(), "1,234\n1,241\n1,229", "1,23")
+    assert "The decimal sign cannot be told" in said(page)
+    sign = next(group for group in page.get("button_group") if group.key == "decimal_sign")
+    page = sign.set_value("decimal comma").run()
+    assert "<span>3</span> of 3 readings" in said(page)
+    page = typed(page, "5.1\n5.2\n5.4", "5.0")
+    assert "<span>3</span> of 3 readings" in said(page)
+    assert "5.23" in said(page)
