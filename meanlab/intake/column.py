@@ -205,7 +205,7 @@ def _remark(found: Read, each: _Each, given: Given) -> None:
     groups: dict[str, list[int]] = {}
     for i in found.special:
         groups.setdefault(each[i].sort if each[i].kind != "unread" else "unread", []).append(i)
-    found.warnings.extend(sayings.about_unread(given, groups.pop("unread", []), each))
+    found.unread = sayings.about_unread(given, groups.pop("unread", []), each)
     for sort, places in groups.items():
         sentence = sayings.about(sort, given, places, each)
         if sentence:

@@ -12,7 +12,7 @@ MOST_ROWS = 20_000
 def doubts_about(picked: Picked, given: Given, found: Read) -> tuple[list[str], list[str]]:
     """Return the warnings and the notes about a column, in the order in which they are read."""
     block = picked.block
-    warnings = [*block.table.remarks, *picked.warnings, *found.warnings]
+    warnings = [*block.table.remarks, *picked.warnings, *found.unread, *found.warnings]
     warnings.extend(_left_out_rows(block))
     warnings.extend(_odd_heading(picked))
     warnings.extend(_odd_lengths(picked))

@@ -35,12 +35,16 @@ class Given:
 
 @dataclass
 class Read:
-    """What a column came to; ``refusal`` is the reason why nothing may be computed."""
+    """What a column came to; ``refusal`` is the reason why nothing may be computed.
+
+    ``unread`` are the sentences about entries that could not be read, ``warnings`` the further ones.
+    """
 
     numbers: list[str] = field(default_factory=list)
     special: dict[int, Special] = field(default_factory=dict)
     sign: DecimalSign = field(default_factory=lambda: DecimalSign("."))
     unit: str | None = None
+    unread: list[str] = field(default_factory=list)
     warnings: list[str] = field(default_factory=list)
     notes: list[str] = field(default_factory=list)
     refusal: str = ""

@@ -18,7 +18,7 @@ def preparation_of(text: str) -> str:
     >>> preparation_of("Prep A:"), preparation_of("Vial 2"), preparation_of("Nitrate")
     ('Prep A', 'Vial 2', '')
     """
-    found = _RUNNING.fullmatch(text.strip())
+    found = _RUNNING.fullmatch(text.strip()) if text[:1].isalpha() and len(text) < 60 else None
     return text.strip().rstrip(": ") if found and plain_word(found["stem"]) in PREPARATIONS else ""
 
 
@@ -27,7 +27,7 @@ def without_group_lines(lines: Lines) -> tuple[Lines, dict[int, str] | None]:
     if len(lines.texts) > MOST_LINES:
         return lines, None
     bare = [line.strip() for line in lines.texts]
-    labels = [preparation_of(line) if line and sort_of_text(line) == "text" else "" for line in bare]
+    labels = [label if (label := preparation_of(line)) and sort_of_text(line) == "text" else "" for line in bare]
     if len({label for label in labels if label}) < 2:
         return lines, None
     first = next(place for place, label in enumerate(labels) if label)

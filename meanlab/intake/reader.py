@@ -135,7 +135,7 @@ def _nothing(tables: Sequence[Table]) -> Intake:
         if places:
             found = _entries(table, places[:50])
             read_back = read_column(found)
-            found_out = [*(table.sheet.remarks if table.sheet else ()), *read_back.warnings]
+            found_out = [*(table.sheet.remarks if table.sheet else ()), *read_back.unread]
             return Intake(refused=True, reason=" ".join(["No reading was found.", *found_out[:2]]))
     return Intake(refused=True, reason="There is nothing to read: paste the readings, one a line, or open a file.")
 
@@ -234,11 +234,11 @@ def _intake(picked: Picked, given: Given, found: Read) -> Intake:
         return Intake(refused=True, reason=found.refusal)
     censored = any(one.kind in ("below", "above") for one in found.special.values())
     if not found.numbers and not censored:
-        first = next(iter(found.warnings), "Every entry is marked as missing.")
+        first = next(iter(found.unread), "Every entry is marked as missing.")
         return Intake(refused=True, reason=f"No reading was found. {first}")
     unread = sum(one.kind == "unread" for one in found.special.values())
     if unread > FEW_UNREAD and unread * 3 > 2 * len(given.texts):
-        first = next(iter(found.warnings), "")
+        first = next(iter(found.unread), "")
         return Intake(refused=True, reason=f"{unread} of {len(given.texts)} entries are no readings. {first}")
     return Intake(
         texts=given.texts,

@@ -14,7 +14,7 @@ from meanlab.intake.table import parsed, sort_of_text
 
 GAPS = re.compile(r"\s{2,}|\t")
 _DIGIT = re.compile(r"\d")
-_DECIMAL_COMMA_LIST = re.compile(r"\d,\d.*,\s|,\s.*\d,\d")
+_DECIMAL_COMMA = re.compile(r"\d,\d")
 _COUNTED = re.compile(r"(\d{1,3}) \d{3}")
 _IN_BRACKETS = re.compile(r"\[[^\[\]]*\]|\([^()]*\)")
 _CODE = re.compile(r"\d+[A-Za-z]", re.ASCII)
@@ -111,7 +111,7 @@ def _comma(filled: list[str], decimal: str | None) -> str:
     under_heading = len(heading) > 1 and not is_quantity and not _is_comma_of_prose(filled, data)
     if len(filled) == 1 or (len(data) == 1 and not under_heading and data[0] == filled[-1]):
         return _comma_in_a_row(data[0] if data else filled[0], decimal)
-    if any(_DECIMAL_COMMA_LIST.search(line) for line in data) and not any(is_entry(line) for line in data):
+    if any(_has_both_commas(line) for line in data) and not any(is_entry(line) for line in data):
         return ", "
     widths = Counter(line.count(",") + 1 for line in data)
     if under_heading:
@@ -119,6 +119,11 @@ def _comma(filled: list[str], decimal: str | None) -> str:
         if fitting * 2 >= len(data):
             return ","
     return "," if _comma_by_rows(data) else ""
+
+
+def _has_both_commas(line: str) -> bool:
+    """Tell whether commas with and without a blank behind them stand on a line: "5,02, 5,04"."""
+    return ", " in line and _DECIMAL_COMMA.search(line) is not None
 
 
 def _is_comma_of_prose(filled: list[str], data: list[str]) -> bool:
@@ -171,7 +176,7 @@ def _comma_in_a_row(line: str, decimal: str | None) -> str:
     if _is_list_by_blanks(line):
         return ""
     parts = [part.strip() for part in line.split(",")]
-    if ", " in line and _DECIMAL_COMMA_LIST.search(line):
+    if _has_both_commas(line):
         return ", "
     whole = all(part.isdigit() for part in parts if part)
     if not whole or len(parts) % 2 or ", " in line or decimal == ".":

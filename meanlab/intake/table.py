@@ -132,7 +132,7 @@ def sort_of_text(text: str) -> str:
 
 def _is_like_a_number(text: str) -> bool:
     """Tell whether a text that could not be read was meant as an entry, not as a heading: "(0.05)", "<", "1.2e"."""
-    if text[0] in "<>≤≥" or not any(one.isalpha() or one in "%°‰" for one in text):
+    if text[0] in "<>≤≥" or not any(one.isalpha() or one in "%°‰" for one in text[:200]):
         return True
     return text.lstrip("+-")[:1].isdigit() and not any(sum(map(str.isalpha, word)) > 2 for word in text.split())
 
