@@ -17,6 +17,7 @@ from meanlab.intake.plain_column import read_plain
 from meanlab.intake.suffixes import settled
 from meanlab.intake.units import same_unit
 
+FEW_APART = 200
 MOST_SURE = 30  # characters of a number without a power of ten that cannot pass any limit
 _BELOW_MARKS = ("<", "<=", "=<", "≤", "u", "nd")
 _ABOVE_MARKS = (">", ">=", "=>", "≥")
@@ -154,18 +155,26 @@ def _qualified(one: Parsed, mark: str) -> Parsed:
 
 def _collect(found: Read, each: _Each, numbers: dict[Any, str | None], given: Given) -> None:
     roles = {
-        key: Special(one.kind, number, sayings.role(one, sayings.as_written(number, found.sign.sign)))
+        key: _special(one, numbers[key] or "", found.sign.sign)
         for key, one in each.known.items()
-        if (one.kind != "reading" or one.sort) and (number := numbers[key] or "") is not None
+        if one.kind != "reading" or one.sort
     }
-    found.special = {i: roles[key] for i, key in enumerate(each.keys) if key in roles} if roles else {}
-    readings = map(numbers.__getitem__, each.keys)
-    if all(one.kind == "reading" for one in each.known.values()):
-        found.numbers = [number or "" for number in readings]
+    places = [i for i, key in enumerate(each.keys) if key in roles] if roles else []
+    found.special = {i: roles[each.keys[i]] for i in places}
+    found.numbers = [numbers[key] or "" for key in each.keys]
+    apart = [i for i in places if found.special[i].kind != "reading"]
+    if len(apart) < FEW_APART:
+        for i in reversed(apart):
+            del found.numbers[i]
     else:
-        found.numbers = [number or "" for number, one in zip(readings, each, strict=True) if one.kind == "reading"]
+        gone = set(apart)
+        found.numbers = [number for i, number in enumerate(found.numbers) if i not in gone]
     different = [numbers[key] or "" for key, one in each.known.items() if one.kind == "reading"]
     found.computed = bool(given.computed) or any(looks_computed(exact(one)) for one in different if len(one) > 12)
+
+
+def _special(one: Parsed, number: str, sign: str) -> Special:
+    return Special(one.kind, number, sayings.role(one, sayings.as_written(number, sign)))
 
 
 def _units(found: Read, each: _Each, given: Given) -> str:
