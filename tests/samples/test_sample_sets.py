@@ -19,7 +19,7 @@ def opened(one):
     fields = dict(FIELDS) | dict(one.fields)
     by_preparation = fields["preparation"] is not None
     name = None if one.pasted else one.path.name
-    source = cache.Source(one.content, name, file_choice._selection(fields), by_preparation)
+    source = cache.Source(one.content, name, file_choice.selection_of(fields), by_preparation)
     found = cache.read(source)
     return found, cache.outcome(source, (), asked.question_from(fields, found.decimal_sign)).analysis
 
