@@ -5,6 +5,7 @@ from meanlab.intake.characters import shown
 from meanlab.intake.choosing import Picked
 from meanlab.intake.given import Given, Read
 from meanlab.intake.table import filled_width, sort_of
+from meanlab.intake.units import is_unit
 
 MOST_ROWS = 20_000
 
@@ -20,7 +21,7 @@ def doubts_about(picked: Picked, given: Given, found: Read) -> tuple[list[str], 
     warnings.extend(_hidden(picked))
     if len(found.numbers) <= MOST_ROWS:
         warnings.extend(_first_unlike(picked, given, found))
-        warnings.extend(_last_is_mean(picked, given, found))
+        warnings.extend(_last_is_mean(picked, given, found) or _last_without_label(picked))
     notes = [*block.table.notes, *picked.notes, *found.notes]
     first = block.heading if block.heading is not None else block.data[0]
     above = sum(any(cells) for cells in block.table.rows[: min(first, 2000)])
@@ -86,7 +87,8 @@ def _texts_beside(picked: Picked) -> list[str]:
     if block.heading is not None or table.sheet is not None or len(picked.columns) != 1 or not table.separator:
         return []
     column = picked.columns[0] + 1
-    rows = [row for row in picked.rows[:MOST_ROWS] if sort_of(table, row, column) == "text"]
+    texts = {row: table.text(row, column) for row in picked.rows[:MOST_ROWS]}
+    rows = [row for row, text in texts.items() if sort_of(table, row, column) == "text" and not is_unit(text)]
     if not rows or len(rows) == len(picked.rows):
         return []
     where = ", ".join(f'{table.place(row, column)} "{shown(table.text(row, column))}"' for row in rows[:5])
@@ -138,6 +140,23 @@ def _last_is_mean(picked: Picked, given: Given, found: Read) -> list[str]:
     return [
         f'The last reading "{given.texts[-1].strip()}" equals the {figure} of the readings above it: if it is computed '
         "and no reading, take it away or leave it out with this cause."
+    ]
+
+
+def _last_without_label(picked: Picked) -> list[str]:
+    """A last row that lacks the run number or label that every other row has: perhaps a computed figure."""
+    rows, table = picked.rows, picked.block.table
+    if len(rows) < 4 or len(picked.columns) != 1 or not table.text(rows[-1], picked.columns[0]):
+        return []
+    beside = [column for column in range(min(picked.block.width, 50)) if column != picked.columns[0]]
+    filled = [any(table.text(row, column) for column in beside) for row in (*rows[:200], rows[-1])]
+    if filled[-1] or not all(filled[:-1][: len(rows) - 1]):
+        return []
+    place = table.place(rows[-1], picked.columns[0])
+    text = table.text(rows[-1], picked.columns[0])
+    return [
+        f'The last row ({place}, "{shown(text)}") has nothing beside its number, as all others have: if it is a mean '
+        "or another computed figure, leave it out with this cause."
     ]
 
 
