@@ -248,6 +248,8 @@ def _with_rest(rest: str, as_reading: Callable[..., Parsed], signed: bool) -> Pa
     if uncertainty and (not uncertainty["unit"] or is_unit(uncertainty["unit"])):
         unit = uncertainty["unit"] if uncertainty["unit"] != "%" else ""  # ± 3 % may be relative
         return as_reading(unit, body, "uncertainty")
+    if body[-1] in ".;" and len(body) > 2 and is_unit(body[:-1]):
+        return as_reading(body[:-1])
     bracketed = _UNIT_IN_BRACKETS.fullmatch(body)
     if bracketed and is_unit(bracketed[1].strip()):
         return as_reading(bracketed[1].strip())

@@ -28,7 +28,7 @@ _NAME_OF_LIST = re.compile(
     r"([^\W\d_][^:=,;\t\d]{0,40}?(?:\([^()]*\)|\[[^\[\]]*\])?)\s*(?:[:=]|<-)\s*(?=[-+<>≤≥−]?\s?[.\d]|c?[\[({])"
 )
 _BRACKETS = re.compile(r"c?[\[({]([^\[\](){}±]*)[\])}];?")
-_AND = re.compile(r",?\s+(?:and|und|et|&)\s+")
+_AND = re.compile(r",?\s+(?:and|und|et|&|/)\s+")
 MOST_WIDTH = 2000
 MOST_LIST = 1_000_000
 

@@ -177,11 +177,12 @@ def _comma_in_a_row(line: str, decimal: str | None) -> str:
         return ""
     parts = [part.strip() for part in line.split(",")]
     if _has_both_commas(line):
-        return ", "
+        return ", " if all(is_entry(part) for part in line.split(", ")) or not all(map(is_entry, parts)) else ","
     whole = all(part.isdigit() for part in parts if part)
     if not whole or len(parts) % 2 or ", " in line or decimal == ".":
         return "," if sum(sort_of_text(part) in (*_NUMBERS, "missing") for part in parts) > 1 else ""
-    if decimal == "," or any(len(part) > 1 and part[0] == "0" for part in parts[1::2]):
+    padded = any(len(part) > 1 and part[0] == "0" for part in parts[1::2])
+    if decimal == "," or padded or (len(parts) > 2 and set(parts[::2]) == {"0"}):
         return PAIRS
     pairs = [f"{a},{b}" for a, b in zip(parts[::2], parts[1::2], strict=True)]
     raise ChoiceNeeded(

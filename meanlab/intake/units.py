@@ -41,7 +41,7 @@ _RAISED = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻", "0123456789+-")
 _TERM = re.compile(r"([^\W\d_]+[₀-₉]*|[%‰‱°′″Å][A-Za-zé]*|\d+(?:\.\d+)?)(?:\^?\(?([+-]?\d{1,2})\)?)?")
 _LENGTHS = word_set("m dm cm mm µm μm um nm km in ft s h")
 _BETWEEN = re.compile(r"\s*(/|per\b|[·⋅*×.•]|\s)\s*")
-_QUALIFIED = re.compile(r"(.*\S)\s+(?:as\s+)?\(?((?:[A-Z][a-z]?\d{0,2}){1,6}(?:[-–][NPSC])?)\)?")
+_QUALIFIED = re.compile(r"(.*?\S)\s+(?:as\s+)?\(?((?:[A-Z][a-z]?\d{0,2}){1,6}(?:[-–][NPSC])?)\)?")
 _BASIS = re.compile(r"\s*\(?\b(w/w|m/m|v/v|w/v|m/v|n/n|mol/mol|dry|wet|DM|TS|i\. ?Tr\.|FS)\)?$")
 _WORDS = word_set(
     "pH pX Abs abs day min max log in at mol count counts cells units copies events Count RU Ct LU SU GE IE HK"
@@ -61,6 +61,9 @@ def is_unit(text: str) -> bool:
         return False
     if bare in _SYMBOLS or _terms(bare) is not None:
         return True
+    for logarithm in ("log10 ", "log ", "lg "):
+        if bare.startswith(logarithm):
+            return is_unit(bare[len(logarithm) :])
     found = _BASIS.search(bare)
     return bool(found and found.start() and is_unit(bare[: found.start()]))
 
@@ -115,13 +118,13 @@ def _meaning(text: str) -> object:
 
 def _terms(bare: str) -> list[tuple[str, int]] | None:
     """The symbols of a unit with their powers, None where the text is none."""
-    text, place, below = bare.translate(_RAISED), 0, False
+    text, place, below, behind_slash = bare.translate(_RAISED), 0, False, False
     found: list[tuple[str, int]] = []
     if text.startswith(("/", "1/")):
         place, below = text.index("/") + 1, True
     while True:
         term = _TERM.match(text, place)
-        if term is None or not _is_term(term, bool(found) or below):
+        if term is None or not _is_term(term, behind_slash):
             return None
         power = int(term[2] or 1)
         found.append((term[1], -power if below else power))
@@ -131,13 +134,15 @@ def _terms(bare: str) -> list[tuple[str, int]] | None:
         between = _BETWEEN.match(text, place)
         if between is None:
             return None
-        below = below or between[1] in ("/", "per")
+        behind_slash = between[1] in ("/", "per")
+        below = below or behind_slash
         place = between.end()
 
 
-def _is_term(term: re.Match[str], inside: bool) -> bool:
+def _is_term(term: re.Match[str], behind_slash: bool) -> bool:
+    """A symbol, or a whole number directly behind a slash: "MPN/100 mL"."""
     symbol = term[1]
     if symbol[0].isdigit():
-        return inside
+        return behind_slash and symbol.isdigit()
     bare_power = term[2] is not None and term[0] == symbol + term[2] and term[2][0] not in "+-"
     return symbol in _SYMBOLS and (not bare_power or (term[2] in "23" and symbol in _LENGTHS))
