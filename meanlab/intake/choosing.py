@@ -38,6 +38,7 @@ def pick(blocks: Sequence[Block], selection: Mapping[str, Any]) -> Picked:
         picked.qualifier = find(block, selection["qualifier_column"])
     if selection.get("preparation") is not None:
         picked.preparation, picked.is_chosen = find(block, selection["preparation"]), True
+    picked.roles = roles
     return with_what_stands_beside(picked, roles)
 
 

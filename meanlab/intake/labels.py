@@ -10,8 +10,8 @@ from meanlab.intake.units import is_unit
 from meanlab.intake.words import FLAGS, is_summary
 
 _LIST_NUMBER = re.compile(
-    r"(?:\(\d{1,6}\)|\[\d{1,6}\]|#\s?\d{1,6}[.):]?|(?:no|nr)\.?\s?\d{1,6}[.):]?"
-    r"|\d{1,6}\s?[.):](?=\s|$)|\d{1,6}\)|[A-Za-z]\)|[A-Za-z]\.(?=\s))\s*",
+    r"(?:\(\d{1,6}\)|\[\d{1,6}\]|#\s?\d{1,6}[.):]?(?=\s|$)|(?:no|nr)\.?\s?\d{1,6}[.):]?(?=\s|$)"
+    r"|\d{1,6}\s?[.):](?=\s|$)|\d{1,6}\)|(?:[ivx]{1,4}|[A-Za-z])(?:\)|\.(?=\s)))\s*",
     re.IGNORECASE | re.ASCII,
 )
 _BULLET = re.compile(r"[•·‣▪◦*]\s+")

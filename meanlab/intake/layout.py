@@ -6,7 +6,7 @@ from collections import Counter
 from collections.abc import Sequence
 
 from meanlab.core.complaints import IntakeComplaint
-from meanlab.intake.characters import one_spelling, signs_for_names
+from meanlab.intake.characters import one_spelling, shown, signs_for_names
 from meanlab.intake.groups import without_group_lines
 from meanlab.intake.labels import Labelled, common_style, quickly_apart, take_apart
 from meanlab.intake.lines import Lines, is_entry, lines_of, sample, split_lines
@@ -29,6 +29,7 @@ _NAME_OF_LIST = re.compile(
 )
 _BRACKETS = re.compile(r"c?[\[({]([^\[\](){}±]*)[\])}];?")
 _AND = re.compile(r",?\s+(?:and|und|et|&|/)\s+")
+_RUNNING_MARK = re.compile(r"[\s_.#:-]*\d*[A-Za-z]?$")
 MOST_WIDTH = 2000
 MOST_LIST = 1_000_000
 
@@ -90,10 +91,22 @@ def _fields(line: str, separator: str) -> list[str]:
     if separator == ", ":
         return [cell.strip() for cell in re.split(r",\s+|,$", line)]
     if separator == PAIRS:
-        parts = [cell.strip() for cell in line.split(",")]
-        even = len(parts) % 2 == 0
-        return [f"{a},{b}" for a, b in zip(parts[::2], parts[1::2], strict=True)] if even else parts
+        return _in_pairs([cell.strip() for cell in line.split(",")])
     return [cell.strip() for cell in (line.strip().strip("|") if separator == "|" else line).split(separator)]
+
+
+def _in_pairs(parts: list[str]) -> list[str]:
+    """Whole numbers two by two as numbers with a decimal comma; what is no number stays."""
+    found: list[str] = []
+    open_half = False
+    for part in parts:
+        joins = open_half and part.isdigit()
+        if joins:
+            found[-1] += f",{part}"
+        else:
+            found.append(part)
+        open_half = part.isdigit() and not joins
+    return found
 
 
 def _by_blanks(lines: Sequence[str]) -> list[list[str]]:
@@ -130,7 +143,10 @@ def _one_a_line(lines: Lines) -> Table:
     rows: Sequence[Sequence[str]] = OneColumn(texts)
     if style or any(way.sort == "summary" for ways in apart.values() for way in ways):
         rows, names = _taken_apart(texts, style)
-    name = names.pop() if len(names) == 1 else ""
+    name = next(iter(names)) if len(names) == 1 else ""
+    if style == "label" and len({_stem(label) for label in names}) > 1:
+        some = ", ".join(f'"{shown(label)}"' for label in sorted(names)[:5])
+        lines.remarks.append(f"The readings carry different names ({some}): be sure that they are of one quantity.")
     notes = [*lines.notes, *([_STYLES[style]] if style and not name else [])]
     return Table(rows, lines.numbers, None, "", tuple(lines.remarks), tuple(notes), name, preparations)
 
@@ -148,6 +164,11 @@ def _taken_apart(texts: list[str], style: str) -> tuple[list[list[str]], set[str
     if style == "label" and rows:
         rows[0] = _without_label_word(rows[0])
     return rows, names
+
+
+def _stem(label: str) -> str:
+    """A label without its running number or letter: "QC-1" and "QC-2" have one stem, "pH" and "Temp" have two."""
+    return _RUNNING_MARK.sub("", label).casefold()
 
 
 def _without_label_word(cells: list[str]) -> list[str]:

@@ -5,6 +5,7 @@ from dataclasses import dataclass, field
 
 from meanlab.core.complaints import IntakeComplaint
 from meanlab.intake.blocks import Block
+from meanlab.intake.roles import Role
 
 
 class NothingToRead(IntakeComplaint):
@@ -15,6 +16,7 @@ class NothingToRead(IntakeComplaint):
 class Picked:
     """Rows and columns of a block that hold the readings.
 
+    roles        what each column of the block is
     name, unit   as the headings give them
     qualifier    column that holds "<" and ">", None where there is none
     preparation  column that holds the labels of the preparations; ``is_chosen`` where it was chosen, not only found
@@ -24,6 +26,7 @@ class Picked:
     block: Block
     rows: Sequence[int]
     columns: list[int]
+    roles: Sequence[Role] = ()
     name: str | None = None
     unit: str | None = None
     qualifier: int | None = None

@@ -5,6 +5,7 @@ from dataclasses import replace
 from typing import Any
 
 from meanlab.core.complaints import IntakeComplaint
+from meanlab.intake import sayings
 from meanlab.intake.blocks import Block, blocks_of
 from meanlab.intake.characters import shown
 from meanlab.intake.choosing import pick
@@ -14,6 +15,7 @@ from meanlab.intake.found import Column, Intake
 from meanlab.intake.given import Given, Read
 from meanlab.intake.long_column import OneColumn
 from meanlab.intake.numerals import Sign, decimal_sign
+from meanlab.intake.overlooked import overlooked
 from meanlab.intake.picked import NothingToRead, Picked
 from meanlab.intake.roles import listed, roles_of, sample_of
 from meanlab.intake.separators import ChoiceNeeded
@@ -232,10 +234,20 @@ def _intake(picked: Picked, given: Given, found: Read) -> Intake:
     warnings, notes = doubts_about(picked, given, found)
     if found.refusal:
         return Intake(refused=True, reason=found.refusal)
-    censored = any(one.kind in ("below", "above") for one in found.special.values())
+    censored = sum(one.kind in ("below", "above") for one in found.special.values())
     if not found.numbers and not censored:
         first = next(iter(found.unread), "Every entry is marked as missing.")
         return Intake(refused=True, reason=f"No reading was found. {first}")
+    passed_over = overlooked(picked)
+    if len(passed_over) > len(found.numbers) + censored:
+        place, text = passed_over[0]
+        return Intake(
+            refused=True,
+            reason=f"More numbers stand beside the readings than among them: it cannot be told which are meant. First "
+            f'{place} "{shown(text)}". Write one reading a line.',
+        )
+    if passed_over:
+        warnings.append(sayings.passed_over(passed_over))
     unread = sum(one.kind == "unread" for one in found.special.values())
     if unread > FEW_UNREAD and unread * 3 > 2 * len(given.texts):
         first = next(iter(found.unread), "")

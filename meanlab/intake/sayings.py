@@ -164,3 +164,10 @@ def code_for_nothing(code: str) -> str:
         f"{code} stands far from the other readings and is what some programs write for no value: "
         "if it is no reading, replace it by NA."
     )
+
+
+def passed_over(places: Sequence[tuple[str, str]]) -> str:
+    """Return the warning for numbers that stand in the text but were not read."""
+    parts = [f'{place} "{shown(text)}"' for place, text in places[:MOST_NAMED]]
+    more = f" and {len(places) - MOST_NAMED:,} more" if len(places) > MOST_NAMED else ""
+    return f"Numbers that belong to no column of readings were not read: {', '.join(parts)}{more}."

@@ -178,9 +178,11 @@ def _comma_in_a_row(line: str, decimal: str | None) -> str:
     parts = [part.strip() for part in line.split(",")]
     if _has_both_commas(line):
         return ", " if all(is_entry(part) for part in line.split(", ")) or not all(map(is_entry, parts)) else ","
-    whole = all(part.isdigit() for part in parts if part)
-    if not whole or len(parts) % 2 or ", " in line or decimal == ".":
+    numbers = [part for part in parts if sort_of_text(part) in _NUMBERS]
+    whole = all(number.isdigit() for number in numbers) and ", " not in line
+    if not whole or len(numbers) % 2 or decimal == ".":
         return "," if sum(sort_of_text(part) in (*_NUMBERS, "missing") for part in parts) > 1 else ""
+    parts = numbers
     padded = any(len(part) > 1 and part[0] == "0" for part in parts[1::2])
     if decimal == "," or padded or (len(parts) > 2 and set(parts[::2]) == {"0"}):
         return PAIRS
