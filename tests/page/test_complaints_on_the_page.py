@@ -41,7 +41,7 @@ def bench(tmp_path, monkeypatch):
     ],
 )
 def test_a_question_that_cannot_be_answered_gets_a_sentence(readings, fields, said):
-    """Identical readings, one reading, σ, E or u out of range, everything below the limit, one preparation, two units."""
+    """Identical readings, one reading, σ, E or u out of range, all below the limit, one preparation, two units."""
     page = AppTest.from_file(str(ROOT / "app.py"), default_timeout=60).run()
     page.text_area(key="readings_text").set_value(readings)
     page.text_input(key="target").set_value("5.00")
