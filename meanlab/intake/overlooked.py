@@ -30,7 +30,7 @@ def _first_row(picked: Picked) -> int:
 
 def _above(table: Table, first: int) -> list[tuple[int, int]]:
     """Rows above the heading that are no facts, each a name and its value."""
-    found = []
+    found: list[tuple[int, int]] = []
     for row in range(min(first, MOST_ROWS)):
         cells = [column for column, text in enumerate(table.rows[row]) if text]
         numbers = [column for column in cells if sort_of(table, row, column) in ("number", "limit", "odd")]

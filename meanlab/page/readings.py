@@ -11,6 +11,7 @@ from meanlab.page.guard import guarded, say
 
 SIGNS = ("as written", "decimal comma", "decimal point")
 BOX_HEIGHT = 150
+LARGE = 1_000_000  # characters or bytes that take about a second to read
 BOX_HEIGHT_BESIDE_A_FILE = 68
 
 
@@ -34,11 +35,20 @@ def draw() -> None:
         placeholder="Paste here to use typed readings" if beside_file else "Paste the readings, one a line",
     )
     with st.container(key="file_choice"), guarded("file"):
+        _read_with_patience()
         file_choice.draw()
     with st.container(key="counts"), guarded("readings"):
         _counts(intake())
     with st.container(key="put_back_row"):
         _put_back()
+
+
+def _read_with_patience() -> None:
+    """Say that a large text or file is being read, which can take seconds; what was read once is at hand afterwards."""
+    source = file_choice.source()
+    if source is not None and len(source.content) > LARGE:
+        with st.spinner("Reading …", show_time=True):
+            cache.read(source)
 
 
 def intake() -> Intake | None:
