@@ -89,7 +89,7 @@ def _starts(table: Table) -> list[tuple[list[int], int]]:
             words = [] if not words or len(table.rows[words[-1]]) > 1 else words
             continue
         sorts = [sort_of(table, row, column) for column in range(min(len(cells), 300))]
-        if _is_words(sorts) or (not starts and _is_counted(table, row, sorts)):
+        if _is_words(sorts, not starts) or (not starts and _is_counted(table, row, sorts)):
             if words and words[-1] != row - 1 and table.separator:
                 words = []
             words.append(row)
@@ -132,9 +132,11 @@ def _begins(
     return blank_before and is_quantity and not table.separator
 
 
-def _is_words(sorts: list[str]) -> bool:
+def _is_words(sorts: list[str], at_the_top: bool = False) -> bool:
+    """Tell whether a row holds words alone; above all data a date may stand among them."""
     filled = [sort for sort in sorts if sort]
-    return "text" in filled and all(sort in ("text", "word", "missing") for sort in filled)
+    words = ("text", "word", "missing", "stamp") if at_the_top else ("text", "word", "missing")
+    return "text" in filled and all(sort in words for sort in filled)
 
 
 def _is_counted(table: Table, row: int, sorts: list[str]) -> bool:

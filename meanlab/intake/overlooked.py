@@ -3,9 +3,10 @@
 import re
 
 from meanlab.intake.picked import Picked
-from meanlab.intake.table import Table, sort_of
+from meanlab.intake.table import sort_of
 
 _DECIMAL = re.compile(r"(?<![\w.,])[-+<>≤≥]?\d+[.,]\d")
+_DECIMAL_AT_END = re.compile(r"(?:^|\s)[-+<>≤≥]?\d+[.,]\d+$")
 MOST_ROWS = 20_000
 MOST_COLUMNS = 60
 
@@ -19,25 +20,28 @@ def overlooked(picked: Picked) -> list[tuple[str, str]]:
     table, block = picked.block.table, picked.block
     if table.sheet is not None or len(block.data) > MOST_ROWS or block.width > MOST_COLUMNS:
         return []
-    places = [*_above(table, _first_row(picked)), *_beside(picked), *_in_heading(picked)]
+    places = [*_above(picked), *_beside(picked), *_in_heading(picked)]
     return [(table.place(row, column), table.text(row, column)) for row, column in places]
 
 
-def _first_row(picked: Picked) -> int:
-    block = picked.block
-    return block.data[0] if block.heading is None else block.heading
-
-
-def _above(table: Table, first: int) -> list[tuple[int, int]]:
-    """Rows above the heading that are no facts, each a name and its value."""
+def _above(picked: Picked) -> list[tuple[int, int]]:
+    """Rows above the heading that are no facts, each a name and its value; without a heading facts are no facts."""
+    table, block = picked.block.table, picked.block
+    first = block.data[0] if block.heading is None else block.heading
     found: list[tuple[int, int]] = []
     for row in range(min(first, MOST_ROWS)):
         cells = [column for column, text in enumerate(table.rows[row]) if text]
         numbers = [column for column in cells if sort_of(table, row, column) in ("number", "limit", "odd")]
-        is_fact = len(cells) == 2 and numbers == cells[1:]
-        loose = [column for column in cells if _DECIMAL.match(table.text(row, column))]
+        is_fact = len(cells) == 2 and numbers == cells[1:] and block.heading is not None
+        loose = [column for column in cells if _is_loose(table.text(row, column), block.heading is not None)]
         found.extend((row, column) for column in (numbers if not is_fact else []) or loose[:1] if loose)
     return found
+
+
+def _is_loose(text: str, is_headed: bool) -> bool:
+    """Tell whether a number with decimals stands in a text that is no fact, "Cell length: 10.0 mm"."""
+    found = _DECIMAL.search(text)
+    return bool(found) and not (is_headed and found is not None and found.start() and any(one in text for one in ":="))
 
 
 def _beside(picked: Picked) -> list[tuple[int, int]]:
@@ -53,13 +57,16 @@ def _beside(picked: Picked) -> list[tuple[int, int]]:
         for row in picked.rows
         for column in open_columns
         if _DECIMAL.search(table.text(row, column))
-        and (block.heading is None or sort_of(table, row, column) in ("odd", "number"))
+        and (not block.heading_text(column) or sort_of(table, row, column) in ("odd", "number"))
     ]
 
 
 def _in_heading(picked: Picked) -> list[tuple[int, int]]:
-    """A heading of a lone column that holds a number with decimals is perhaps a line of readings."""
-    block, column = picked.block, picked.columns[0]
-    if block.heading is None or len(picked.columns) > 1 or (block.table.separator and not block.table.turned):
+    """A heading that ends in a number with decimals, "Blank 4.95", is perhaps a line of readings."""
+    block = picked.block
+    if block.heading is None:
         return []
-    return [(block.heading, column)] if _DECIMAL.search(block.heading_text(column)) else []
+    lone = len(picked.columns) == 1 and (not block.table.separator or block.table.turned)
+    number = _DECIMAL if lone else _DECIMAL_AT_END
+    columns = picked.columns if lone else range(len(block.table.rows[block.heading]))
+    return [(block.heading, column) for column in columns if number.search(block.heading_text(column))]

@@ -17,6 +17,8 @@ _DIGIT = re.compile(r"\d")
 _DECIMAL_COMMA = re.compile(r"\d,\d")
 _COUNTED = re.compile(r"(\d{1,3}) \d{3}")
 _IN_BRACKETS = re.compile(r"\[[^\[\]]*\]|\([^()]*\)")
+_TWO_NUMBERS = re.compile(r"\d[^,]*[\s:±|][^,]*\d", re.ASCII)
+_DECIMAL_WORD = re.compile(r"(?:^|\s)[(]?[-+<>≤≥±~]?\d+,\d+[*)%†]?(?=\s|$)", re.ASCII)
 _CODE = re.compile(r"\d+[A-Za-z]", re.ASCII)
 PAIRS = ",,"  # commas are both decimal signs and separators
 _NUMBERS = ("number", "limit")
@@ -106,6 +108,9 @@ def _are_counted(entries: list[str]) -> bool:
 def _comma(filled: list[str], decimal: str | None) -> str:
     """Return "," or ", " or PAIRS where commas part entries, "" where they belong to them."""
     data = [line for line in filled if _DIGIT.search(line)]
+    several = [line for line in data if line.count(",") > 1 and ", " not in line]
+    if several and sum(map(_breaks_numbers, several)) * 2 > len(several):
+        return ""
     heading = _heading_fields(filled)
     is_quantity = len(heading) == 2 and heading_of(", ".join(heading)).unit in (heading[1], heading[1].strip("()"))
     under_heading = len(heading) > 1 and not is_quantity and not _is_comma_of_prose(filled, data)
@@ -118,6 +123,9 @@ def _comma(filled: list[str], decimal: str | None) -> str:
         fitting = sum(times for width, times in widths.items() if width >= len(heading))
         if fitting * 2 >= len(data):
             return ","
+    single = [line for line in data if line.count(",") == 1]
+    if sum(_DECIMAL_WORD.search(line) is not None for line in single) * 2 > len(single) > 0:
+        return ""
     return "," if _comma_by_rows(data) else ""
 
 
@@ -148,6 +156,12 @@ def _comma_by_rows(data: list[str]) -> bool:
     entries = all(sort_of_text(part.strip()) for line in commas for part in line.split(","))
     labelled = sum(bool(take_apart(one_spelling(line))) for line in commas)
     return (most * 2 >= len(commas) or entries) and labelled * 2 <= len(commas)
+
+
+def _breaks_numbers(line: str) -> bool:
+    """Tell whether commas cut a line through its numbers, so that they are decimal signs: "3,79  8,69  5,16"."""
+    inner = line.split(",")[1:-1]
+    return any(_TWO_NUMBERS.fullmatch(part) and sort_of_text(part.strip()) != "stamp" for part in inner)
 
 
 def _is_list_by_blanks(line: str) -> bool:
