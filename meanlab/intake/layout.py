@@ -80,11 +80,13 @@ def _list_on_one_line(text: str) -> tuple[str, str]:
 
 def _without_labels(cells: list[str]) -> list[str]:
     """Entries beside each other without the labels before them: "Rep1=5.02", "Rep2=5.04"."""
-    filled = [cell for cell in cells if cell]
-    apart = [take_apart(one_spelling(cell)) for cell in filled]
-    if len(filled) < 2 or not all(ways and ways[0].sort in ("label", "number") for ways in apart):
+    apart = [[] if not cell or is_entry(cell) else take_apart(one_spelling(cell)) for cell in cells]
+    labelled = sum(bool(ways) and ways[0].sort in ("label", "number") for ways in apart)
+    if not labelled or labelled + sum(map(is_entry, cells)) < len(list(filter(None, cells))):
         return cells
-    return [ways[0].entry for ways in apart]
+    if labelled == 1 and apart[0]:
+        return [apart[0][0].label, apart[0][0].entry, *cells[1:]]
+    return [ways[0].entry if ways else cell for cell, ways in zip(cells, apart, strict=True)]
 
 
 def _fields(line: str, separator: str) -> list[str]:
@@ -112,14 +114,22 @@ def _in_pairs(parts: list[str]) -> list[str]:
 def _by_blanks(lines: Sequence[str]) -> list[list[str]]:
     """Fields parted by single blanks, by wide gaps, or by gutters that run through all lines."""
     filled = [line for line in lines if line.strip()]
-    if len({len(line.split()) for line in filled}) == 1:
+    gaps = Counter(len(GAPS.split(line.strip())) for line in filled)
+    by_gaps = len(gaps) == 1 and max(gaps) > 1
+    if len({len(line.split()) for line in filled}) == 1 and not (by_gaps and _has_phrases(filled)):
         return [line.split() for line in lines]
-    if len(gaps := Counter(len(GAPS.split(line.strip())) for line in filled)) == 1 and max(gaps) > 1:
+    if by_gaps:
         return [GAPS.split(line.strip()) if line.strip() else [] for line in lines]
     cuts = _gutters(filled)
     if not cuts:
         return [line.split() for line in lines]
     return [[line[a:b].strip() for a, b in zip([0, *cuts], [*cuts, None], strict=True)] for line in lines]
+
+
+def _has_phrases(lines: list[str]) -> bool:
+    """Tell whether wide gaps part fields of several words, "QC 2  5.02"."""
+    fields = [field for line in sample(lines) for field in GAPS.split(line.strip())]
+    return any(" " in field and not all(is_entry(word) for word in field.split()) for field in fields)
 
 
 def _gutters(lines: list[str]) -> list[int]:

@@ -160,3 +160,43 @@ def test_long_entries_end_quickly(text):
     assert parse(one_spelling(text)).kind in ("unread", "missing")
     facts_of(text)
     facts_of("5.02\n" + text)
+
+
+MARKS = ["", "", "", "", "*", "(a)", "ok", "outlier", "<", "±", "%", "x", "QC-1", "Rep 1", "Sample", "pH:"]
+BETWEEN = ["\t", ";", " ", "  ", ", ", "|", ": ", " - "]
+
+
+def made_rows(random, marks):
+    """Rows of numbers that are all different, and their texts with a decimal point."""
+    used, rows = [], []
+    between, sign = random.choice(BETWEEN), random.choice(".,")
+    for _ in range(random.choice((1, 2, 3, 4))):
+        cells = []
+        for _ in range(random.choice((1, 1, 2, 3))):
+            used.append(f"{random.randrange(1, 9)}.{10 + len(used)}")
+            cells.append(f"{random.choice(marks)} {used[-1].replace('.', sign)}".strip())
+        rows.append(between.join(cells))
+    return "\n".join(rows), used
+
+
+@MANY
+@given(drawn.integers(0, 2**64))
+def test_no_number_is_lost_or_made_up(seed):
+    """Numbers in rows and columns of any shape: each is read or named in a message, and nothing else is read."""
+    text, used = made_rows(Random(seed), [""])
+    found = meanlab.read(text)
+    if found.refused or found.needs_choice:
+        return
+    said = "\n".join([*(entry.text for entry in found.entries), *found.warnings, *found.notes]).replace(",", ".")
+    assert [number for number in used if number not in said] == []
+    assert set(found.values) <= {float(number) for number in used} | {-float(number) for number in used}
+
+
+@MANY
+@given(drawn.integers(0, 2**64))
+def test_no_number_is_made_up_beside_marks_and_words(seed):
+    """Whatever stands beside them: what is read are the numbers that were written, whole and not cut in two."""
+    text, used = made_rows(Random(seed), MARKS)
+    found = meanlab.read(text)
+    allowed = {float(number) for number in used} | {-float(number) for number in used} | {1.0}
+    assert set(found.values) <= allowed, (text, found.values)
