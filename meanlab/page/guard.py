@@ -2,8 +2,10 @@
 
 import html
 import logging
+import traceback
 from collections.abc import Iterator
 from contextlib import contextmanager
+from pathlib import Path
 
 import streamlit as st
 from streamlit.runtime.scriptrunner_utils.exceptions import ScriptControlException
@@ -25,12 +27,26 @@ def guarded(part: str) -> Iterator[None]:
     except MemoryError:
         _LOG.exception("out of memory in %s", part)
         say(f"There is not enough memory for this ({part}). What you typed is kept; try with fewer readings.")
-    except Exception:
+    except Exception as failure:
+        if _state_moved(failure):
+            _LOG.warning("the session changed while %s was drawn", part)
+            say(f"This part ({part}) is drawn again at the next change.", "notice")
+            return
         _LOG.exception("unexpected failure in %s", part)
         say(
             f"This part ({part}) could not be drawn: a fault of meanlab, written to the server's log. "
             "What you typed is kept; change an input to try again."
         )
+
+
+def _state_moved(failure: Exception) -> bool:
+    """Tell whether Streamlit's own session state was changed by another thread while it was read.
+
+    Seen where a browser leaves or the server ends in the middle of a run (Streamlit 1.67, session_state.py `_keys`).
+    """
+    frames = traceback.extract_tb(failure.__traceback__)
+    inside = bool(frames) and Path(frames[-1].filename).parts[-2:] == ("state", "session_state.py")
+    return isinstance(failure, RuntimeError) and inside
 
 
 def say(sentence: str, kind: str = "complaint") -> None:

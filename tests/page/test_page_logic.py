@@ -6,6 +6,7 @@ import pytest
 from streamlit.testing.v1 import AppTest
 
 import meanlab.page.cache as cache
+from meanlab.page import guard
 
 ROOT = Path(__file__).resolve().parents[2]
 
@@ -258,3 +259,16 @@ def test_a_decimal_sign_is_asked_for_where_nothing_shows_it_and_forgotten_with_t
     page = typed(page, "5.1\n5.2\n5.4", "5.0")
     assert "<span>3</span> of 3 readings" in said(page)
     assert "5.23" in said(page)
+
+
+def test_a_session_that_ends_in_the_middle_of_a_run_is_no_fault(caplog):
+    """Streamlit's state changed by another thread is a warning without a traceback; any other failure keeps its own."""
+    source = "def moved():\n    raise RuntimeError('dictionary changed size during iteration')\n"
+    names = {}
+    exec(compile(source, "/x/streamlit/runtime/state/session_state.py", "exec"), names)
+    with guard.guarded("question"):
+        names["moved"]()
+    assert "Traceback" not in caplog.text
+    with guard.guarded("question"):
+        raise RuntimeError("ours")
+    assert "Traceback" in caplog.text
