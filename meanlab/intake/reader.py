@@ -1,6 +1,6 @@
 """The door of the intake: a pasted text or the bytes of a file in, an Intake out."""
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import replace
 from typing import Any
 
@@ -12,8 +12,8 @@ from meanlab.intake.choosing import pick
 from meanlab.intake.column import read_column
 from meanlab.intake.doubts import doubts_about
 from meanlab.intake.found import Column, Intake
+from meanlab.intake.gathering import gathered
 from meanlab.intake.given import Given, Read
-from meanlab.intake.long_column import OneColumn
 from meanlab.intake.numerals import Sign, decimal_sign
 from meanlab.intake.overlooked import overlooked
 from meanlab.intake.picked import NothingToRead, Picked
@@ -152,7 +152,7 @@ def _entries(table: Table, places: Sequence[tuple[int, int]]) -> Given:
 
 def _column(picked: Picked, selection: dict[str, Any]) -> Intake:
     """Read the cells that were picked."""
-    given = _given(picked, selection.get("decimal"))
+    given = gathered(picked, selection.get("decimal"))
     found = read_column(given)
     if found.sign.open:
         hint = _hint(picked)
@@ -161,48 +161,6 @@ def _column(picked: Picked, selection: dict[str, Any]) -> Intake:
         given = replace(given, hint=hint)
         found = read_column(given)
     return _intake(picked, given, found)
-
-
-def _given(picked: Picked, decimal: Sign | None) -> Given:
-    table = picked.block.table
-    if len(picked.columns) == 1 and table.sheet is None:
-        column, rows = picked.columns[0], picked.rows
-        texts = _texts(table, rows, column)
-        place_of: Callable[[int], str] = lambda i: table.place(rows[i], column)  # noqa: E731
-        kinds, computed = None, frozenset[int]()
-        places: Sequence[tuple[int, int]] = ()
-    else:
-        places = picked.places()
-        texts = [table.text(row, column) for row, column in places]
-        across = len(picked.columns) > 1 and table.lines is not None
-        place_of = lambda i: table.place(*places[i]) + (f", field {places[i][1] + 1}" if across else "")  # noqa: E731
-        kinds = None if table.sheet is None else [table.kind(row, column) for row, column in places]
-        computed = _computed(table, places)
-    qualifiers = None
-    if picked.qualifier is not None:
-        qualifiers = [table.text(row, picked.qualifier) for row, _ in picked.places()]
-    return Given(texts, place_of, kinds, computed, qualifiers, decimal, None, picked.unit, _plain_sign(picked))
-
-
-def _plain_sign(picked: Picked) -> str:
-    """The only decimal sign of a long text whose lines from the first picked row on are known to be bare numbers."""
-    rows = picked.block.table.rows
-    known = isinstance(rows, OneColumn) and isinstance(picked.rows, range) and rows.plain_from <= picked.rows[0]
-    return rows.sign if known and isinstance(rows, OneColumn) else ""
-
-
-def _texts(table: Table, rows: Sequence[int], column: int) -> list[str]:
-    if isinstance(table.rows, OneColumn):
-        texts = table.rows.texts
-        return texts[rows.start : rows.stop] if isinstance(rows, range) else [texts[row] for row in rows]
-    return [cells[column] if column < len(cells) else "" for cells in map(table.rows.__getitem__, rows)]
-
-
-def _computed(table: Table, places: Sequence[tuple[int, int]]) -> frozenset[int]:
-    if table.sheet is None:
-        return frozenset()
-    cells = ((i, table.cell(row, column)) for i, (row, column) in enumerate(places))
-    return frozenset(i for i, cell in cells if cell is not None and cell.computed)
 
 
 def _hint(picked: Picked) -> Sign | None:
